@@ -1,0 +1,132 @@
+"""Capacitors of the ac filter and of the dc link: currents, losses, counts, size, price."""
+
+from __future__ import annotations
+
+from dataclasses import dataclass
+
+import numpy as np
+from numpy.typing import NDArray
+
+from models.catalog.gathered import Gathered
+from models.catalog.parts import AcCapacitor
+
+Array = NDArray[np.float64]
+
+
+@dataclass(frozen=True)
+class AcFilterCapacitor:
+    """Ac filter capacitors of all phases (n,), loss (n, p).
+
+    Attributes:
+        loss: [W]; current_share: rms current over what the film takes [-]; volume: [m3]; mass: [kg]; price: [currency].
+    """
+
+    loss: Array
+    current_share: Array
+    volume: Array
+    mass: Array
+    price: Array
+
+
+def ac_filter_capacitor(
+    kind: AcCapacitor, phases: int, capacitance: Array, line_current: Array, ripple_mean_square: Array,
+    line_frequency_hz: float, ripple_frequency: Array, worst: int,
+) -> AcFilterCapacitor:
+    """Evaluate the filter capacitors.
+
+    Args:
+        kind: capacitor class.
+        phases: 1 or 3 [-].
+        capacitance: per phase (n,) [F].
+        line_current: line-frequency rms current (n, p) [A].
+        ripple_mean_square: (n, p) [A2].
+        line_frequency_hz: [Hz]; ripple_frequency: (n,) [Hz].
+        worst: operating point at which the current limit is checked [-].
+
+    The dielectric loss is I^2 tan(delta)/(omega C) for each of the two current parts.
+    """
+    c = capacitance[:, None]
+    line = line_current**2 / (2.0 * np.pi * line_frequency_hz * c)
+    ripple = ripple_mean_square / (2.0 * np.pi * ripple_frequency[:, None] * c)
+    total = np.sqrt(line_current[:, worst] ** 2 + ripple_mean_square[:, worst])
+    volume = phases * capacitance * kind.volume_m3_per_f
+    return AcFilterCapacitor(
+        loss=phases * kind.loss_tangent * (line + ripple),
+        current_share=total / (capacitance * kind.current_a_per_f),
+        volume=volume,
+        mass=volume * kind.density_kg_m3,
+        price=phases * (capacitance * kind.price_per_f + kind.price_fixed),
+    )
+
+
+def double_frequency_capacitance(power: float, omega: float, dc_voltage: float, ripple: float) -> float:
+    """Dc-link capacitance of a single-phase inverter for a peak-to-peak voltage ripple, C = P/(omega V dV) [F].
+
+    Args:
+        power: apparent power [VA]; omega: line angular frequency [rad/s]; dc_voltage: [V]; ripple: peak to peak [V].
+
+    Source: energy balance at twice the line frequency; Krein, Balog, Mirjafari (2012).
+    """
+    return power / (omega * dc_voltage * ripple)
+
+
+def switching_ripple_capacitance(current_rms: Array, frequency: Array, ripple: float) -> Array:
+    """Dc-link capacitance that keeps the switching ripple below a peak-to-peak voltage [F].
+
+    The capacitor current is taken as a square wave of the same rms at twice the switching frequency, half of whose
+    period moves the charge I/(4 f_s): an estimate, exact for a half-on square wave.
+
+    Args:
+        current_rms: switching-frequency rms current [A]; frequency: switching frequency [Hz]; ripple: [V].
+    """
+    return current_rms / (4.0 * frequency * ripple)
+
+
+@dataclass(frozen=True)
+class DcLink:
+    """Dc-link bank (n,), loss (n, p): units in series and parallel [-], capacitance [F], loss [W], volume [m3], ..."""
+
+    series: Array
+    parallel: Array
+    capacitance: Array
+    loss: Array
+    ripple_share: Array
+    volume: Array
+    mass: Array
+    price: Array
+
+
+def dc_link(
+    unit: Gathered, dc_voltage_max: float, dc_voltage: float, voltage_use: float, balancing_current: float,
+    needed: Array, slow_rms: Array, fast_rms: Array, worst: int,
+) -> DcLink:
+    """Size the bank and evaluate its loss.
+
+    Args:
+        unit: catalogue columns of the chosen unit (n,).
+        dc_voltage_max, dc_voltage: greatest and nominal dc voltage [V].
+        voltage_use: greatest voltage over rating [-].
+        balancing_current: through the resistors of series units [A].
+        needed: least bank capacitance (n,) [F].
+        slow_rms, fast_rms: double-line-frequency and switching-frequency rms current (n, p) [A].
+        worst: operating point that sets the ripple current [-].
+    """
+    series = np.ceil(dc_voltage_max / (voltage_use * unit.voltage_rating_v) - 1e-9)
+    heating = np.sqrt(slow_rms**2 + (fast_rms / unit.ripple_multiplier_high[:, None]) ** 2)
+    for_charge = np.ceil(needed * series / unit.unit_capacitance_f - 1e-9)
+    for_ripple = np.ceil(heating[:, worst] / unit.unit_ripple_a - 1e-9)
+    parallel = np.maximum(np.maximum(for_charge, for_ripple), 1.0)
+    count = series * parallel
+    esr = (unit.unit_esr_low_ohm[:, None] * slow_rms**2 + unit.unit_esr_high_ohm[:, None] * fast_rms**2)
+    balancing = np.where(series > 1.0, balancing_current * dc_voltage, 0.0)
+    volume = count * unit.unit_volume_m3
+    return DcLink(
+        series=series,
+        parallel=parallel,
+        capacitance=unit.unit_capacitance_f * parallel / series,
+        loss=esr * (series / parallel)[:, None] + balancing[:, None],
+        ripple_share=heating[:, worst] / (parallel * unit.unit_ripple_a),
+        volume=volume,
+        mass=volume * unit.density_kg_m3,
+        price=count * unit.unit_price,
+    )

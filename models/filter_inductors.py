@@ -1,0 +1,126 @@
+"""The two inductors of the output filter: what each carries, handed to the inductor model."""
+
+from __future__ import annotations
+
+from dataclasses import dataclass
+
+import numpy as np
+from numpy.typing import NDArray
+
+from models.catalog.parts import Catalog
+from models.designs import Designs
+from models.magnetics.build import build
+from models.magnetics.core_bands import CoreBands
+from models.magnetics.core_loss import steinmetz_loss, switched_loss
+from models.magnetics.inductor import Inductor, InductorDuty, inductor
+from models.output_filter import LinePhasors
+from models.waveforms.spectrum import CARRIER_GROUPS
+from models.waveforms.state import WaveformState
+from models.waveforms.tables import WaveformTables
+
+Array = NDArray[np.float64]
+GROUPS = np.arange(1.0, CARRIER_GROUPS + 1)
+
+
+@dataclass(frozen=True)
+class Surroundings:
+    """What both inductors share: line frequency [Hz], air around them [degC], rise factor (n,) [-], labour [currency]."""
+
+    line_frequency_hz: float
+    ambient_c: float
+    rise_factor: Array
+    labour: float
+
+
+@dataclass(frozen=True)
+class RippleView:
+    """Waveform state reduced to the operating points at which ripple losses are computed, then spread over points.
+
+    Ripple depends on load only through the small change of the modulation index, so its losses are computed at `columns`
+    (rated load at nominal dc voltage, rated load at greatest dc voltage) and taken over to all points by `spread`.
+    """
+
+    columns: tuple[int, ...]
+    spread: NDArray[np.int64]
+
+
+def bridge_side(
+    catalog: Catalog, designs: Designs, bands: CoreBands, tables: WaveformTables, state: WaveformState,
+    dc_voltage: Array, phasors: LinePhasors, peak_current: Array, view: RippleView, around: Surroundings,
+) -> Inductor:
+    """Evaluate the bridge-side inductor.
+
+    Args:
+        catalog, designs, bands, tables, state: what the evaluation works with.
+        dc_voltage: over the operating points of `state` (q,) [V].
+        phasors: line-frequency phasors at the loss points (n, p).
+        peak_current: greatest current, ripple included (n,) [A].
+        view: ripple points.
+        around: surroundings.
+    """
+    built = build(catalog, designs.inverter_inductor)
+    columns = list(view.columns)
+    scheme, row, weight = state.scheme, state.row[:, columns], state.weight[:, columns]
+    unit = state.ripple_unit[:, columns]
+    groups = tables.read(tables.group_ripple, scheme, row, weight) * (unit * unit)[..., None]
+    frequency = designs.switching_frequency_hz
+    material = designs.inverter_inductor.material
+    band = bands.band(material, frequency * tables.main_carrier[designs.modulation])
+    shape = tables.read(tables.core_loss_shape, scheme, row, weight)
+    shape = np.take_along_axis(shape, bands.pair[material, band][:, None, None], axis=-1)[..., 0]
+    slope = dc_voltage[columns] / (built.turns * built.area)[:, None]
+    alpha, beta = bands.alpha[material, band][:, None], bands.beta[material, band][:, None]
+    density = switched_loss(bands.factor[material, band][:, None], alpha, beta, shape, slope, frequency[:, None])
+    return inductor(
+        catalog,
+        built,
+        InductorDuty(
+            inductance=designs.inverter_inductance_h,
+            peak_current=peak_current,
+            line_current=np.abs(phasors.inverter_current),
+            group_mean_square=groups[:, view.spread],
+            group_frequency=frequency[:, None] * GROUPS,
+            switched_loss_density=density[:, view.spread],
+            line_frequency_hz=around.line_frequency_hz,
+            ambient_c=around.ambient_c,
+            rise_factor=around.rise_factor,
+        ),
+        around.labour,
+    )
+
+
+def grid_side(
+    catalog: Catalog, designs: Designs, bands: CoreBands, tables: WaveformTables, phasors: LinePhasors,
+    ripple_rms: Array, around: Surroundings,
+) -> Inductor:
+    """Evaluate the grid-side inductor; its ripple is nearly sinusoidal behind the capacitor.
+
+    Args:
+        ripple_rms: switching-frequency rms current at the greatest dc voltage (n,) [A]; others as in `bridge_side`.
+    """
+    built = build(catalog, designs.grid_inductor)
+    frequency = designs.switching_frequency_hz * tables.main_carrier[designs.modulation]
+    material = designs.grid_inductor.material
+    band = bands.band(material, frequency)
+    peak_flux = designs.grid_inductance_h * np.sqrt(2.0) * ripple_rms / (built.turns * built.area)
+    constants = (bands.k[material, band], bands.alpha[material, band], bands.beta[material, band])
+    density = steinmetz_loss(*constants, frequency, np.maximum(peak_flux, 1e-9))
+    points = phasors.output_current.shape[-1]
+    current = np.broadcast_to(np.abs(phasors.output_current), (len(frequency), points))
+    return inductor(
+        catalog,
+        built,
+        InductorDuty(
+            inductance=np.maximum(designs.grid_inductance_h, 1e-9),
+            peak_current=np.sqrt(2.0) * (current.max(-1) + ripple_rms),
+            line_current=current,
+            group_mean_square=np.repeat(ripple_rms[:, None, None] ** 2, points, axis=1),
+            group_frequency=frequency[:, None],
+            switched_loss_density=np.repeat(density[:, None], points, axis=1),
+            line_frequency_hz=around.line_frequency_hz,
+            ambient_c=around.ambient_c,
+            rise_factor=around.rise_factor,
+        ),
+        around.labour,
+    )
+

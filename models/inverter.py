@@ -1,0 +1,245 @@
+"""The whole inverter: the one room that knows all of physics' rooms and puts a population through them."""
+
+from __future__ import annotations
+
+from dataclasses import dataclass
+from functools import cached_property
+
+import numpy as np
+from numpy.typing import NDArray
+
+from models.capacitors import (
+    AcFilterCapacitor,
+    DcLink,
+    ac_filter_capacitor,
+    dc_link,
+    double_frequency_capacitance,
+    switching_ripple_capacitance,
+)
+from models.catalog.gathered import Gathered
+from models.catalog.parts import AcCapacitor, Catalog
+from models.cooling import SinkCurve, SinkPoint, sink_curve_forced, sink_curve_natural
+from models.designs import Designs
+from models.distortion import Distortion
+from models.evaluation import Evaluation
+from models.filter_inductors import RippleView, Surroundings, bridge_side, grid_side
+from models.magnetics.core_bands import CoreBands, core_bands
+from models.magnetics.inductor import Inductor, absent_inductor
+from models.operating_points import OperatingPoints, operating_points
+from models.output_distortion import current_distortion, voltage_distortion
+from models.output_filter import Filter, LinePhasors, line_phasors, resonance_hz
+from models.requirements import Findings, requirements
+from models.roll_up import roll_up
+from models.semiconductors.bridge_losses import BridgeLosses, Cooling, bridge_losses
+from models.specification import GRID_CONNECTED, Specification
+from models.waveforms.bridges import BRIDGES, Bridge
+from models.waveforms.dc_link_current import (
+    single_phase_double_frequency_rms,
+    single_phase_switching_rms,
+    three_phase_rms,
+)
+from models.waveforms.state import WaveformState, waveform_state
+from models.waveforms.tables import WaveformTables, waveform_tables
+
+Array = NDArray[np.float64]
+BLOCK = 512
+
+
+@dataclass(frozen=True)
+class Inverter:
+    """One study's inverter: specification and catalogue with everything that is solved once for all candidates.
+
+    `evaluate` maps designs to an evaluation; it holds no state between calls.
+    """
+
+    specification: Specification
+    catalog: Catalog
+
+    @cached_property
+    def bridge(self) -> Bridge:
+        """The bridge's registry entry. Raises KeyError for an unknown bridge."""
+        return BRIDGES[self.specification.bridge]
+
+    @cached_property
+    def points(self) -> OperatingPoints:
+        """Operating points."""
+        return operating_points(self.specification)
+
+    @cached_property
+    def bands(self) -> CoreBands:
+        """Steinmetz constants of the catalogue's core materials."""
+        return core_bands(self.catalog)
+
+    @cached_property
+    def tables(self) -> WaveformTables:
+        """Waveform tables of the bridge."""
+        return waveform_tables(self.bridge.name, self.bands.exponents)
+
+    @cached_property
+    def sinks(self) -> tuple[SinkCurve, SinkCurve]:
+        """Least-volume heatsinks over thermal resistance: natural, forced."""
+        spec, price = self.specification, self.catalog.cost.heatsink_price_per_kg
+        air = {"ambient_c": spec.ambient_c, "altitude_m": spec.altitude_m, "price_per_kg": price}
+        return sink_curve_natural(**air), sink_curve_forced(fans=tuple(self.catalog.fans), **air)
+
+    @cached_property
+    def ac_capacitor(self) -> AcCapacitor:
+        """The smallest ac film capacitor class whose rating covers the greatest output voltage."""
+        voltage = self.specification.phase_voltage_max_v
+        fitting = [kind for kind in self.catalog.ac_capacitors if kind.voltage_rating_v_ac >= voltage]
+        if not fitting:
+            raise ValueError(f"no ac capacitor class of the catalogue is rated for {voltage:.0f} V ac")
+        return min(fitting, key=lambda kind: kind.volume_m3_per_f)
+
+    def evaluate(self, designs: Designs) -> Evaluation:
+        """Evaluate candidates, all at once.
+
+        Args:
+            designs: candidates (n,).
+
+        Returns:
+            Losses, sizes, prices, distortion and constraint margins; nothing in it is NaN or infinite for candidates
+            with positive values in every field.
+        """
+        spec, points = self.specification, self.points
+        circuit = Filter(
+            designs.inverter_inductance_h,
+            designs.grid_inductance_h,
+            designs.filter_capacitance_f,
+            designs.damping_resistance_ohm,
+        )
+        columns = circuit.columns()
+        phasors = line_phasors(columns, spec.line_frequency_hz, points.output_voltage, points.output_current)
+        state = waveform_state(
+            self.bridge, self.tables, designs.modulation, phasors, points.dc_voltage,
+            1.0 / (designs.inverter_inductance_h * designs.switching_frequency_hz),
+        )
+        device = Gathered(self.catalog.devices, designs.device, 2)
+        losing = _at_points(state, points.losses)
+        sink = self._sink(designs)
+        losses = bridge_losses(
+            device, designs.parallel.astype(float), designs.die_area_m2, designs.switching_frequency_hz, self.bridge,
+            self.tables, losing, points.dc_voltage[points.losses],
+            Cooling(spec.ambient_c, lambda power: self._rise(designs, power)),
+        )
+        distortion, linear = self._distortion(columns, state, designs, device.dead_time_s[:, 0, 0])
+        inductors = self._inductors(designs, phasors, state, distortion)
+        capacitors = self._capacitors(designs, phasors, losing)
+        findings = Findings(
+            designs=designs, circuit=circuit, phasors=phasors, state=state, device=device, losses=losses, sink=sink,
+            distortion=distortion, linear_distortion=linear, inductors=inductors, ac_capacitor=capacitors[0],
+            dc_link=capacitors[1], resonance=resonance_hz(circuit),
+        )
+        constraints = requirements(spec, self.catalog, self.bridge, self.tables, points, findings)
+        return roll_up(spec, self.catalog, self.bridge, points, findings, constraints)
+
+    def _sink(self, designs: Designs) -> SinkPoint:
+        natural, forced = (curve.at(designs.sink_resistance_k_per_w) for curve in self.sinks)
+        driven = designs.forced_cooling == 1
+        return SinkPoint(
+            **{name: np.where(driven, getattr(forced, name), getattr(natural, name)) for name in vars(natural)}
+        )
+
+    def _rise(self, designs: Designs, power: Array) -> Array:
+        natural, forced = self.sinks
+        resistance = designs.sink_resistance_k_per_w[:, None]
+        driven = (designs.forced_cooling == 1)[:, None]
+        return np.where(driven, forced.rise(power, resistance), natural.rise(power, resistance))
+
+    def _distortion(
+        self, columns: Filter, state: WaveformState, designs: Designs, dead_time: Array
+    ) -> tuple[Distortion, Distortion]:
+        """Distortion under the worst load, and with a linear load only (the same thing on the grid)."""
+        spec, point = self.specification, self.points.distortion
+        common = (self.tables, state, point, designs.switching_frequency_hz, dead_time)
+        if spec.application == GRID_CONNECTED:
+            found = current_distortion(spec, self.catalog.limit_table(spec.limit_table), columns, *common)
+            return found, found
+        linear = voltage_distortion(spec, columns, *common, 0.0)
+        if spec.rectifier_share <= 0.0:
+            return linear, linear
+        return voltage_distortion(spec, columns, *common, spec.rectifier_share), linear
+
+    def _inductors(
+        self, designs: Designs, phasors: LinePhasors, state: WaveformState, distortion: Distortion
+    ) -> tuple[Inductor, Inductor]:
+        spec, points = self.specification, self.points
+        rules = spec.rules
+        around = Surroundings(
+            spec.line_frequency_hz,
+            spec.ambient_c + rules.internal_air_rise,
+            np.where(designs.forced_cooling == 1, rules.forced_inductor_rise_factor, 1.0),
+            float(self.catalog.cost.inductor_labour_at(spec.apparent_power_va)),
+        )
+        count = points.losses.stop
+        spread = (np.arange(count) >= points.thermal.start).astype(np.int64)
+        view = RippleView((points.rated, points.distortion), spread)
+        at_losses = _phasors_at(phasors, points.losses)
+        peak = self._peak_current(phasors, state)
+        common = (self.catalog, designs, self.bands, self.tables)
+        first = bridge_side(*common, state, points.dc_voltage, at_losses, peak, view, around)
+        if np.all(designs.grid_inductance_h <= 0.0):
+            return first, absent_inductor(len(designs), count)
+        ripple = np.sqrt(np.maximum(distortion.total**2 - distortion.low**2, 0.0)) * spec.rated_current_a
+        return first, grid_side(*common, at_losses, ripple, around)
+
+    def _peak_current(self, phasors: LinePhasors, state: WaveformState) -> Array:
+        """Greatest current of the bridge-side inductor, half the greatest ripple on top [A]."""
+        spec, points = self.specification, self.points
+        current = np.sqrt(2.0) * np.abs(phasors.inverter_current[:, points.thermal]).max(-1)
+        rectifier = spec.rectifier_share * spec.crest_factor + (1.0 - spec.rectifier_share) * np.sqrt(2.0)
+        if spec.rectifier_share > 0.0:
+            current = np.maximum(current, rectifier * spec.rated_current_a)
+        return spec.rules.surge_current_factor * current + 0.5 * state.peak_ripple[:, points.distortion]
+
+    def _capacitors(
+        self, designs: Designs, phasors: LinePhasors, state: WaveformState
+    ) -> tuple[AcFilterCapacitor, DcLink]:
+        spec, points, rules = self.specification, self.points, self.specification.rules
+        frequency = designs.switching_frequency_hz
+        worst = points.thermal.start
+        film = ac_filter_capacitor(
+            self.ac_capacitor, spec.phases, designs.filter_capacitance_f,
+            np.abs(phasors.capacitor_current[:, points.losses]), state.ripple_mean_square, spec.line_frequency_hz,
+            frequency * self.tables.main_carrier[designs.modulation], worst,
+        )
+        slow, fast = self._dc_currents(state)
+        ripple = rules.dc_switching_ripple_share * spec.dc_voltage_v
+        needed = switching_ripple_capacitance(fast[:, worst], frequency, ripple)
+        if spec.phases == 1:
+            slow_ripple = rules.dc_ripple_share * spec.dc_voltage_v
+            omega = 2.0 * np.pi * spec.line_frequency_hz
+            needed = np.maximum(
+                needed, double_frequency_capacitance(spec.apparent_power_va, omega, spec.dc_voltage_v, slow_ripple)
+            )
+        unit = Gathered(self.catalog.dc_link_capacitors, designs.dc_link)
+        bank = dc_link(
+            unit, spec.dc_voltage_max_v, spec.dc_voltage_v, rules.dc_voltage_use, rules.dc_balancing_current, needed,
+            slow, fast, worst,
+        )
+        return film, bank
+
+    def _dc_currents(self, state: WaveformState) -> tuple[Array, Array]:
+        """Double-line-frequency and switching-frequency rms current of the dc link (n, p) [A]."""
+        index = np.minimum(state.modulation_index, self.tables.linear_limit[state.scheme])
+        peak = state.peak_current
+        if self.bridge.phases == 3:
+            fast = three_phase_rms(index, state.displacement) * peak / np.sqrt(2.0)
+            return np.zeros_like(fast), fast
+        place = (state.scheme, state.row, state.weight)
+        on_mean = self.tables.read(self.tables.on_mean, *place)
+        on_cosine = self.tables.read(self.tables.on_cosine, *place)
+        fast = single_phase_switching_rms(index, state.displacement, on_mean, on_cosine)
+        return single_phase_double_frequency_rms(index) * peak, fast * peak
+
+
+def _at_points(state: WaveformState, points: slice) -> WaveformState:
+    fields = {name: value if name == "scheme" else value[:, points] for name, value in vars(state).items()}
+    return WaveformState(**fields)
+
+
+def _phasors_at(phasors: LinePhasors, points: slice) -> LinePhasors:
+    return LinePhasors(**{name: value[..., points] for name, value in vars(phasors).items()})
+
+
+__all__ = ["BLOCK", "BridgeLosses", "Inverter"]

@@ -1,0 +1,1 @@
+"""Filter inductors: core loss, winding loss, gap and saturation, temperature, size."""

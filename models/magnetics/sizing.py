@@ -1,0 +1,133 @@
+"""First sizing of inductors: from inductance and currents to a core, turns and copper.
+
+A candidate of the search names no core by number but by how much larger than the least core it is; the sizing here turns
+that into the smallest boxed core (and stack) of the material with the area product it asks for. The evaluation then judges
+the result without knowing how it was chosen. Area-product method: McLyman, Transformer and Inductor Design Handbook.
+"""
+
+from __future__ import annotations
+
+from dataclasses import dataclass
+
+import numpy as np
+from numpy.typing import NDArray
+from scipy.constants import mu_0
+
+from models.catalog.parts import Catalog
+from models.designs import InductorDesigns
+from models.magnetics.gap import powder_permeability_share
+
+Array = NDArray[np.float64]
+Ints = NDArray[np.int64]
+REFERENCE_CURRENT_DENSITY = 4e6  # A/m2, judgement for still air: it only sets what "size factor 1" means
+REFERENCE_COPPER_SHARE = 0.35  # judgement, likewise
+STACK_LIMIT = 4  # cores side by side, judgement
+TURN_STEPS = 12
+
+
+@dataclass(frozen=True)
+class CoreLadder:
+    """Cores of every material by rising area product; rows are materials, padded with the largest.
+
+    Attributes:
+        area_product: iron area times window area (m, k) [m4].
+        shape, stack: catalogue index and stacked cores (m, k) [-].
+    """
+
+    area_product: Array
+    shape: Ints
+    stack: Ints
+
+
+def core_ladder(catalog: Catalog, stack_limit: int = STACK_LIMIT) -> CoreLadder:
+    """For every material, the cores that no other beats in both area product and boxed volume."""
+    rows = [_ladder_of(catalog, material, stack_limit) for material in range(len(catalog.core_materials))]
+    length = max(len(row[0]) for row in rows)
+    padded = [[np.concatenate([part, np.repeat(part[-1:], length - len(part))]) for part in row] for row in rows]
+    product, shape, stack = (np.stack(parts) for parts in zip(*padded, strict=True))
+    return CoreLadder(product, shape, stack)
+
+
+def _ladder_of(catalog: Catalog, material: int, stack_limit: int) -> tuple[Array, Ints, Ints]:
+    part, shapes = catalog.core_materials[material], catalog.core_shapes
+    entries = []
+    for index, shape in enumerate(shapes):
+        if shape.family in part.families:
+            for stack in range(1, (stack_limit if shape.stackable else 1) + 1):
+                product = shape.area_m2 * part.area_factor * stack * shape.window_area_m2
+                extra = shape.box_volume_m3 ** (2.0 / 3.0) * shape.stack_depth_m * (stack - 1)
+                entries.append((product, shape.box_volume_m3 + 1.17 * extra, index, stack))
+    if not entries:
+        raise ValueError(f"core material {part.name!r}: no core shape of the families {', '.join(part.families)}")
+    entries.sort(key=lambda entry: (-entry[0], entry[1]))
+    kept, smallest = [], np.inf
+    for entry in entries:
+        if entry[1] < smallest:
+            kept.append(entry)
+            smallest = entry[1]
+    kept.reverse()
+    product, _, shape_index, stack_count = zip(*kept, strict=True)
+    return np.array(product), np.array(shape_index, dtype=np.int64), np.array(stack_count, dtype=np.int64)
+
+
+def size_inductor(
+    catalog: Catalog, ladder: CoreLadder, material: Ints, conductor: Ints, inductance: Array, peak_current: Array,
+    rms_current: Array, size_factor: Array, flux_use: Array, window_use: Array, saturation_use: float,
+) -> InductorDesigns:
+    """Choose core, stack, turns and copper area.
+
+    Args:
+        catalog, ladder: parts.
+        material, conductor: catalogue indexes (n,) [-].
+        inductance: wanted at peak current (n,) [H].
+        peak_current, rms_current: (n,) [A].
+        size_factor: area product over the least needed (n,) [-].
+        flux_use: share of the allowed flux density to use, gapped cores (n,) [-].
+        window_use: share of the copper that the window takes to use (n,) [-].
+        saturation_use: greatest flux density over saturation [-].
+
+    Returns:
+        The builds; turns are whole and at least 1. Where the ladder ends too early the largest core is taken, and the
+        evaluation will say what it lacks.
+    """
+    materials, shapes, conductors = catalog.core_materials, catalog.core_shapes, catalog.conductors
+    powder = materials.column("kind")[material] == "powder"
+    allowed_flux = np.where(powder, _powder_flux(catalog)[material], materials.column("saturation_t")[material] * saturation_use)
+    needed = inductance * peak_current * rms_current / (allowed_flux * REFERENCE_CURRENT_DENSITY * REFERENCE_COPPER_SHARE)
+    rung = np.sum(ladder.area_product[material] < (size_factor * needed)[:, None], axis=-1)
+    rung = np.minimum(rung, ladder.area_product.shape[1] - 1)
+    shape, stack = ladder.shape[material, rung], ladder.stack[material, rung]
+    area = shapes.column("area_m2")[shape] * stack * materials.column("area_factor")[material]
+    gapped_turns = np.ceil(inductance * peak_current / (allowed_flux * flux_use * area))
+    powder_turns = _powder_turns(catalog, material, area, shapes.column("path_length_m")[shape], inductance, peak_current)
+    turns = np.maximum(np.where(powder, powder_turns, gapped_turns), 1.0)
+    in_hole = np.char.startswith(shapes.column("family")[shape].astype(str), "toroid")
+    share = np.where(
+        in_hole, conductors.column("copper_share_toroid")[conductor], conductors.column("copper_share_bobbin")[conductor]
+    )
+    copper = window_use * np.maximum(share, 1e-3) * shapes.column("window_area_m2")[shape] / turns
+    return InductorDesigns(
+        material=material, shape=shape, stack=stack, turns=turns.astype(np.int64), conductor=conductor, copper_area_m2=copper
+    )
+
+
+def _powder_flux(catalog: Catalog) -> Array:
+    """Flux density mu_0 mu_i H_50/2 at which half of a powder's permeability is left (m,) [T]."""
+    materials = catalog.core_materials
+    field = materials.column("rolloff_field_a_per_m")
+    return np.where(np.isfinite(field), 0.5 * mu_0 * materials.column("initial_permeability") * field, 1.0)
+
+
+def _powder_turns(
+    catalog: Catalog, material: Ints, area: Array, path: Array, inductance: Array, peak_current: Array
+) -> Array:
+    """Fewest turns whose inductance at peak current reaches the wanted one, by fixed-point steps [-]."""
+    materials = catalog.core_materials
+    half_field = materials.column("rolloff_field_a_per_m")[material]
+    exponent = materials.column("rolloff_exponent")[material]
+    per_turn = mu_0 * materials.column("initial_permeability")[material] * area / path
+    turns = first = np.sqrt(inductance / per_turn)
+    for _ in range(TURN_STEPS):
+        left = powder_permeability_share(turns * peak_current / path, half_field, exponent)
+        turns = np.minimum(first / np.sqrt(left), 20.0 * first)
+    return np.ceil(turns)

@@ -1,0 +1,97 @@
+"""Resistance of windings: copper over temperature, skin and proximity effect in round wire, foil and litz."""
+
+from __future__ import annotations
+
+import numpy as np
+from numpy.typing import NDArray
+from scipy.constants import mu_0
+from scipy.special import ber, bei, beip, berp
+
+Array = NDArray[np.float64]
+COPPER_RESISTIVITY_20 = 1.7241e-8  # ohm m, 100 % of the International Annealed Copper Standard
+COPPER_COEFFICIENT_20 = 0.00393  # 1/K, same standard
+COPPER_DENSITY = 8890.0  # kg/m3
+
+
+def copper_resistivity(temperature_c: Array) -> Array:
+    """Resistivity of annealed copper [ohm m] at a temperature [degC]. Source: IEC 60028."""
+    return COPPER_RESISTIVITY_20 * (1.0 + COPPER_COEFFICIENT_20 * (np.asarray(temperature_c) - 20.0))
+
+
+def skin_depth(frequency_hz: Array, resistivity: Array) -> Array:
+    """Skin depth sqrt(rho/(pi f mu0)) [m] for a resistivity [ohm m]."""
+    return np.sqrt(resistivity / (np.pi * mu_0 * frequency_hz))
+
+
+def dowell_ratio(penetration: Array, layers: Array) -> Array:
+    """Ac over dc resistance of a winding portion whose mmf rises from zero, layer by layer.
+
+    Args:
+        penetration: layer thickness over skin depth, times sqrt(porosity) for wires [-].
+        layers: number of layers, need not be whole [-].
+
+    Returns:
+        Resistance ratio, 1 at dc [-].
+
+    Source: Dowell (1966); porosity after Ferreira (1994).
+    """
+    depth = np.clip(penetration, 1e-3, 40.0)
+    double = 2.0 * depth
+    skin = (np.sinh(double) + np.sin(double)) / (np.cosh(double) - np.cos(double))
+    near = (np.sinh(depth) - np.sin(depth)) / (np.cosh(depth) + np.cos(depth))
+    return depth * (skin + 2.0 / 3.0 * (np.square(layers) - 1.0) * near)
+
+
+def round_wire_skin_ratio(diameter_over_skin_depth: Array) -> Array:
+    """Ac over dc resistance of an isolated round wire, exact [-]. Source: Kelvin functions, Terman (1943)."""
+    q = np.asarray(diameter_over_skin_depth) / np.sqrt(2.0)
+    numerator = ber(q) * beip(q) - bei(q) * berp(q)
+    return 0.5 * q * numerator / (berp(q) ** 2 + beip(q) ** 2)
+
+
+def litz_ratio(
+    frequency_hz: Array, strands: Array, turns: Array, strand_diameter: Array, breadth: Array, resistivity: Array
+) -> Array:
+    """Ac over dc resistance of a litz winding, low-frequency proximity form.
+
+    Args:
+        frequency_hz: [Hz].
+        strands: strands per turn [-].
+        turns: turns of the winding portion [-].
+        strand_diameter: bare [m].
+        breadth: winding breadth [m].
+        resistivity: [ohm m].
+
+    Returns:
+        1 + pi^2 omega^2 mu0^2 N^2 n^2 d^6/(768 rho^2 b^2), field zero at one side [-].
+
+    Source: Sullivan (1999), eq. 1-2 with k = 1.
+    """
+    omega = 2.0 * np.pi * frequency_hz
+    field = np.pi * omega * mu_0 * turns * strands / (resistivity * breadth)
+    return 1.0 + np.square(field) * strand_diameter**6 / 768.0
+
+
+def wire_ratio(
+    frequency_hz: Array, strands: Array, turns: Array, diameter: Array, outer_factor: Array, breadth: Array,
+    resistivity: Array,
+) -> Array:
+    """Ac over dc resistance of a winding of (parallel) solid round wires by Dowell's method [-].
+
+    A wire of diameter d counts as a square one of side d sqrt(pi)/2; the porosity is the copper's share of the breadth.
+
+    Args:
+        frequency_hz, strands, turns, breadth, resistivity: as in `litz_ratio`.
+        diameter: bare wire diameter [m].
+        outer_factor: outer over bare diameter [-].
+    """
+    per_layer = np.maximum(breadth / (diameter * outer_factor), 1.0)
+    layers = np.maximum(strands * turns / per_layer, 1.0)
+    side = 0.5 * np.sqrt(np.pi) * diameter
+    porosity = np.minimum(side * np.minimum(per_layer, strands * turns) / breadth, 1.0)
+    return dowell_ratio(side / skin_depth(frequency_hz, resistivity) * np.sqrt(porosity), layers)
+
+
+def foil_ratio(frequency_hz: Array, turns: Array, thickness: Array, resistivity: Array) -> Array:
+    """Ac over dc resistance of a foil winding of one turn a layer, by Dowell's method [-]."""
+    return dowell_ratio(thickness / skin_depth(frequency_hz, resistivity), turns)

@@ -1,0 +1,84 @@
+"""The operating points at which every candidate is evaluated, from the specification alone."""
+
+from __future__ import annotations
+
+from dataclasses import dataclass
+
+import numpy as np
+from numpy.typing import NDArray
+
+from models.specification import (
+    CALIFORNIAN_WEIGHTS,
+    EUROPEAN_WEIGHTS,
+    STAND_ALONE,
+    Specification,
+)
+
+Array = NDArray[np.float64]
+
+
+@dataclass(frozen=True)
+class OperatingPoints:
+    """Operating points on one axis q: load levels, thermal worst points, distortion point, modulation limit points.
+
+    Attributes:
+        load_level: apparent power over rated (q,) [-].
+        output_voltage: rms phase voltage (q,) [V].
+        output_current: rms phasor of the phase current, lagging negative imaginary (q,) [A].
+        dc_voltage: (q,) [V].
+        loads, thermal, modulation: slices of the axis; losses are computed on `losses` = loads and thermal points.
+        distortion: index of the point for ripple, distortion and capacitor ripple (rated current, greatest dc voltage).
+        rated: index of rated load at nominal voltages.
+    """
+
+    load_level: Array
+    output_voltage: Array
+    output_current: NDArray[np.complex128]
+    dc_voltage: Array
+    loads: slice
+    thermal: slice
+    losses: slice
+    modulation: slice
+    distortion: int
+    rated: int
+
+    def weights(self, weights: dict[float, float]) -> Array:
+        """Weights of the load levels on the `loads` slice [-]."""
+        return np.array([weights.get(float(level), 0.0) for level in self.load_level[self.loads]])
+
+
+def operating_points(specification: Specification) -> OperatingPoints:
+    """List the operating points of a specification.
+
+    - every load level of the European, the Californian and the study's own weighting at nominal voltages and unity
+      power factor;
+    - thermal points: rated apparent power at the least ac and the greatest dc voltage, at unity and least power factor;
+    - distortion point: rated power at nominal ac and greatest dc voltage;
+    - modulation points: nominal ac at least dc voltage, and greatest ac at nominal dc voltage, both while delivering
+      lagging current at the least power factor, which asks most of the bridge.
+    """
+    spec = specification
+    levels = sorted({*EUROPEAN_WEIGHTS, *CALIFORNIAN_WEIGHTS, *spec.weights, 1.0})
+    low_ac = spec.phase_voltage_v if spec.application == STAND_ALONE else spec.phase_voltage_min_v
+    high_ac = spec.phase_voltage_v if spec.application == STAND_ALONE else spec.phase_voltage_max_v
+    lag = spec.power_factor_min
+    rows = [(level, spec.phase_voltage_v, 1.0, spec.dc_voltage_v) for level in levels]
+    count = len(rows)
+    rows += [(1.0, low_ac, 1.0, spec.dc_voltage_max_v), (1.0, low_ac, lag, spec.dc_voltage_max_v)]
+    rows += [(1.0, spec.phase_voltage_v, 1.0, spec.dc_voltage_max_v)]
+    rows += [(1.0, spec.phase_voltage_v, lag, spec.dc_voltage_min_v), (1.0, high_ac, lag, spec.dc_voltage_v)]
+    level, voltage, factor, dc = np.array(rows).T
+    current = level * spec.apparent_power_va / (spec.phases * voltage)
+    phasor = current * (factor - 1j * np.sqrt(1.0 - factor**2))
+    return OperatingPoints(
+        load_level=level,
+        output_voltage=voltage,
+        output_current=phasor,
+        dc_voltage=dc,
+        loads=slice(0, count),
+        thermal=slice(count, count + 2),
+        losses=slice(0, count + 2),
+        distortion=count + 2,
+        modulation=slice(count + 3, count + 5),
+        rated=levels.index(1.0),
+    )

@@ -1,0 +1,153 @@
+"""Output filter L-C(-L) with a resistor in series with the capacitor: phasors at line frequency, transfer at harmonics.
+
+All quantities per phase. The bridge must supply the voltage drop of the filter, so its modulation index follows from the
+phasor circuit, not from the grid voltage alone. Sources: Liserre, Blaabjerg, Hansen (2005) for the LCL filter; circuit laws.
+"""
+
+from __future__ import annotations
+
+from dataclasses import dataclass
+
+import numpy as np
+from numpy.typing import NDArray
+
+Array = NDArray[np.float64]
+Complex = NDArray[np.complex128]
+
+
+@dataclass(frozen=True)
+class Filter:
+    """Filter elements per phase, broadcastable arrays: inductances [H], capacitance [F], damping resistance [ohm]."""
+
+    inverter_inductance: Array
+    grid_inductance: Array
+    capacitance: Array
+    damping: Array
+
+    def columns(self) -> Filter:
+        """The same elements with one more trailing axis, to meet load points or harmonics."""
+        return Filter(
+            self.inverter_inductance[..., None],
+            self.grid_inductance[..., None],
+            self.capacitance[..., None],
+            self.damping[..., None],
+        )
+
+
+@dataclass(frozen=True)
+class LinePhasors:
+    """Line-frequency phasors referred to the output voltage at angle zero (rms).
+
+    Attributes:
+        bridge_voltage: voltage the bridge must make [V].
+        inverter_current: current of the bridge-side inductor [A].
+        capacitor_current: current of the filter capacitor [A].
+        capacitor_voltage: voltage across capacitor and its damping resistor [V].
+        output_current: current into grid or load [A].
+    """
+
+    bridge_voltage: Complex
+    inverter_current: Complex
+    capacitor_current: Complex
+    capacitor_voltage: Complex
+    output_current: Complex
+
+    @property
+    def displacement(self) -> Array:
+        """Angle by which the bridge's current lags its voltage [rad]."""
+        return np.angle(self.bridge_voltage * np.conj(self.inverter_current))
+
+
+def line_phasors(
+    circuit: Filter, line_frequency_hz: float, output_voltage: Array, output_current: Complex
+) -> LinePhasors:
+    """Solve the filter at line frequency.
+
+    Args:
+        circuit: filter elements, broadcastable with the operating points.
+        line_frequency_hz: [Hz].
+        output_voltage: rms phase voltage at the terminals [V].
+        output_current: rms phasor of the delivered current, lagging negative imaginary [A].
+
+    Returns:
+        The phasors at every operating point.
+    """
+    omega = 2.0 * np.pi * line_frequency_hz
+    capacitor_voltage = output_voltage + 1j * omega * circuit.grid_inductance * output_current
+    susceptance = 1j * omega * circuit.capacitance
+    capacitor_current = capacitor_voltage * susceptance / (1.0 + susceptance * circuit.damping)
+    inverter_current = output_current + capacitor_current
+    bridge_voltage = capacitor_voltage + 1j * omega * circuit.inverter_inductance * inverter_current
+    return LinePhasors(bridge_voltage, inverter_current, capacitor_current, capacitor_voltage, output_current)
+
+
+def resonance_hz(circuit: Filter) -> Array:
+    """Resonance frequency of an LCL filter, of L1-C where the grid-side inductance is zero [Hz].
+
+    Source: Liserre, Blaabjerg, Hansen (2005): sqrt((L1 + L2)/(L1 L2 C))/(2 pi).
+    """
+    l1, l2 = circuit.inverter_inductance, circuit.grid_inductance
+    effective = np.where(l2 > 0.0, l1 * l2 / np.where(l2 > 0.0, l1 + l2, 1.0), l1)
+    return 1.0 / (2.0 * np.pi * np.sqrt(effective * circuit.capacitance))
+
+
+@dataclass(frozen=True)
+class HarmonicTransfer:
+    """Responses to one volt of bridge voltage at given frequencies: currents [A/V], output voltage [V/V]."""
+
+    output_current: Array
+    inverter_current: Array
+    capacitor_current: Array
+    capacitor_voltage: Array
+
+
+def grid_transfer(circuit: Filter, frequency_hz: Array) -> HarmonicTransfer:
+    """Transfer of an LCL filter into a stiff grid (a short circuit for harmonics), magnitudes.
+
+    Args:
+        circuit: elements with a trailing axis of length one.
+        frequency_hz: harmonic frequencies on the trailing axis [Hz].
+    """
+    omega = 2.0 * np.pi * frequency_hz
+    x1, x2 = omega * circuit.inverter_inductance, omega * circuit.grid_inductance
+    reactance = 1.0 / (omega * circuit.capacitance)
+    # Zc = Rd - jX; denominator Z1 Z2 + Zc (Z1 + Z2), with Z1 = j x1, Z2 = j x2
+    real = reactance * (x1 + x2) - x1 * x2
+    imag = circuit.damping * (x1 + x2)
+    denominator = np.sqrt(real * real + imag * imag)
+    branch = np.sqrt(circuit.damping**2 + reactance * reactance)
+    return HarmonicTransfer(
+        output_current=branch / denominator,
+        inverter_current=np.sqrt(circuit.damping**2 + (x2 - reactance) ** 2) / denominator,
+        capacitor_current=x2 / denominator,
+        capacitor_voltage=branch * x2 / denominator,
+    )
+
+
+def open_circuit_transfer(circuit: Filter, frequency_hz: Array) -> HarmonicTransfer:
+    """Transfer of an LC filter without load, the worst case for the output voltage's switching ripple, magnitudes.
+
+    Args:
+        circuit: elements with a trailing axis of length one.
+        frequency_hz: harmonic frequencies on the trailing axis [Hz].
+    """
+    omega = 2.0 * np.pi * frequency_hz
+    reactance = 1.0 / (omega * circuit.capacitance)
+    net = omega * circuit.inverter_inductance - reactance
+    impedance = np.sqrt(circuit.damping**2 + net * net)
+    branch = np.sqrt(circuit.damping**2 + reactance * reactance)
+    current = 1.0 / impedance
+    return HarmonicTransfer(
+        output_current=np.zeros_like(current),
+        inverter_current=current,
+        capacitor_current=current,
+        capacitor_voltage=branch * current,
+    )
+
+
+def output_impedance(circuit: Filter, frequency_hz: Array) -> Array:
+    """Open-loop output impedance of an LC filter, L1 beside C with its damping, magnitude [ohm]."""
+    omega = 2.0 * np.pi * frequency_hz
+    z1 = 1j * omega * circuit.inverter_inductance
+    zc = circuit.damping - 1j / (omega * circuit.capacitance)
+    return np.abs(z1 * zc / (z1 + zc))

@@ -1,0 +1,138 @@
+"""What every candidate must meet: each requirement named, with its value, its limit and its margin."""
+
+from __future__ import annotations
+
+from dataclasses import dataclass
+
+import numpy as np
+from numpy.typing import NDArray
+
+from models.capacitors import AcFilterCapacitor, DcLink
+from models.catalog.gathered import Gathered
+from models.catalog.parts import Catalog
+from models.cooling import SinkPoint
+from models.designs import Designs
+from models.distortion import Distortion
+from models.evaluation import Constraint, at_least, at_most
+from models.magnetics.inductor import Inductor
+from models.operating_points import OperatingPoints
+from models.output_filter import Filter, LinePhasors
+from models.semiconductors.bridge_losses import BridgeLosses
+from models.specification import GRID_CONNECTED, DesignRules, Specification
+from models.waveforms.bridges import Bridge
+from models.waveforms.state import WaveformState
+from models.waveforms.tables import WaveformTables
+
+Array = NDArray[np.float64]
+
+
+@dataclass(frozen=True)
+class Findings:
+    """Results of the single models for one population, on their way to requirements and roll-up."""
+
+    designs: Designs
+    circuit: Filter
+    phasors: LinePhasors
+    state: WaveformState
+    device: Gathered
+    losses: BridgeLosses
+    sink: SinkPoint
+    distortion: Distortion
+    linear_distortion: Distortion
+    inductors: tuple[Inductor, Inductor]
+    ac_capacitor: AcFilterCapacitor
+    dc_link: DcLink
+    resonance: Array
+
+
+def requirements(
+    spec: Specification, catalog: Catalog, bridge: Bridge, tables: WaveformTables, points: OperatingPoints, found: Findings
+) -> tuple[Constraint, ...]:
+    """List all requirements of a population in a fixed order."""
+    return (
+        *_bridge(spec, tables, points, found),
+        *_semiconductors(spec, bridge, points, found),
+        *_inductor("inverter-side inductor", spec.rules, points, found.inductors[0], found.designs.inverter_inductor.material, catalog),
+        *_inductor("grid-side inductor", spec.rules, points, found.inductors[1], found.designs.grid_inductor.material, catalog),
+        *_filter(spec, found),
+        *_quality(spec, catalog, found),
+    )
+
+
+def _bridge(
+    spec: Specification, tables: WaveformTables, points: OperatingPoints, found: Findings
+) -> tuple[Constraint, ...]:
+    limit = tables.linear_limit[found.state.scheme[:, 0]] * (1.0 - spec.rules.modulation_reserve)
+    device = found.device
+    use = spec.dc_voltage_max_v / device.voltage_rating_v[:, 0, 0]
+    return (
+        at_most("modulation index", "", found.state.modulation_index[:, points.modulation].max(-1), limit),
+        at_most("dc voltage over device rating", "", use, device.voltage_use_limit[:, 0, 0]),
+    )
+
+
+def _semiconductors(
+    spec: Specification, bridge: Bridge, points: OperatingPoints, found: Findings
+) -> tuple[Constraint, ...]:
+    losses, device, designs = found.losses, found.device, found.designs
+    limit = device.junction_limit_c[:, 0, 0] - spec.rules.junction_margin
+    switch = losses.switch_temperature[:, points.thermal].max(-1)
+    diode = losses.diode_temperature[:, points.thermal].max(-1)
+    packages = 2.0 * bridge.leg_copies * len(bridge.modelled_legs) * designs.parallel
+    covered = packages * device.mounting_area_m2[:, 0, 0] / found.sink.base_area_m2
+    scale = limit - spec.ambient_c
+    return (
+        at_most("switch junction temperature", "degC", switch, limit, scale),
+        at_most("diode junction temperature", "degC", diode, limit, scale),
+        at_least("electro-thermal fixed point", "", losses.settled.astype(float), 1.0),
+        at_least("heatsink on the curve", "", found.sink.available.astype(float), 1.0),
+        at_most("heatsink base covered by devices", "", covered, spec.rules.sink_base_coverage),
+    )
+
+
+def _inductor(
+    name: str, rules: DesignRules, points: OperatingPoints, part: Inductor, material: NDArray[np.int64], catalog: Catalog
+) -> tuple[Constraint, ...]:
+    limit = np.minimum(rules.winding_temperature_limit, catalog.core_materials.column("temperature_limit_c")[material])
+    temperature = part.temperature[:, points.thermal].max(-1)
+    return (
+        at_most(f"{name} flux density", "of saturation", part.flux_share, rules.saturation_use),
+        at_least(f"{name} inductance left at peak", "", part.inductance_left, rules.inductance_left),
+        at_least(f"{name} inductance reached", "of required", part.inductance_share, 0.999),
+        at_most(f"{name} gap", "of winding breadth", part.gap_share, rules.gap_share_limit),
+        at_most(f"{name} window fill", "", part.window_fill, 1.0),
+        at_most(f"{name} temperature", "degC", temperature, limit, limit - 40.0),
+    )
+
+
+def _filter(spec: Specification, found: Findings) -> tuple[Constraint, ...]:
+    rules, designs = spec.rules, found.designs
+    omega = 2.0 * np.pi * spec.line_frequency_hz
+    reactance = omega * (designs.inverter_inductance_h + designs.grid_inductance_h) / spec.base_impedance_ohm
+    reactive = omega * designs.filter_capacitance_f * spec.base_impedance_ohm
+    return (
+        at_least("filter resonance over line frequency", "", found.resonance / spec.line_frequency_hz, rules.resonance_over_line),
+        at_most(
+            "filter resonance over switching frequency", "", found.resonance / designs.switching_frequency_hz,
+            rules.resonance_over_switching,
+        ),
+        at_most("filter reactance", "of base impedance", reactance, rules.total_inductance_share),
+        at_most("filter capacitor reactive power", "of rated power", reactive, rules.capacitor_reactive_share),
+        at_most("filter capacitor current", "of its limit", found.ac_capacitor.current_share, 1.0),
+    )
+
+
+def _quality(spec: Specification, catalog: Catalog, found: Findings) -> tuple[Constraint, ...]:
+    worst = found.distortion
+    if spec.application == GRID_CONNECTED:
+        total = catalog.limit_table(spec.limit_table).total_limit
+        return (
+            at_most("total current distortion", "of rated current", worst.total, min(total, 1.0)),
+            at_most("tightest harmonic", "of its limit", worst.worst_share, 1.0),
+        )
+    linear = found.linear_distortion
+    return (
+        at_most("voltage distortion, linear load", "of rated voltage", linear.total, spec.voltage_thd_limit_linear),
+        at_most("voltage distortion, rectifier load", "of rated voltage", worst.total, spec.voltage_thd_limit_rectifier),
+        at_most("tightest voltage line", "of its limit", worst.worst_share, 1.0),
+    )

@@ -1,0 +1,175 @@
+"""Roll-up: losses, volumes, masses and prices of all components, efficiencies, and what the columns of a result show."""
+
+from __future__ import annotations
+
+import numpy as np
+from numpy.typing import NDArray
+
+from models.catalog.parts import Catalog
+from models.evaluation import Constraint, Evaluation
+from models.operating_points import OperatingPoints
+from models.requirements import Findings
+from models.specification import CALIFORNIAN_WEIGHTS, EUROPEAN_WEIGHTS, Specification
+from models.waveforms.bridges import Bridge
+
+Array = NDArray[np.float64]
+PACKAGE_DENSITY = 4000.0  # kg/m3, moulded package with copper tab, estimate
+CONTROL_DENSITY = 600.0  # kg/m3, populated boards in air, estimate
+HOUSING_DENSITY = 250.0  # kg/m3 of the whole volume, sheet or cast housing, estimate
+
+
+def weighted_efficiency(efficiency: Array, weights: Array) -> Array:
+    """Weighted efficiency sum(w_i eta_i) of efficiencies over load levels on the last axis [-].
+
+    Source: EN 50530 (European), Californian Energy Commission protocol.
+    """
+    return efficiency @ weights
+
+
+def roll_up(
+    spec: Specification, catalog: Catalog, bridge: Bridge, points: OperatingPoints, found: Findings,
+    constraints: tuple[Constraint, ...],
+) -> Evaluation:
+    """Put the single results together.
+
+    Returns:
+        The evaluation of the population over the load levels.
+    """
+    losses = _losses(spec, catalog, points, found)
+    level = points.load_level[points.loads]
+    power = level * spec.apparent_power_va
+    efficiency = power / (power + sum(losses.values()))
+    volumes, masses = _volumes(spec, bridge, found), _masses(bridge, found, spec)
+    return Evaluation(
+        load_level=level,
+        rated=points.rated,
+        losses=losses,
+        volumes=volumes,
+        masses=masses | {"housing": HOUSING_DENSITY * np.sum(list(volumes.values()), axis=0)},
+        prices=_prices(spec, catalog, bridge, found),
+        efficiency=efficiency,
+        efficiency_weighted=weighted_efficiency(efficiency, points.weights(spec.weights)),
+        efficiency_european=weighted_efficiency(efficiency, points.weights(EUROPEAN_WEIGHTS)),
+        efficiency_californian=weighted_efficiency(efficiency, points.weights(CALIFORNIAN_WEIGHTS)),
+        distortion=found.distortion,
+        constraints=constraints,
+        details=_details(spec, points, found),
+    )
+
+
+def _losses(spec: Specification, catalog: Catalog, points: OperatingPoints, found: Findings) -> dict[str, Array]:
+    """Losses per component at the load levels (n, p) [W]."""
+    loads, bridge = points.loads, found.losses
+    first, second = found.inductors
+    capacitor_current = np.abs(found.phasors.capacitor_current[:, loads])
+    ripple = found.state.ripple_mean_square[:, loads]
+    damping = spec.phases * found.designs.damping_resistance_ohm[:, None] * (capacitor_current**2 + ripple)
+    running = points.load_level[loads] >= spec.rules.fan_load_start
+    shape = damping.shape
+    auxiliary = np.full(shape, float(catalog.cost.auxiliary_power_at(spec.apparent_power_va)))
+    return {
+        "conduction": bridge.conduction[:, loads],
+        "switching": bridge.switching[:, loads],
+        "recovery": bridge.recovery[:, loads],
+        "output_charge": bridge.output_charge[:, loads],
+        "dead_time": bridge.dead_time[:, loads],
+        "gate_drive": bridge.gate[:, loads],
+        "inverter_inductor_winding": spec.phases * first.winding_loss[:, loads],
+        "inverter_inductor_core": spec.phases * first.core_loss[:, loads],
+        "grid_inductor_winding": spec.phases * second.winding_loss[:, loads],
+        "grid_inductor_core": spec.phases * second.core_loss[:, loads],
+        "filter_capacitor": found.ac_capacitor.loss[:, loads],
+        "damping": damping,
+        "dc_link": found.dc_link.loss[:, loads],
+        "fan": found.sink.fan_power_w[:, None] * running,
+        "auxiliary": auxiliary,
+    }
+
+
+def _packages(bridge: Bridge, found: Findings) -> Array:
+    return 2.0 * bridge.leg_copies * len(bridge.modelled_legs) * found.designs.parallel
+
+
+def _volumes(spec: Specification, bridge: Bridge, found: Findings) -> dict[str, Array]:
+    """Boxed volumes per component (n,) [m3]; `unused` is what the packing factor leaves empty."""
+    first, second = found.inductors
+    rules = spec.rules
+    control = rules.control_volume_base + rules.control_volume_per_va * spec.apparent_power_va
+    boxes = {
+        "semiconductors": _packages(bridge, found) * found.device.package_volume_m3[:, 0, 0],
+        "heatsink": found.sink.volume_m3,
+        "inverter_inductor": spec.phases * first.volume,
+        "grid_inductor": spec.phases * second.volume,
+        "filter_capacitor": found.ac_capacitor.volume,
+        "dc_link": found.dc_link.volume,
+        "control": np.full(len(found.designs), control),
+    }
+    used = np.sum(list(boxes.values()), axis=0)
+    return boxes | {"unused": used * (1.0 / rules.packing_factor - 1.0)}
+
+
+def _masses(bridge: Bridge, found: Findings, spec: Specification) -> dict[str, Array]:
+    first, second = found.inductors
+    rules = spec.rules
+    control = rules.control_volume_base + rules.control_volume_per_va * spec.apparent_power_va
+    return {
+        "semiconductors": _packages(bridge, found) * found.device.package_volume_m3[:, 0, 0] * PACKAGE_DENSITY,
+        "heatsink": found.sink.mass_kg,
+        "inverter_inductor": spec.phases * first.mass,
+        "grid_inductor": spec.phases * second.mass,
+        "filter_capacitor": found.ac_capacitor.mass,
+        "dc_link": found.dc_link.mass,
+        "control": np.full(len(found.designs), control * CONTROL_DENSITY),
+    }
+
+
+def _prices(spec: Specification, catalog: Catalog, bridge: Bridge, found: Findings) -> dict[str, Array]:
+    """Prices per component (n,) [currency]."""
+    first, second = found.inductors
+    device, designs, cost = found.device, found.designs, catalog.cost
+    each = device.price_per_area_per_m2[:, 0, 0] * designs.die_area_m2 + device.package_price[:, 0, 0]
+    count = len(designs)
+    return {
+        "semiconductors": _packages(bridge, found) * each,
+        "heatsink": found.sink.price,
+        "inverter_inductor": spec.phases * first.price,
+        "grid_inductor": spec.phases * second.price,
+        "filter_capacitor": found.ac_capacitor.price,
+        "dc_link": found.dc_link.price,
+        "control": np.full(count, float(cost.control_price_at(spec.apparent_power_va))),
+        "housing": np.full(count, float(cost.housing_price_at(spec.apparent_power_va))),
+    }
+
+
+def _details(spec: Specification, points: OperatingPoints, found: Findings) -> dict[str, Array]:
+    """Intermediate quantities by column name; the unit is the name's suffix."""
+    state, losses, link = found.state, found.losses, found.dc_link
+    details = {
+        "modulation_index_rated": state.modulation_index[:, points.rated],
+        "modulation_index_greatest": state.modulation_index[:, points.modulation].max(-1),
+        "ripple_peak_to_peak_a": state.peak_ripple[:, points.distortion],
+        "ripple_share": state.peak_ripple[:, points.distortion] / (np.sqrt(2.0) * spec.rated_current_a),
+        "resonance_hz": found.resonance,
+        "junction_temperature_c": losses.switch_temperature[:, points.thermal].max(-1),
+        "diode_temperature_c": losses.diode_temperature[:, points.thermal].max(-1),
+        "sink_temperature_c": losses.sink_temperature[:, points.thermal].max(-1),
+        "heat_worst_w": losses.heat[:, points.thermal].max(-1),
+        "filter_capacitor_current_share": found.ac_capacitor.current_share,
+        "dc_link_capacitance_f": link.capacitance,
+        "dc_link_series": link.series,
+        "dc_link_parallel": link.parallel,
+        "dc_link_ripple_share": link.ripple_share,
+        "distortion_low_order": found.distortion.low,
+        "tightest_harmonic_order": found.distortion.worst_order,
+        "tightest_harmonic_share": found.distortion.worst_share,
+    }
+    for name, part in zip(("inverter_inductor", "grid_inductor"), found.inductors, strict=True):
+        details |= {
+            f"{name}_flux_t": part.flux_density,
+            f"{name}_gap_m": part.gap,
+            f"{name}_window_fill": part.window_fill,
+            f"{name}_inductance_left": part.inductance_left,
+            f"{name}_temperature_c": part.temperature[:, points.thermal].max(-1),
+            f"{name}_resistance_ohm": part.resistance,
+        }
+    return details

@@ -1,0 +1,1 @@
+"""Semiconductor losses and junction temperatures of a bridge."""

@@ -1,0 +1,230 @@
+"""Losses and junction temperatures of all switches of a bridge, at every operating point."""
+
+from __future__ import annotations
+
+from dataclasses import dataclass
+from typing import Any
+
+import numpy as np
+from numpy.typing import NDArray
+
+from models.catalog.gathered import Gathered
+from models.semiconductors.conduction import Path, diode_path, switch_path
+from models.semiconductors.junction import junction_to_case, solve
+from models.semiconductors.switching import LegSwitching, dead_time_loss, gate_drive_loss, leg_switching
+from models.waveforms.bridges import Bridge
+from models.waveforms.device_currents import leg_currents
+from models.waveforms.state import WaveformState
+from models.waveforms.tables import WaveformTables
+
+Array = NDArray[np.float64]
+
+
+@dataclass(frozen=True)
+class Cooling:
+    """How the dies are cooled.
+
+    Attributes:
+        ambient_c: air at the heatsink [degC].
+        sink_rise: (power (n, p) [W]) -> heatsink rise (n, p) [K].
+    """
+
+    ambient_c: float
+    sink_rise: Any
+
+
+@dataclass(frozen=True)
+class BridgeLosses:
+    """Losses of the whole bridge (n, p) [W] and the hottest junctions (n, p) [degC].
+
+    Attributes:
+        conduction, switching, recovery, output_charge, dead_time, gate: [W].
+        switch_temperature, diode_temperature: hottest junction of its kind; of a shared die both are the same [degC].
+        sink_temperature: [degC].
+        settled: true where the electro-thermal fixed point was found (n,).
+    """
+
+    conduction: Array
+    switching: Array
+    recovery: Array
+    output_charge: Array
+    dead_time: Array
+    gate: Array
+    switch_temperature: Array
+    diode_temperature: Array
+    sink_temperature: Array
+    settled: NDArray[np.bool_]
+
+    @property
+    def heat(self) -> Array:
+        """Loss that goes into the heatsink (gate-drive power is spent in the drivers) [W]."""
+        return self.conduction + self.switching + self.recovery + self.output_charge + self.dead_time
+
+
+@dataclass(frozen=True)
+class _PositionLoss:
+    """What heats one switch position, per modelled leg (n, p, l); temperature-dependent parts kept apart."""
+
+    switch: Path
+    diode: Path
+    currents: tuple[Array, Array, Array, Array]
+    shared: NDArray[np.bool_]
+    on_hot: Array
+    off_hot: Array
+    recovery_hot: Array
+    fixed: Array
+    hot_c: Array
+    coefficients: tuple[Array, Array, Array]
+
+    def conduction(self, switch_c: Array, diode_c: Array) -> tuple[Array, Array]:
+        """Conduction loss in the switch die and in the diode die [W]."""
+        switch_average, switch_square, diode_average, diode_square = self.currents
+        forward = self.switch.loss(switch_c, switch_average, switch_square)
+        channel = self.switch.slope_at(switch_c) * diode_square
+        apart = self.diode.loss(diode_c, diode_average, diode_square)
+        return forward + np.where(self.shared, channel, 0.0), np.where(self.shared, 0.0, apart)
+
+    def switching(self, switch_c: Array) -> Array:
+        """Turn-on and turn-off loss of the position [W]."""
+        k_on, k_off, _ = self.coefficients
+        cooler = self.hot_c - switch_c
+        return self.on_hot * (1.0 - k_on * cooler) + self.off_hot * (1.0 - k_off * cooler)
+
+    def recovery(self, diode_c: Array) -> Array:
+        """Recovery loss of the position [W]."""
+        return self.recovery_hot * (1.0 - self.coefficients[2] * (self.hot_c - diode_c))
+
+    def dies(self, switch_c: Array, diode_c: Array) -> tuple[Array, Array]:
+        """Total loss of the switch die and of the diode die [W]."""
+        forward, apart = self.conduction(switch_c, diode_c)
+        hot_diode = np.where(self.shared, switch_c, diode_c)
+        recovered = self.recovery(hot_diode)
+        switch = forward + self.switching(switch_c) + self.fixed + np.where(self.shared, recovered, 0.0)
+        return switch, apart + np.where(self.shared, 0.0, recovered)
+
+
+def bridge_losses(
+    device: Gathered, parallel: Array, die_area: Array, frequency: Array, bridge: Bridge, tables: WaveformTables,
+    state: WaveformState, dc_voltage: Array, cooling: Cooling,
+) -> BridgeLosses:
+    """Solve the bridge's losses and junction temperatures.
+
+    Args:
+        device: catalogue columns with three trailing axes' worth of shape (n, 1, 1).
+        parallel: packages per switch position (n,) [-].
+        die_area: switch die per package (n,) [m2].
+        frequency: switching frequency (n,) [Hz].
+        bridge, tables: the bridge and its waveform tables.
+        state: waveform state at the loss points (n, p).
+        dc_voltage: (p,) [V].
+        cooling: ambient and heatsink.
+
+    Returns:
+        Losses of all positions together and the hottest junctions.
+    """
+    total_area = (parallel * die_area)[:, None, None]
+    legs = _leg_switching(device, total_area, frequency, tables, state, dc_voltage)
+    position = _position_loss(device, total_area, frequency, tables, state, legs)
+    dead = position.fixed - 0.5 * legs.output_charge
+    count = parallel[:, None, None]
+    resistances = (
+        junction_to_case(device, die_area[:, None, None]) / count,
+        junction_to_case(device, die_area[:, None, None] * device.diode_area_share)
+        * device.diode_junction_case_factor
+        / count,
+        device.case_sink_k_per_w / count,
+    )
+    positions = 2.0 * bridge.leg_copies
+
+    def temperatures_from(temperature: Array) -> Array:
+        switch, diode = position.dies(temperature[0], temperature[1])
+        heat = positions * (switch + diode).sum(-1)
+        case = cooling.ambient_c + cooling.sink_rise(heat)[..., None] + resistances[2] * (switch + diode)
+        return np.stack([case + resistances[0] * switch, case + resistances[1] * diode])
+
+    start = np.full((2, *position.fixed.shape), cooling.ambient_c + 30.0)
+    point = solve(temperatures_from, start)
+    switch_c, diode_c = point.temperature
+    switch, diode = position.dies(switch_c, diode_c)
+    conducting = position.conduction(switch_c, diode_c)
+    gate = gate_drive_loss(device, total_area, frequency[:, None, None]) * tables.leg_switching[state.scheme]
+    return BridgeLosses(
+        conduction=positions * (conducting[0] + conducting[1]).sum(-1),
+        switching=positions * position.switching(switch_c).sum(-1),
+        recovery=positions * position.recovery(np.where(position.shared, switch_c, diode_c)).sum(-1),
+        output_charge=positions * 0.5 * legs.output_charge.sum(-1),
+        dead_time=positions * dead.sum(-1),
+        gate=positions * np.broadcast_to(gate.sum(-1), switch.shape[:-1]),
+        switch_temperature=switch_c.max(-1),
+        diode_temperature=np.where(device.shared_die[..., 0], switch_c.max(-1), diode_c.max(-1)),
+        sink_temperature=cooling.ambient_c + cooling.sink_rise(positions * (switch + diode).sum(-1)),
+        settled=point.converged.all(axis=(0, 2, 3)),
+    )
+
+
+def _leg_switching(
+    device: Gathered, total_area: Array, frequency: Array, tables: WaveformTables, state: WaveformState,
+    dc_voltage: Array,
+) -> LegSwitching:
+    """Switching of every modelled leg, (n, p, l): legs that rest at line frequency have none."""
+    sine = state.peak_current * np.cos(state.displacement)
+    cosine = state.peak_current * np.sin(state.displacement)
+    current = sine[..., None] * np.sin(tables.angle) - cosine[..., None] * np.cos(tables.angle)
+    offset = tables.read(tables.commutation_offset, state.scheme, state.row, state.weight)
+    offset *= state.ripple_unit[..., None]
+    plain = _TwoAxes(device)
+    leg = leg_switching(
+        plain, total_area[..., 0], dc_voltage, frequency[:, None], current, offset, tables.switching_share[state.scheme]
+    )
+    active = tables.leg_switching[state.scheme]
+    spread = (getattr(leg, name)[..., None] * active for name in ("turn_on_hot", "turn_off_hot", "recovery_hot"))
+    on, off, recovery = spread
+    return LegSwitching(on, off, recovery, leg.output_charge[..., None] * active, leg.mean_current[..., None] * active)
+
+
+class _TwoAxes:
+    """View of gathered device columns (n, 1, 1) as (n, 1)."""
+
+    def __init__(self, device: Gathered) -> None:
+        self._device = device
+
+    def __getattr__(self, name: str) -> Any:
+        return getattr(self._device, name)[..., 0]
+
+
+def _position_loss(
+    device: Gathered, total_area: Array, frequency: Array, tables: WaveformTables, state: WaveformState,
+    legs: LegSwitching,
+) -> _PositionLoss:
+    scheme = state.scheme
+    index = np.minimum(state.modulation_index, tables.linear_limit[scheme])
+    reference = tables.reference_constant[scheme] + index[..., None, None] * tables.reference_slope[scheme]
+    per_unit = leg_currents(reference, state.displacement[..., None])
+    peak = state.peak_current[..., None]
+    square = peak**2 + 2.0 * state.ripple_mean_square[..., None]
+    currents = (
+        per_unit.switch_average * peak,
+        per_unit.switch_mean_square * square,
+        per_unit.diode_average * peak,
+        per_unit.diode_mean_square * square,
+    )
+    switch, diode = switch_path(device, total_area), diode_path(device, total_area)
+    line_square = 0.5 * square
+    dead = dead_time_loss(device, legs.mean_current, line_square, diode.slope, frequency[:, None, None])
+    active = tables.leg_switching[scheme]
+    return _PositionLoss(
+        switch=switch,
+        diode=diode,
+        currents=currents,
+        shared=device.shared_die,
+        on_hot=0.5 * legs.turn_on_hot,
+        off_hot=0.5 * legs.turn_off_hot,
+        recovery_hot=0.5 * legs.recovery_hot,
+        fixed=0.5 * (legs.output_charge + dead * active),
+        hot_c=device.energy_hot_c,
+        coefficients=(
+            device.turn_on_temperature_coefficient_per_k,
+            device.turn_off_temperature_coefficient_per_k,
+            device.recovery_temperature_coefficient_per_k,
+        ),
+    )

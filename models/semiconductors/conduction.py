@@ -1,0 +1,65 @@
+"""Conduction of switch and freewheeling path: threshold plus resistance, scaled by die area, over temperature.
+
+Silicon IGBT and diode: v = V0(T) + r(T) i. MOSFET and HEMT: R_on(T), which also carries reverse current (synchronous
+rectification); their diode conducts in the dead time only. Resistances scale with 1/area.
+"""
+
+from __future__ import annotations
+
+from dataclasses import dataclass
+from typing import Any
+
+import numpy as np
+from numpy.typing import NDArray
+
+Array = NDArray[np.float64]
+COLD_C = 25.0
+
+
+@dataclass(frozen=True)
+class Path:
+    """One conducting path at two temperatures: threshold [V] and slope resistance [ohm], cold and its growth.
+
+    `slope_log` is ln(r_hot/r_cold) per kelvin [1/K], `threshold_slope` is in [V/K].
+    """
+
+    threshold: Array
+    threshold_slope: Array
+    slope: Array
+    slope_log: Array
+
+    def threshold_at(self, temperature: Array) -> Array:
+        """Threshold voltage [V] at a junction temperature [degC]."""
+        return self.threshold + self.threshold_slope * (temperature - COLD_C)
+
+    def slope_at(self, temperature: Array) -> Array:
+        """Slope resistance [ohm]: r25 (r_hot/r25)^((T - 25)/(T_hot - 25)) at a junction temperature [degC]."""
+        return self.slope * np.exp(self.slope_log * (temperature - COLD_C))
+
+    def loss(self, temperature: Array, average: Array, mean_square: Array) -> Array:
+        """Conduction loss [W] from average [A] and mean-square current [A2]."""
+        return self.threshold_at(temperature) * average + self.slope_at(temperature) * mean_square
+
+
+def switch_path(device: Any, total_area: Array) -> Path:
+    """Path through the switch of `total_area` [m2] of parallel dies; `device` has the catalogue's device fields."""
+    span = device.hot_c - COLD_C
+    cold = device.slope_area_25_ohm_m2
+    return Path(
+        threshold=device.threshold_25_v,
+        threshold_slope=(device.threshold_hot_v - device.threshold_25_v) / span,
+        slope=cold * device.dynamic_resistance_factor / total_area,
+        slope_log=np.log(device.slope_area_hot_ohm_m2 / cold) / span,
+    )
+
+
+def diode_path(device: Any, total_area: Array) -> Path:
+    """Path through the freewheeling (or body) diode beside `total_area` [m2] of switch dies."""
+    span = device.hot_c - COLD_C
+    cold = device.diode_slope_area_25_ohm_m2
+    return Path(
+        threshold=device.diode_threshold_25_v,
+        threshold_slope=(device.diode_threshold_hot_v - device.diode_threshold_25_v) / span,
+        slope=cold / (total_area * device.diode_area_share),
+        slope_log=np.log(device.diode_slope_area_hot_ohm_m2 / cold) / span,
+    )

@@ -1,0 +1,123 @@
+"""Switching loss of a leg: energies at the true commutated currents, averaged over the line angle.
+
+E = e V_ref I_ref (I/I_ref)^k_i (V/V_ref)^k_v [1 - k_T (T_hot - T)] with I_ref = rated current of the dies. At each angle one
+of the leg's switches turns on at |i| - offset and off at |i| + offset, the offset being half the local ripple (exactly: the
+flux deviation at the instant). Where the current reverses within the period, turn-on is soft: no overlap, no recovery, and
+the load current recharges the output capacitance. Output charge of unipolar parts costs Q_oss V per hard turn-on (Kasper,
+Burkart, Deboy, Kolar 2016); a data-sheet turn-on energy that contains it is reduced by it first.
+"""
+
+from __future__ import annotations
+
+from dataclasses import dataclass
+from typing import Any
+
+import numpy as np
+from numpy.typing import NDArray
+
+Array = NDArray[np.float64]
+
+
+@dataclass(frozen=True)
+class LegSwitching:
+    """Loss of one switching leg, per its modelled operating points.
+
+    Attributes:
+        turn_on_hot, turn_off_hot, recovery_hot: both switches together, at the hot reference temperature [W].
+        output_charge: loss of charging the output capacitances [W].
+        mean_current: mean |i| over the line period [A].
+    """
+
+    turn_on_hot: Array
+    turn_off_hot: Array
+    recovery_hot: Array
+    output_charge: Array
+    mean_current: Array
+
+
+def energy_scale(energy: Array, voltage: Array, exponent: Array, device: Any) -> Array:
+    """Energy per ampere of reference current at the working voltage [J/A].
+
+    Args:
+        energy: per ampere and volt at the reference point [J/(A V)].
+        voltage: commutated voltage [V].
+        exponent: voltage exponent k_v [-].
+        device: catalogue fields.
+    """
+    reference = device.energy_reference_voltage_v
+    return energy * reference * (voltage / reference) ** exponent
+
+
+def output_charge(device: Any, voltage: Array, total_area: Array) -> Array:
+    """Output charge of the parallel dies at a voltage, Q ~ V^x [C]."""
+    share = (voltage / device.energy_reference_voltage_v) ** device.output_charge_voltage_exponent
+    return device.output_charge_c_per_m2 * share * total_area
+
+
+def overlap_turn_on_energy(device: Any) -> Array:
+    """Turn-on energy without the output charge that a data sheet's figure contains [J/(A V)]."""
+    contained = device.output_charge_c_per_m2 / device.reference_current_density_a_per_m2
+    return np.maximum(
+        device.turn_on_energy_j_per_av - np.where(device.turn_on_includes_output_charge, contained, 0.0), 0.0
+    )
+
+
+def leg_switching(
+    device: Any, total_area: Array, voltage: Array, frequency: Array, current: Array, offset: Array, share: Array
+) -> LegSwitching:
+    """Average the switching energies of one leg over half a line period.
+
+    Args:
+        device: catalogue fields, broadcastable with the operating points (n, p).
+        total_area: switch die area of one position [m2].
+        voltage: dc voltage [V].
+        frequency: switching frequency [Hz].
+        current: phase current at the angles of the last axis, (n, p, a) [A].
+        offset: current deviation at the switching instants, (n, p, a) [A].
+        share: 1 where the leg switches, 0 where it is clamped, (n, 1, a) or (n, p, a) [-].
+
+    Returns:
+        Losses of both switches of the leg, (n, p).
+    """
+    count = current.shape[-1]
+    magnitude = np.abs(current)
+    reference = (device.reference_current_density_a_per_m2 * total_area)[..., None]
+    at_on = (magnitude - offset) / reference
+    at_off = (magnitude + offset) / reference
+    hard = (at_on > 0.0) * share
+    at_on = np.maximum(at_on, 1e-9)
+    at_off = np.maximum(at_off, 1e-9)
+    per_second = frequency / count * reference[..., 0]
+    exponents = (device.turn_on_current_exponent, device.turn_off_current_exponent, device.recovery_current_exponent)
+    on, off, recovery = (exponent[..., None] for exponent in exponents)
+    overlap = energy_scale(overlap_turn_on_energy(device), voltage, device.energy_voltage_exponent, device)
+    turn_off = energy_scale(device.turn_off_energy_j_per_av, voltage, device.energy_voltage_exponent, device)
+    recovered = energy_scale(device.recovery_energy_j_per_av, voltage, device.recovery_voltage_exponent, device)
+    charge = output_charge(device, voltage, total_area)
+    return LegSwitching(
+        turn_on_hot=overlap * per_second * np.einsum("...a,...a->...", hard, at_on**on),
+        turn_off_hot=turn_off * per_second * np.einsum("...a,...a->...", np.broadcast_to(share, at_off.shape), at_off**off),
+        recovery_hot=recovered * per_second * np.einsum("...a,...a->...", hard, at_on**recovery),
+        output_charge=charge * voltage * frequency / count * hard.sum(-1),
+        mean_current=magnitude.mean(-1),
+    )
+
+
+def gate_drive_loss(device: Any, total_area: Array, frequency: Array) -> Array:
+    """Power to drive the gates of one switch position [W]."""
+    return device.gate_charge_c_per_m2 * total_area * device.gate_swing_v * frequency
+
+
+def dead_time_loss(device: Any, mean_current: Array, mean_square: Array, diode_slope: Array, frequency: Array) -> Array:
+    """Extra loss of one leg while a unipolar part's diode carries the current in the dead times [W].
+
+    Args:
+        device: catalogue fields.
+        mean_current: mean |i| [A].
+        mean_square: mean square of i [A2].
+        diode_slope: slope resistance of the diode [ohm].
+        frequency: switching frequency [Hz].
+    """
+    share = 2.0 * device.dead_time_s * frequency
+    drop = device.diode_threshold_25_v * mean_current + diode_slope * mean_square
+    return np.where(device.shared_die, share * drop, 0.0)

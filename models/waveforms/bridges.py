@@ -1,0 +1,143 @@
+"""Bridges and their modulation schemes: the registry every other waveform module works from.
+
+A scheme is given by the reference of each leg over the line angle, u = 2 d - 1 with the on-state share d of the
+upper switch, by the sign of each leg's triangular carrier, and by the weights that turn leg states into the voltage
+across the filter. Ripple, spectrum and device currents follow from these alone, so that a new scheme is one entry.
+
+Modulation index M: peak of a leg's fundamental over V_dc/2 (three phases), peak fundamental of the bridge voltage
+over V_dc (single phase). Carriers are symmetrical triangles (double-edge modulation), naturally sampled.
+Sources: Holmes & Lipo, Pulse Width Modulation for Power Converters (2003), ch. 3-6; Hava, Kerkman, Lipo (1999).
+"""
+
+from __future__ import annotations
+
+from collections.abc import Callable
+from dataclasses import dataclass
+
+import numpy as np
+from numpy.typing import NDArray
+
+Array = NDArray[np.float64]
+SINE_LIMIT = 1.0
+INJECTION_LIMIT = 2.0 / np.sqrt(3.0)
+
+
+@dataclass(frozen=True)
+class Modulation:
+    """One modulation scheme.
+
+    Attributes:
+        name: its name in the trade [-].
+        linear_limit: greatest modulation index of the linear range [-].
+        references: (angle [rad], modulation index) -> references of all legs, legs on the last axis [-].
+        carrier_sign: +1 or -1 per leg; -1 for a leg that compares with the inverted carrier [-].
+        switching_legs: 1 for a leg that switches at carrier frequency, 0 for one at line frequency [-].
+    """
+
+    name: str
+    linear_limit: float
+    references: Callable[[Array, Array], Array]
+    carrier_sign: tuple[int, ...]
+    switching_legs: tuple[int, ...]
+
+
+@dataclass(frozen=True)
+class Bridge:
+    """One bridge: how leg states make the filter voltage, and which schemes it can run.
+
+    Attributes:
+        name: its name in the trade [-].
+        phases: 1 or 3 [-].
+        voltage_weights: filter voltage of phase one over V_dc = sum(weight x leg state) [-].
+        modelled_legs: indexes of legs whose currents differ; others repeat them [-].
+        leg_copies: physical legs per modelled leg [-].
+        current_sign: sign of the phase-one current in each modelled leg [-].
+        index_base: V_dc times this is the peak fundamental at M = 1 [-].
+        modulations: the schemes.
+    """
+
+    name: str
+    phases: int
+    voltage_weights: tuple[float, ...]
+    modelled_legs: tuple[int, ...]
+    leg_copies: int
+    current_sign: tuple[int, ...]
+    index_base: float
+    modulations: tuple[Modulation, ...]
+
+    def modulation_index(self, name: str) -> int:
+        """Return the position of a scheme. Raises ValueError naming the known ones."""
+        names = [scheme.name for scheme in self.modulations]
+        if name not in names:
+            raise ValueError(f"modulation {name!r} of {self.name}: expected one of {', '.join(names)}")
+        return names.index(name)
+
+
+def _opposed_sines(angle: Array, index: Array) -> Array:
+    wave = index * np.sin(angle)
+    return np.stack([wave, -wave], axis=-1)
+
+
+def _one_leg_at_line_frequency(angle: Array, index: Array) -> Array:
+    sine = np.sin(angle)
+    polarity = np.where(sine >= 0, 1.0, -1.0)
+    fast, slow = np.broadcast_arrays(2.0 * index * sine - polarity, -polarity)
+    return np.stack([fast, slow], axis=-1)
+
+
+def _three_sines(angle: Array, index: Array) -> Array:
+    shifts = np.array([0.0, -2.0, 2.0]) * np.pi / 3.0
+    return index[..., None] * np.sin(angle[..., None] + shifts)
+
+
+def _third_harmonic(angle: Array, index: Array) -> Array:
+    angle, index = np.broadcast_arrays(angle, index)
+    return _three_sines(angle, index) + (index * np.sin(3.0 * angle) / 6.0)[..., None]
+
+
+def _centred_space_vector(angle: Array, index: Array) -> Array:
+    sines = _three_sines(*np.broadcast_arrays(angle, index))
+    return sines - 0.5 * (sines.max(-1) + sines.min(-1))[..., None]
+
+
+def _clamped_at_voltage_peak(angle: Array, index: Array) -> Array:
+    angle, index = np.broadcast_arrays(angle, index)
+    sines = _three_sines(angle, index)
+    order = _three_sines(angle, np.ones_like(index))
+    top, bottom = order.max(-1), order.min(-1)
+    zero = np.where(top >= -bottom, 1.0 - index * top, -1.0 - index * bottom)
+    return sines + zero[..., None]
+
+
+FULL_BRIDGE = Bridge(
+    name="single-phase full bridge",
+    phases=1,
+    voltage_weights=(1.0, -1.0),
+    modelled_legs=(0, 1),
+    leg_copies=1,
+    current_sign=(1, -1),
+    index_base=1.0,
+    modulations=(
+        Modulation("bipolar", SINE_LIMIT, _opposed_sines, (1, -1), (1, 1)),
+        Modulation("unipolar", SINE_LIMIT, _opposed_sines, (1, 1), (1, 1)),
+        Modulation("one leg at line frequency", SINE_LIMIT, _one_leg_at_line_frequency, (1, 1), (1, 0)),
+    ),
+)
+SIX_SWITCH_BRIDGE = Bridge(
+    name="three-phase six-switch bridge",
+    phases=3,
+    voltage_weights=(2.0 / 3.0, -1.0 / 3.0, -1.0 / 3.0),
+    modelled_legs=(0,),
+    leg_copies=3,
+    current_sign=(1,),
+    index_base=0.5,
+    modulations=(
+        Modulation("sine-triangle", SINE_LIMIT, _three_sines, (1, 1, 1), (1, 1, 1)),
+        Modulation("third harmonic one sixth", INJECTION_LIMIT, _third_harmonic, (1, 1, 1), (1, 1, 1)),
+        Modulation("centred space vector", INJECTION_LIMIT, _centred_space_vector, (1, 1, 1), (1, 1, 1)),
+        Modulation(
+            "discontinuous clamped at voltage peak", INJECTION_LIMIT, _clamped_at_voltage_peak, (1, 1, 1), (1, 1, 1)
+        ),
+    ),
+)
+BRIDGES = {bridge.name: bridge for bridge in (FULL_BRIDGE, SIX_SWITCH_BRIDGE)}

@@ -1,0 +1,103 @@
+"""One switching period in exact pieces: voltage levels, flux, ripple, current at the switching instants.
+
+Within a period the line quantities stand still (f_s >> f_1). The legs' states cut the period into intervals of constant
+voltage; the flux is piecewise linear. Harmonic-flux method: Hava, Kerkman, Lipo (1999); Holmes & Lipo (2003), ch. 2, 5.
+"""
+
+from __future__ import annotations
+
+from dataclasses import dataclass
+from functools import cached_property
+
+import numpy as np
+from numpy.typing import NDArray
+
+Array = NDArray[np.float64]
+
+
+@dataclass(frozen=True)
+class SwitchingPeriod:
+    """A period normalised to length 1 and V_dc = 1; leading axes are any operating points.
+
+    Attributes:
+        duty: on-state share of each leg's upper switch, legs last [-].
+        carrier_sign: carrier sign per leg [-].
+        weights: voltage weight per leg [-].
+    """
+
+    duty: Array
+    carrier_sign: tuple[int, ...]
+    weights: tuple[float, ...]
+
+    @cached_property
+    def instants(self) -> tuple[Array, Array]:
+        """Turn-on and turn-off instant of every leg's upper switch, as distance from the period's centre [-]."""
+        sign = np.array(self.carrier_sign)
+        half = np.where(sign > 0, 0.5 * self.duty, 0.5 * (1.0 - self.duty))
+        return np.where(sign > 0, 0.5 - half, 0.5 + half), np.where(sign > 0, 0.5 + half, 0.5 - half)
+
+    @cached_property
+    def times(self) -> Array:
+        """Bounds of the intervals, ascending, on the last axis [-]."""
+        edges = np.concatenate(self.instants, axis=-1)
+        shape = (*edges.shape[:-1], 1)
+        return np.concatenate([np.zeros(shape), np.sort(edges, axis=-1), np.ones(shape)], axis=-1)
+
+    @cached_property
+    def steps(self) -> Array:
+        """Length of each interval [-]."""
+        return np.diff(self.times, axis=-1)
+
+    @cached_property
+    def levels(self) -> Array:
+        """Voltage in each interval [V_dc]."""
+        middle = np.abs(0.5 * (self.times[..., 1:] + self.times[..., :-1]) - 0.5)
+        total = np.zeros_like(middle)
+        for leg, (sign, weight) in enumerate(zip(self.carrier_sign, self.weights, strict=True)):
+            duty = self.duty[..., leg, None]
+            state = middle < 0.5 * duty if sign > 0 else middle > 0.5 * (1.0 - duty)
+            total += weight * state
+        return total
+
+    @cached_property
+    def ripple_voltage(self) -> Array:
+        """Voltage less its average over the period, in each interval [V_dc]."""
+        return self.levels - (self.duty @ np.array(self.weights))[..., None]
+
+    @cached_property
+    def flux(self) -> Array:
+        """Flux deviation from its mean at the interval bounds [V_dc T_s]."""
+        start = np.zeros((*self.steps.shape[:-1], 1))
+        raw = np.concatenate([start, np.cumsum(self.ripple_voltage * self.steps, axis=-1)], axis=-1)
+        mean = np.sum(self.steps * 0.5 * (raw[..., 1:] + raw[..., :-1]), axis=-1, keepdims=True)
+        return raw - mean
+
+    @property
+    def peak_to_peak(self) -> Array:
+        """Peak-to-peak flux [V_dc T_s]; times V_dc/(L f_s) it is the ripple current."""
+        return self.flux.max(-1) - self.flux.min(-1)
+
+    @property
+    def mean_square(self) -> Array:
+        """Mean square of the flux deviation [(V_dc T_s)^2]."""
+        left, right = self.flux[..., :-1], self.flux[..., 1:]
+        return np.sum(self.steps * (left * left + left * right + right * right), axis=-1) / 3.0
+
+    @property
+    def voltage_mean_square(self) -> Array:
+        """Mean square of the voltage [V_dc^2]."""
+        return np.sum(self.steps * self.levels**2, axis=-1)
+
+    def flux_at_turn_on(self, leg: int) -> Array:
+        """Flux deviation at the turn-on instant of a leg's upper switch [V_dc T_s]."""
+        instant = self.instants[0][..., leg, None]
+        passed = np.clip(instant - self.times[..., :-1], 0.0, self.steps)
+        return self.flux[..., 0] + np.sum(self.ripple_voltage * passed, axis=-1)
+
+    def loss_shape(self, alpha: float, beta: float) -> Array:
+        """Integral of |v|^alpha over the period times flux^(beta - alpha), the waveform part of the iGSE [-].
+
+        Source: Venkatachalam, Sullivan, Abdallah, Tacca (2002).
+        """
+        swing = np.maximum(self.peak_to_peak, 1e-9)
+        return np.sum(np.abs(self.ripple_voltage) ** alpha * self.steps, axis=-1) * swing ** (beta - alpha)

@@ -1,0 +1,156 @@
+"""Waveform quantities of all schemes of a bridge, tabulated once over the modulation index.
+
+Normalised by V_dc, L and f_s they depend on the modulation index alone, so a population reads them by index arithmetic on
+a uniform grid instead of solving each candidate's switching periods again.
+"""
+
+from __future__ import annotations
+
+from dataclasses import dataclass
+from functools import lru_cache
+
+import numpy as np
+from numpy.typing import NDArray
+
+from models.waveforms.bridges import BRIDGES, Bridge, Modulation
+from models.waveforms.device_currents import reference_harmonics
+from models.waveforms.spectrum import ANGLE_SAMPLES, CARRIER_GROUPS, sidebands
+from models.waveforms.switching_period import SwitchingPeriod
+
+Array = NDArray[np.float64]
+Ints = NDArray[np.int64]
+INDEX_POINTS = 72
+INDEX_MAX = 1.16
+ANGLE_POINTS = 18
+FINE = 6
+SIDEBAND_COUNT = 24
+
+
+@dataclass(frozen=True)
+class WaveformTables:
+    """Tables of one bridge; axes: s scheme, i modulation index, a angle over half the line period, k sideband.
+
+    Attributes:
+        angle: angles of the `a` axis, midpoints of equal cells over (0, pi) [rad].
+        linear_limit: (s,) greatest modulation index [-].
+        peak_ripple: (s, i) greatest peak-to-peak ripple over the line period [V_dc/(L f_s)].
+        ripple_mean_square: (s, i) mean square ripple [(V_dc/(L f_s))^2].
+        commutation_offset: (s, i, a) turn-on happens at |i| - offset, turn-off at |i| + offset [V_dc/(L f_s)].
+        switching_share: (s, a) 1 where the leg switches at the carrier frequency, 0 where it is clamped [-].
+        leg_switching: (s, l) 1 for modelled legs that switch at the carrier frequency [-].
+        reference_constant, reference_slope: (s, l, order) leg reference harmonics U = constant + M slope, seen from
+            the leg's own current [-].
+        on_mean, on_cosine: (s, i) mean squared bridge state and its cos 2 theta moment [-].
+        sideband_carrier, sideband_line: (s, k) multiples m and n [-].
+        sideband_listed: (s, k) false for the rest lines of carrier groups [-].
+        sideband_amplitude: (s, i, k) peak of the filter voltage [V_dc].
+        group_ripple: (s, i, m - 1) mean square ripple current of each carrier group [(V_dc/(L f_s))^2].
+        main_carrier: (s,) carrier multiple that carries most of the ripple [-].
+        core_loss_shape: (s, i, exponent pair) mean iGSE shape integral for `exponents` [-].
+        exponents: the (alpha, beta) pairs.
+    """
+
+    angle: Array
+    linear_limit: Array
+    peak_ripple: Array
+    ripple_mean_square: Array
+    commutation_offset: Array
+    switching_share: Array
+    leg_switching: Array
+    reference_constant: NDArray[np.complex128]
+    reference_slope: NDArray[np.complex128]
+    on_mean: Array
+    on_cosine: Array
+    sideband_carrier: Array
+    sideband_line: Array
+    sideband_listed: NDArray[np.bool_]
+    sideband_amplitude: Array
+    group_ripple: Array
+    main_carrier: Array
+    core_loss_shape: Array
+    exponents: tuple[tuple[float, float], ...]
+
+    def position(self, modulation_index: Array) -> tuple[Ints, Array]:
+        """Lower grid row and weight of the upper one for modulation indexes of any shape [-]."""
+        scaled = np.clip(modulation_index * ((INDEX_POINTS - 1) / INDEX_MAX), 0.0, INDEX_POINTS - 1.000001)
+        row = scaled.astype(np.int64)
+        return row, scaled - row
+
+    @staticmethod
+    def read(table: Array, scheme: Ints, row: Ints, weight: Array) -> Array:
+        """Interpolate `table` (s, i, ...) at (scheme, row + weight); table's trailing axes are appended."""
+        lower = table[scheme, row]
+        share = weight.reshape(weight.shape + (1,) * (lower.ndim - weight.ndim))
+        return lower + share * (table[scheme, row + 1] - lower)
+
+
+@lru_cache(maxsize=8)
+def waveform_tables(bridge_name: str, exponents: tuple[tuple[float, float], ...] = ()) -> WaveformTables:
+    """Build the tables of a bridge for the given core-loss exponent pairs.
+
+    Args:
+        bridge_name: a key of BRIDGES.
+        exponents: Steinmetz (alpha, beta) pairs to prepare [-].
+
+    Raises:
+        KeyError: for an unknown bridge.
+    """
+    bridge = BRIDGES[bridge_name]
+    rows = [_scheme_rows(bridge, scheme, exponents) for scheme in bridge.modulations]
+    stacked = {key: np.stack([row[key] for row in rows]) for key in rows[0]}
+    angle = np.pi * (np.arange(ANGLE_POINTS) + 0.5) / ANGLE_POINTS
+    limits = np.array([scheme.linear_limit for scheme in bridge.modulations])
+    return WaveformTables(angle=angle, linear_limit=limits, exponents=exponents, **stacked)
+
+
+def _scheme_rows(
+    bridge: Bridge, scheme: Modulation, exponents: tuple[tuple[float, float], ...]
+) -> dict[str, NDArray]:
+    index = np.linspace(0.0, INDEX_MAX, INDEX_POINTS)
+    fine_count = ANGLE_POINTS * FINE
+    angle = np.pi * (np.arange(fine_count) + 0.5) / fine_count
+    usable = np.minimum(index, scheme.linear_limit)
+    duty = 0.5 * (1.0 + scheme.references(*np.broadcast_arrays(angle, usable[:, None])))
+    period = SwitchingPeriod(np.clip(duty, 0.0, 1.0), scheme.carrier_sign, bridge.voltage_weights)
+    on_square = period.voltage_mean_square
+    offset = -period.flux_at_turn_on(0)
+    clamped = (duty[-1, :, 0] >= 1.0 - 1e-12) | (duty[-1, :, 0] <= 1e-12)
+    clamped &= (duty[1, :, 0] >= 1.0 - 1e-12) | (duty[1, :, 0] <= 1e-12)
+    shapes = [period.loss_shape(alpha, beta).mean(-1) for alpha, beta in exponents]
+    spectrum = sidebands(bridge, scheme, usable, on_square.mean(-1), SIDEBAND_COUNT)
+    constant, slope = _leg_references(bridge, scheme)
+    groups = np.arange(1, CARRIER_GROUPS + 1)
+    group_ripple = spectrum.group_mean_square / (2.0 * np.pi * groups) ** 2
+    return {
+        "peak_ripple": period.peak_to_peak.max(-1),
+        "ripple_mean_square": period.mean_square.mean(-1),
+        "commutation_offset": _cell_means(offset),
+        "switching_share": _cell_means(1.0 - clamped),
+        "leg_switching": np.array([float(scheme.switching_legs[leg]) for leg in bridge.modelled_legs]),
+        "reference_constant": constant,
+        "reference_slope": slope,
+        "on_mean": on_square.mean(-1),
+        "on_cosine": (on_square * np.cos(2.0 * angle)).mean(-1),
+        "sideband_carrier": spectrum.carrier_multiple,
+        "sideband_line": spectrum.line_multiple,
+        "sideband_listed": spectrum.listed,
+        "sideband_amplitude": spectrum.amplitude,
+        "group_ripple": group_ripple,
+        "main_carrier": np.array(float(groups[np.argmax(group_ripple.mean(0))])),
+        "core_loss_shape": np.stack(shapes, axis=-1) if shapes else np.zeros((INDEX_POINTS, 0)),
+    }
+
+
+def _cell_means(fine: Array) -> Array:
+    return fine.reshape(*fine.shape[:-1], ANGLE_POINTS, FINE).mean(-1)
+
+
+def _leg_references(bridge: Bridge, scheme: Modulation) -> tuple[NDArray, NDArray]:
+    angle = 2.0 * np.pi * (np.arange(ANGLE_SAMPLES) + 0.5) / ANGLE_SAMPLES
+    legs, signs = list(bridge.modelled_legs), np.array(bridge.current_sign)[:, None]
+    low, high = (
+        reference_harmonics(signs * scheme.references(angle, np.full_like(angle, level))[:, legs].T)
+        for level in (0.25, 0.75)
+    )
+    slope = 2.0 * (high - low)
+    return low - 0.25 * slope, slope

@@ -114,7 +114,7 @@ class Inverter:
             self.bridge, self.tables, designs.modulation, phasors, points.dc_voltage,
             1.0 / (designs.inverter_inductance_h * designs.switching_frequency_hz),
         )
-        device = Gathered(self.catalog.devices, designs.device, 2)
+        device = Gathered(self.catalog.devices, designs.device, 1)
         losing = _at_points(state, points.losses)
         sink = self._sink(designs)
         losses = bridge_losses(
@@ -122,7 +122,7 @@ class Inverter:
             self.tables, losing, points.dc_voltage[points.losses],
             Cooling(spec.ambient_c, lambda power: self._rise(designs, power)),
         )
-        distortion, linear = self._distortion(columns, state, designs, device.dead_time_s[:, 0, 0])
+        distortion, linear = self._distortion(columns, state, designs, device.dead_time_s[:, 0])
         inductors = self._inductors(designs, phasors, state, distortion)
         capacitors = self._capacitors(designs, phasors, losing)
         findings = Findings(

@@ -53,7 +53,11 @@ def requirements(
         *_bridge(spec, tables, points, found),
         *_semiconductors(spec, bridge, points, found),
         *_inductor("inverter-side inductor", spec.rules, points, found.inductors[0], found.designs.inverter_inductor.material, catalog),
-        *_inductor("grid-side inductor", spec.rules, points, found.inductors[1], found.designs.grid_inductor.material, catalog),
+        *(
+            _inductor("grid-side inductor", spec.rules, points, found.inductors[1], found.designs.grid_inductor.material, catalog)
+            if np.any(found.designs.grid_inductance_h > 0.0)
+            else ()
+        ),
         *_filter(spec, found),
         *_quality(spec, catalog, found),
     )
@@ -64,10 +68,10 @@ def _bridge(
 ) -> tuple[Constraint, ...]:
     limit = tables.linear_limit[found.state.scheme[:, 0]] * (1.0 - spec.rules.modulation_reserve)
     device = found.device
-    use = spec.dc_voltage_max_v / device.voltage_rating_v[:, 0, 0]
+    use = spec.dc_voltage_max_v / device.voltage_rating_v[:, 0]
     return (
         at_most("modulation index", "", found.state.modulation_index[:, points.modulation].max(-1), limit),
-        at_most("dc voltage over device rating", "", use, device.voltage_use_limit[:, 0, 0]),
+        at_most("dc voltage over device rating", "", use, device.voltage_use_limit[:, 0]),
     )
 
 
@@ -75,17 +79,18 @@ def _semiconductors(
     spec: Specification, bridge: Bridge, points: OperatingPoints, found: Findings
 ) -> tuple[Constraint, ...]:
     losses, device, designs = found.losses, found.device, found.designs
-    limit = device.junction_limit_c[:, 0, 0] - spec.rules.junction_margin
+    limit = device.junction_limit_c[:, 0] - spec.rules.junction_margin
     switch = losses.switch_temperature[:, points.thermal].max(-1)
     diode = losses.diode_temperature[:, points.thermal].max(-1)
     packages = 2.0 * bridge.leg_copies * len(bridge.modelled_legs) * designs.parallel
-    covered = packages * device.mounting_area_m2[:, 0, 0] / found.sink.base_area_m2
-    scale = limit - spec.ambient_c
+    covered = packages * device.mounting_area_m2[:, 0] / found.sink.base_area_m2
+    scale, hot = limit - spec.ambient_c, spec.rules.sink_temperature_limit
     return (
         at_most("switch junction temperature", "degC", switch, limit, scale),
         at_most("diode junction temperature", "degC", diode, limit, scale),
-        at_least("electro-thermal fixed point", "", losses.settled.astype(float), 1.0),
-        at_least("heatsink on the curve", "", found.sink.available.astype(float), 1.0),
+        at_most("heatsink temperature", "degC", losses.sink_temperature[:, points.thermal].max(-1), hot, hot - spec.ambient_c),
+        at_least("no thermal runaway", "yes/no", losses.settled.astype(float), 0.5),
+        at_least("heatsink can be built", "yes/no", found.sink.available.astype(float), 0.5),
         at_most("heatsink base covered by devices", "", covered, spec.rules.sink_base_coverage),
     )
 
@@ -98,7 +103,7 @@ def _inductor(
     return (
         at_most(f"{name} flux density", "of saturation", part.flux_share, rules.saturation_use),
         at_least(f"{name} inductance left at peak", "", part.inductance_left, rules.inductance_left),
-        at_least(f"{name} inductance reached", "of required", part.inductance_share, 0.999),
+        at_least(f"{name} inductance possible", "of required", part.inductance_share, 0.999),
         at_most(f"{name} gap", "of winding breadth", part.gap_share, rules.gap_share_limit),
         at_most(f"{name} window fill", "", part.window_fill, 1.0),
         at_most(f"{name} temperature", "degC", temperature, limit, limit - 40.0),
@@ -106,7 +111,7 @@ def _inductor(
 
 
 def _filter(spec: Specification, found: Findings) -> tuple[Constraint, ...]:
-    rules, designs = spec.rules, found.designs
+    rules, designs, link = spec.rules, found.designs, found.dc_link
     omega = 2.0 * np.pi * spec.line_frequency_hz
     reactance = omega * (designs.inverter_inductance_h + designs.grid_inductance_h) / spec.base_impedance_ohm
     reactive = omega * designs.filter_capacitance_f * spec.base_impedance_ohm
@@ -119,6 +124,7 @@ def _filter(spec: Specification, found: Findings) -> tuple[Constraint, ...]:
         at_most("filter reactance", "of base impedance", reactance, rules.total_inductance_share),
         at_most("filter capacitor reactive power", "of rated power", reactive, rules.capacitor_reactive_share),
         at_most("filter capacitor current", "of its limit", found.ac_capacitor.current_share, 1.0),
+        at_most("dc-link capacitor count", "", link.series * link.parallel, rules.dc_link_units_limit),
     )
 
 

@@ -96,7 +96,7 @@ def _volumes(spec: Specification, bridge: Bridge, found: Findings) -> dict[str, 
     rules = spec.rules
     control = rules.control_volume_base + rules.control_volume_per_va * spec.apparent_power_va
     boxes = {
-        "semiconductors": _packages(bridge, found) * found.device.package_volume_m3[:, 0, 0],
+        "semiconductors": _packages(bridge, found) * found.device.package_volume_m3[:, 0],
         "heatsink": found.sink.volume_m3,
         "inverter_inductor": spec.phases * first.volume,
         "grid_inductor": spec.phases * second.volume,
@@ -113,7 +113,7 @@ def _masses(bridge: Bridge, found: Findings, spec: Specification) -> dict[str, A
     rules = spec.rules
     control = rules.control_volume_base + rules.control_volume_per_va * spec.apparent_power_va
     return {
-        "semiconductors": _packages(bridge, found) * found.device.package_volume_m3[:, 0, 0] * PACKAGE_DENSITY,
+        "semiconductors": _packages(bridge, found) * found.device.package_volume_m3[:, 0] * PACKAGE_DENSITY,
         "heatsink": found.sink.mass_kg,
         "inverter_inductor": spec.phases * first.mass,
         "grid_inductor": spec.phases * second.mass,
@@ -127,7 +127,7 @@ def _prices(spec: Specification, catalog: Catalog, bridge: Bridge, found: Findin
     """Prices per component (n,) [currency]."""
     first, second = found.inductors
     device, designs, cost = found.device, found.designs, catalog.cost
-    each = device.price_per_area_per_m2[:, 0, 0] * designs.die_area_m2 + device.package_price[:, 0, 0]
+    each = device.price_per_area_per_m2[:, 0] * designs.die_area_m2 + device.package_price[:, 0]
     count = len(designs)
     return {
         "semiconductors": _packages(bridge, found) * each,

@@ -45,6 +45,8 @@ class DesignRules:
     dc_voltage_use: float = rule(0.90, "", "greatest dc voltage over the rating of the dc-link capacitors")
     dc_balancing_current: float = rule(0.002, "A", "current in the balancing resistors of series dc-link capacitors")
     surge_current_factor: float = rule(1.0, "", "peak current to carry without saturation over the rated peak")
+    sink_temperature_limit: float = rule(95.0, "degC", "greatest heatsink temperature (touch, boards beside it)")
+    dc_link_units_limit: float = rule(40.0, "", "greatest number of dc-link capacitors")
     sink_base_coverage: float = rule(0.6, "", "greatest share of the heatsink base that the devices may cover")
     internal_air_rise: float = rule(10.0, "K", "air inside the housing, around inductors, over ambient")
     fan_load_start: float = rule(0.25, "", "load level from which the fan runs")

@@ -140,9 +140,9 @@ class SearchSpace:
         return np.array([variable.parts for variable in self.variables], dtype=np.int64)
 
     @cached_property
-    def categories(self) -> NDArray[np.bool_]:
-        """True for the axes of categories, whose choices have no order."""
-        return np.array([variable.scale == CATEGORY for variable in self.variables])
+    def redrawn(self) -> NDArray[np.bool_]:
+        """True for axes that a mutation draws anew: categories, and whole numbers, whose steps small moves never cross."""
+        return self.parts > 0
 
     def repaired(self, points: Array) -> Array:
         """Clip points to the cube and snap categories and whole numbers to the middles of their parts."""

@@ -17,6 +17,7 @@ from models.magnetics.winding import copper_resistivity
 Array = NDArray[np.float64]
 RATIO_TEMPERATURE_C = 100.0  # copper temperature for skin and proximity ratios
 THERMAL_STEPS = 3
+NO_ROLLOFF = 1e12  # A/m, half-permeability field that no bias comes near
 
 
 @dataclass(frozen=True)
@@ -54,7 +55,8 @@ class Inductor:
         winding_loss, core_loss: [W]; temperature: [degC].
         flux_density: peak [T]; flux_share: over the hot saturation flux density [-].
         inductance_left: inductance at peak current over its initial value [-].
-        inductance_share: inductance at peak current that the build reaches over the required one [-].
+        inductance_share: inductance that the build can reach at peak current (a gapped core: without gap) over the
+            required one [-].
         gap: total air gap, 0 for powder [m]; gap_share: over the winding breadth [-].
         window_fill: copper over what the window takes [-].
         volume: boxed [m3]; mass: [kg]; price: [currency].
@@ -91,7 +93,7 @@ def inductor(catalog: Catalog, built: Build, duty: InductorDuty, labour: float) 
     gap = gap_for_inductance(
         built.turns, duty.inductance, built.area, built.path, material.initial_permeability, built.breadth
     )
-    half_field = np.where(powder, material.rolloff_field_a_per_m, 1e12)
+    half_field = np.where(powder, material.rolloff_field_a_per_m, NO_ROLLOFF)
     exponent = np.where(powder, material.rolloff_exponent, 1.0)
     core = (built.area, built.path, material.initial_permeability, half_field, exponent)
     at_peak = powder_inductance(built.turns, duty.peak_current, *core)
@@ -107,7 +109,7 @@ def inductor(catalog: Catalog, built: Build, duty: InductorDuty, labour: float) 
         flux_density=flux,
         flux_share=flux / material.saturation_t,
         inductance_left=np.where(powder, at_peak / at_rest, 1.0),
-        inductance_share=np.where(powder, at_peak / duty.inductance, np.where(gap >= 0.0, 1.0, at_rest / duty.inductance)),
+        inductance_share=at_peak / duty.inductance,
         gap=np.where(powder, 0.0, np.maximum(gap, 0.0)),
         gap_share=np.where(powder, 0.0, gap / built.breadth),
         window_fill=built.window_fill,

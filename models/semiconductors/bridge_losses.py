@@ -63,7 +63,7 @@ class BridgeLosses:
 
 @dataclass(frozen=True)
 class _PositionLoss:
-    """What heats one switch position, per modelled leg (n, p, l); temperature-dependent parts kept apart."""
+    """What heats one switch position, per modelled leg (l, n, p); temperature-dependent parts kept apart."""
 
     switch: Path
     diode: Path
@@ -110,7 +110,7 @@ def bridge_losses(
     """Solve the bridge's losses and junction temperatures.
 
     Args:
-        device: catalogue columns with three trailing axes' worth of shape (n, 1, 1).
+        device: catalogue columns of shape (n, 1).
         parallel: packages per switch position (n,) [-].
         die_area: switch die per package (n,) [m2].
         frequency: switching frequency (n,) [Hz].
@@ -122,14 +122,14 @@ def bridge_losses(
     Returns:
         Losses of all positions together and the hottest junctions.
     """
-    total_area = (parallel * die_area)[:, None, None]
+    total_area = (parallel * die_area)[:, None]
     legs = _leg_switching(device, total_area, frequency, tables, state, dc_voltage)
     position = _position_loss(device, total_area, frequency, tables, state, legs)
     dead = position.fixed - 0.5 * legs.output_charge
-    count = parallel[:, None, None]
+    count = parallel[:, None]
     resistances = (
-        junction_to_case(device, die_area[:, None, None]) / count,
-        junction_to_case(device, die_area[:, None, None] * device.diode_area_share)
+        junction_to_case(device, die_area[:, None]) / count,
+        junction_to_case(device, die_area[:, None] * device.diode_area_share)
         * device.diode_junction_case_factor
         / count,
         device.case_sink_k_per_w / count,
@@ -138,8 +138,8 @@ def bridge_losses(
 
     def temperatures_from(temperature: Array) -> Array:
         switch, diode = position.dies(temperature[0], temperature[1])
-        heat = positions * (switch + diode).sum(-1)
-        case = cooling.ambient_c + cooling.sink_rise(heat)[..., None] + resistances[2] * (switch + diode)
+        heat = positions * (switch + diode).sum(0)
+        case = cooling.ambient_c + cooling.sink_rise(heat) + resistances[2] * (switch + diode)
         return np.stack([case + resistances[0] * switch, case + resistances[1] * diode])
 
     start = np.full((2, *position.fixed.shape), cooling.ambient_c + 30.0)
@@ -147,49 +147,40 @@ def bridge_losses(
     switch_c, diode_c = point.temperature
     switch, diode = position.dies(switch_c, diode_c)
     conducting = position.conduction(switch_c, diode_c)
-    gate = gate_drive_loss(device, total_area, frequency[:, None, None]) * tables.leg_switching[state.scheme]
+    gate = gate_drive_loss(device, total_area, frequency[:, None]) * _active_legs(tables, state)
     return BridgeLosses(
-        conduction=positions * (conducting[0] + conducting[1]).sum(-1),
-        switching=positions * position.switching(switch_c).sum(-1),
-        recovery=positions * position.recovery(np.where(position.shared, switch_c, diode_c)).sum(-1),
-        output_charge=positions * 0.5 * legs.output_charge.sum(-1),
-        dead_time=positions * dead.sum(-1),
-        gate=positions * np.broadcast_to(gate.sum(-1), switch.shape[:-1]),
-        switch_temperature=switch_c.max(-1),
-        diode_temperature=np.where(device.shared_die[..., 0], switch_c.max(-1), diode_c.max(-1)),
-        sink_temperature=cooling.ambient_c + cooling.sink_rise(positions * (switch + diode).sum(-1)),
-        settled=point.converged.all(axis=(0, 2, 3)),
+        conduction=positions * (conducting[0] + conducting[1]).sum(0),
+        switching=positions * position.switching(switch_c).sum(0),
+        recovery=positions * position.recovery(np.where(position.shared, switch_c, diode_c)).sum(0),
+        output_charge=positions * 0.5 * legs.output_charge.sum(0),
+        dead_time=positions * dead.sum(0),
+        gate=positions * np.broadcast_to(gate.sum(0), switch.shape[1:]),
+        switch_temperature=switch_c.max(0),
+        diode_temperature=np.where(device.shared_die, switch_c.max(0), diode_c.max(0)),
+        sink_temperature=cooling.ambient_c + cooling.sink_rise(positions * (switch + diode).sum(0)),
+        settled=point.converged.all(axis=(0, 1, 3)),
     )
+
+
+def _active_legs(tables: WaveformTables, state: WaveformState) -> Array:
+    """1 for modelled legs that switch at the carrier frequency (l, n, 1) [-]."""
+    return tables.leg_switching.T[:, state.scheme]
 
 
 def _leg_switching(
     device: Gathered, total_area: Array, frequency: Array, tables: WaveformTables, state: WaveformState,
     dc_voltage: Array,
 ) -> LegSwitching:
-    """Switching of every modelled leg, (n, p, l): legs that rest at line frequency have none."""
+    """Switching of every modelled leg, (l, n, p): legs that rest at line frequency have none."""
     sine = state.peak_current * np.cos(state.displacement)
     cosine = state.peak_current * np.sin(state.displacement)
     current = sine[..., None] * np.sin(tables.angle) - cosine[..., None] * np.cos(tables.angle)
     offset = tables.read(tables.commutation_offset, state.scheme, state.row, state.weight)
     offset *= state.ripple_unit[..., None]
-    plain = _TwoAxes(device)
-    leg = leg_switching(
-        plain, total_area[..., 0], dc_voltage, frequency[:, None], current, offset, tables.switching_share[state.scheme]
-    )
-    active = tables.leg_switching[state.scheme]
-    spread = (getattr(leg, name)[..., None] * active for name in ("turn_on_hot", "turn_off_hot", "recovery_hot"))
-    on, off, recovery = spread
-    return LegSwitching(on, off, recovery, leg.output_charge[..., None] * active, leg.mean_current[..., None] * active)
-
-
-class _TwoAxes:
-    """View of gathered device columns (n, 1, 1) as (n, 1)."""
-
-    def __init__(self, device: Gathered) -> None:
-        self._device = device
-
-    def __getattr__(self, name: str) -> Any:
-        return getattr(self._device, name)[..., 0]
+    share = tables.switching_share[state.scheme]
+    leg = leg_switching(device, total_area, dc_voltage, frequency[:, None], current, offset, share)
+    active = _active_legs(tables, state)
+    return LegSwitching(**{name: value * active for name, value in vars(leg).items()})
 
 
 def _position_loss(
@@ -198,10 +189,10 @@ def _position_loss(
 ) -> _PositionLoss:
     scheme = state.scheme
     index = np.minimum(state.modulation_index, tables.linear_limit[scheme])
-    reference = tables.reference_constant[scheme] + index[..., None, None] * tables.reference_slope[scheme]
-    per_unit = leg_currents(reference, state.displacement[..., None])
-    peak = state.peak_current[..., None]
-    square = peak**2 + 2.0 * state.ripple_mean_square[..., None]
+    constant, slope = (np.moveaxis(table, 1, 0)[:, scheme] for table in (tables.reference_constant, tables.reference_slope))
+    per_unit = leg_currents(constant + index[..., None] * slope, state.displacement)
+    peak = state.peak_current
+    square = peak**2 + 2.0 * state.ripple_mean_square
     currents = (
         per_unit.switch_average * peak,
         per_unit.switch_mean_square * square,
@@ -210,8 +201,8 @@ def _position_loss(
     )
     switch, diode = switch_path(device, total_area), diode_path(device, total_area)
     line_square = 0.5 * square
-    dead = dead_time_loss(device, legs.mean_current, line_square, diode.slope, frequency[:, None, None])
-    active = tables.leg_switching[scheme]
+    dead = dead_time_loss(device, legs.mean_current, line_square, diode.slope, frequency[:, None])
+    active = _active_legs(tables, state)
     return _PositionLoss(
         switch=switch,
         diode=diode,

@@ -1,0 +1,181 @@
+"""From a search's archive to tables: the class fronts and the overall front, one row a design, units in the names."""
+
+from __future__ import annotations
+
+from dataclasses import dataclass
+
+import moocore
+import numpy as np
+import pandas as pd
+from numpy.typing import NDArray
+
+from models.catalog.parts import Catalog
+from models.designs import Designs, InductorDesigns
+from models.evaluation import Constraint, Evaluation
+from models.inverter import Inverter
+from optimizer.objectives import OBJECTIVES, distortion_column, margins_of, requirements_of
+from optimizer.search import ClassResult, SearchResult, prepared_inverter
+from optimizer.space import SearchSpace
+
+Array = NDArray[np.float64]
+SPECTRUM_DIGITS = 4
+LITRES = 1e3
+
+
+@dataclass(frozen=True)
+class Front:
+    """All Pareto designs of a search.
+
+    Attributes:
+        table: one row a design (front.csv).
+        margins: one row a design, margins of all constraints [-].
+        limits: (name, unit, sense) of the constraints.
+        efficiency: (n, p) over `load_level` (p,) [-].
+        line_order, line_amplitude, line_limit: (n, k) harmonic lines over the base, listed ones; no limit is infinite.
+    """
+
+    table: pd.DataFrame
+    margins: pd.DataFrame
+    limits: tuple[tuple[str, str, str], ...]
+    load_level: Array
+    efficiency: Array
+    line_order: Array
+    line_amplitude: Array
+    line_limit: Array
+
+
+def front(result: SearchResult) -> Front:
+    """Filter the archives, evaluate what is left in full and lay it out.
+
+    Args:
+        result: of a search with at least one feasible candidate.
+    """
+    inverter = prepared_inverter(result.study)
+    kept = [(found, _class_front(found)) for found in result.classes if len(found.points)]
+    objectives = np.concatenate([found.objectives[rows] for found, rows in kept])
+    overall = moocore.is_nondominated(objectives)
+    parts = []
+    for found, rows in kept:
+        designs = SearchSpace(result.study, inverter, found.device_class).designs(found.points[rows])
+        parts.append((designs, inverter.evaluate(designs)))
+    required = [requirements_of(result.study.at_most, evaluation) for _, evaluation in parts]
+    table = pd.concat(
+        [design_table(inverter, *part, entries) for part, entries in zip(parts, required, strict=True)], ignore_index=True
+    )
+    ids = [f"{_initials(found.device_class)}{number:04d}" for found, rows in kept for number in range(1, len(rows) + 1)]
+    table.insert(0, "design_id", ids)
+    table.insert(1, "class_front", True)
+    table.insert(2, "overall_front", overall)
+    margins = pd.concat([margin_table(entries) for entries in required], ignore_index=True)
+    margins.insert(0, "design_id", ids)
+    evaluations = [evaluation for _, evaluation in parts]
+    lines = [evaluation.distortion for evaluation in evaluations]
+    listed = [np.where(item.lines.listed, item.lines.amplitude, 0.0) for item in lines]
+    return Front(
+        table=table,
+        margins=margins,
+        limits=tuple((entry.name, entry.unit, entry.sense) for entry in required[0]),
+        load_level=evaluations[0].load_level,
+        efficiency=np.concatenate([item.efficiency for item in evaluations]),
+        line_order=np.concatenate([item.lines.order for item in lines]),
+        line_amplitude=np.concatenate(listed),
+        line_limit=np.concatenate([item.line_limit for item in lines]),
+    )
+
+
+def _class_front(found: ClassResult) -> NDArray[np.int64]:
+    """Rows of a class's non-dominated candidates, sorted by the first objective; repeated ones once."""
+    _, first = np.unique(found.objectives, axis=0, return_index=True)
+    rows = first[moocore.is_nondominated(found.objectives[first])]
+    return rows[np.lexsort(found.objectives[rows].T[::-1])]
+
+
+def _initials(device_class: str) -> str:
+    return {"silicon IGBT": "IGBT", "superjunction MOSFET": "SJ", "SiC MOSFET": "SIC", "GaN HEMT": "GAN"}.get(
+        device_class, "".join(word[0] for word in device_class.split()).upper()
+    ) + "-"
+
+
+def margin_table(constraints: tuple[Constraint, ...]) -> pd.DataFrame:
+    """Margins as a table: a column a constraint [-], and the name of the tightest one."""
+    table = pd.DataFrame({entry.name: entry.margin for entry in constraints})
+    names = np.array([entry.name for entry in constraints])
+    table["tightest"] = names[np.argmin(margins_of(constraints), axis=-1)]
+    return table
+
+
+def design_table(
+    inverter: Inverter, designs: Designs, result: Evaluation, constraints: tuple[Constraint, ...]
+) -> pd.DataFrame:
+    """Designs and their results as a table, columns with unit suffixes.
+
+    Args:
+        inverter: the study's inverter.
+        designs: candidates (n,).
+        result: their evaluation.
+        constraints: their requirements, the study's own limits among them.
+
+    Returns:
+        n rows; losses `loss_*_w` are at rated load and add up to `loss_rated_w`, volumes `volume_*_l` to `volume_l`,
+        masses and prices likewise.
+    """
+    catalog, rated = inverter.catalog, result.rated
+    columns: dict[str, object] = _choices(inverter, designs)
+    columns |= {
+        "efficiency_rated": result.efficiency[:, rated],
+        "efficiency_weighted": result.efficiency_weighted,
+        "efficiency_european": result.efficiency_european,
+        "efficiency_californian": result.efficiency_californian,
+        "loss_weighted_percent": OBJECTIVES["weighted loss"].read(result),
+        "loss_rated_w": np.sum([part[:, rated] for part in result.losses.values()], axis=0),
+        "volume_l": LITRES * result.volume,
+        "mass_kg": result.mass,
+        "price": result.price,
+        distortion_column(inverter.specification): result.distortion.total,
+        "distortion_percent": OBJECTIVES["distortion"].read(result),
+    }
+    columns |= {f"loss_{name}_w": part[:, rated] for name, part in result.losses.items()}
+    columns |= {f"volume_{name}_l": LITRES * part for name, part in result.volumes.items()}
+    columns |= {f"mass_{name}_kg": part for name, part in result.masses.items()}
+    columns |= {f"price_{name}": part for name, part in result.prices.items()}
+    columns |= result.details
+    columns |= _inductor_columns(catalog, "inverter_inductor", designs.inverter_inductor)
+    columns |= _inductor_columns(catalog, "grid_inductor", designs.grid_inductor)
+    margins = margins_of(constraints)
+    names = np.array([entry.name for entry in constraints])
+    columns["tightest_constraint"] = names[np.argmin(margins, axis=-1)]
+    columns["tightest_margin"] = margins.min(-1)
+    return pd.DataFrame(columns)
+
+
+def _choices(inverter: Inverter, designs: Designs) -> dict[str, object]:
+    catalog = inverter.catalog
+    classes = catalog.devices.column("device_class")[designs.device]
+    schemes = np.array([scheme.name for scheme in inverter.bridge.modulations])
+    return {
+        "device_class": classes,
+        "device": np.array(catalog.devices.names)[designs.device],
+        "bridge": inverter.bridge.name,
+        "modulation": schemes[designs.modulation],
+        "switching_frequency_hz": designs.switching_frequency_hz,
+        "die_area_mm2": 1e6 * designs.die_area_m2,
+        "parallel": designs.parallel,
+        "inverter_inductance_h": designs.inverter_inductance_h,
+        "grid_inductance_h": designs.grid_inductance_h,
+        "filter_capacitance_f": designs.filter_capacitance_f,
+        "damping_resistance_ohm": designs.damping_resistance_ohm,
+        "dc_link": np.array(catalog.dc_link_capacitors.names)[designs.dc_link],
+        "cooling": np.where(designs.forced_cooling == 1, "forced", "natural"),
+        "sink_resistance_k_per_w": designs.sink_resistance_k_per_w,
+    }
+
+
+def _inductor_columns(catalog: Catalog, side: str, choice: InductorDesigns) -> dict[str, Array]:
+    return {
+        f"{side}_core_material": np.array(catalog.core_materials.names)[choice.material],
+        f"{side}_core": np.array(catalog.core_shapes.names)[choice.shape],
+        f"{side}_stack": choice.stack,
+        f"{side}_turns": choice.turns,
+        f"{side}_conductor": np.array(catalog.conductors.names)[choice.conductor],
+        f"{side}_copper_area_mm2": 1e6 * choice.copper_area_m2,
+    }

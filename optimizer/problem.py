@@ -1,0 +1,77 @@
+"""The optimisation problem of one device class: points of the unit cube in, objectives and violations out; an archive beside."""
+
+from __future__ import annotations
+
+from dataclasses import dataclass, field
+
+import numpy as np
+from numpy.typing import NDArray
+from pymoo.core.problem import Problem
+
+from optimizer.objectives import OBJECTIVES, Objective, margins_of, requirements_of
+from optimizer.space import SearchSpace
+
+Array = NDArray[np.float64]
+
+
+@dataclass
+class Archive:
+    """Every candidate evaluated, feasible ones with their points; of the others what ruled them out.
+
+    Attributes:
+        points, objectives: blocks of feasible candidates.
+        evaluations: all candidates [-].
+        failures: per constraint, how many candidates violated it [-].
+        nearest: margins of the candidate of least violation (c,) [-], and that violation.
+    """
+
+    points: list[Array] = field(default_factory=list)
+    objectives: list[Array] = field(default_factory=list)
+    evaluations: int = 0
+    failures: Array | None = None
+    nearest: Array | None = None
+    least_violation: float = np.inf
+
+    def add(self, points: Array, objectives: Array, margins: Array, violation: Array) -> None:
+        """Take in one evaluated block."""
+        feasible = violation <= 0.0
+        if feasible.any():
+            self.points.append(points[feasible])
+            self.objectives.append(objectives[feasible])
+        self.evaluations += len(points)
+        failed = (margins < 0.0).sum(0)
+        self.failures = failed if self.failures is None else self.failures + failed
+        closest = int(np.argmin(violation))
+        if violation[closest] < self.least_violation:
+            self.least_violation = float(violation[closest])
+            self.nearest = margins[closest]
+
+    def feasible(self) -> tuple[Array, Array]:
+        """Points and objectives of all feasible candidates, in the order they were evaluated."""
+        if not self.points:
+            return np.zeros((0, 0)), np.zeros((0, 0))
+        return np.concatenate(self.points), np.concatenate(self.objectives)
+
+
+class ClassProblem(Problem):
+    """One device class of a study as a pymoo problem over the unit cube.
+
+    The constraint violation is the sum of the negative margins, each limited so that one absurd value does not hide the rest.
+    """
+
+    VIOLATION_CAP = 5.0
+
+    def __init__(self, space: SearchSpace) -> None:
+        self.space = space
+        self.chosen: tuple[Objective, ...] = tuple(OBJECTIVES[name] for name in space.study.objectives)
+        self.archive = Archive()
+        super().__init__(n_var=len(space.variables), n_obj=len(self.chosen), xl=0.0, xu=1.0)
+
+    def assess(self, points: Array) -> tuple[Array, Array]:
+        """Objectives (n, m) and constraint violation (n,) of repaired points; feasible ones have violation 0."""
+        result = self.space.inverter.evaluate(self.space.designs(points))
+        objectives = np.stack([objective.read(result) for objective in self.chosen], axis=-1)
+        margins = margins_of(requirements_of(self.space.study.at_most, result))
+        violation = np.minimum(np.maximum(-margins, 0.0), self.VIOLATION_CAP).sum(-1)
+        self.archive.add(points, objectives, margins, violation)
+        return objectives, violation

@@ -1,0 +1,219 @@
+"""The search: one NSGA-II population per device class, side by side on the cores, every evaluation kept."""
+
+from __future__ import annotations
+
+import multiprocessing
+import os
+import time
+from collections.abc import Callable
+from concurrent.futures import Future, ProcessPoolExecutor
+from dataclasses import dataclass
+from queue import Empty
+from typing import Any
+
+import moocore
+import numpy as np
+from numpy.typing import NDArray
+from scipy.stats import qmc
+
+from models.catalog import load_catalog
+from models.inverter import Inverter
+from optimizer.nsga import ArrayEvaluator, ArrayNSGA2
+from optimizer.objectives import OBJECTIVES, requirements_of
+from optimizer.problem import ClassProblem
+from optimizer.space import SearchSpace
+from optimizer.study import Study
+
+Array = NDArray[np.float64]
+RECORD_EVERY = 5  # generations between two hypervolume records
+
+
+@dataclass(frozen=True)
+class Progress:
+    """Where one population stands: class, evaluations so far, hypervolume of its feasible candidates [-]."""
+
+    device_class: str
+    evaluations: int
+    hypervolume: float
+
+
+@dataclass(frozen=True)
+class ClassResult:
+    """What one population found.
+
+    Attributes:
+        device_class: its class.
+        points, objectives: all feasible candidates evaluated, (k, n_var) and (k, m).
+        evaluations: candidates evaluated [-].
+        hypervolume: (evaluations, hypervolume) records.
+        constraints: names; failures: share of candidates violating each [-].
+        nearest: margins of the least violating candidate [-].
+        seconds: time in the models and in all [s].
+    """
+
+    device_class: str
+    points: Array
+    objectives: Array
+    evaluations: int
+    hypervolume: list[tuple[int, float]]
+    constraints: tuple[str, ...]
+    failures: Array
+    nearest: Array
+    seconds: dict[str, float]
+
+
+@dataclass(frozen=True)
+class SearchResult:
+    """All populations of a study, in the study's order."""
+
+    study: Study
+    seed: int
+    classes: tuple[ClassResult, ...]
+
+    @property
+    def evaluations(self) -> int:
+        """Candidates evaluated in all populations [-]."""
+        return sum(found.evaluations for found in self.classes)
+
+
+_prepared: dict[str, Inverter] = {}
+
+
+def prepared_inverter(study: Study) -> Inverter:
+    """The study's inverter with everything solved that does not depend on a candidate; kept for the last study asked.
+
+    Raises:
+        InputError: where the study names parts that the catalogue does not have.
+    """
+    if study.file_hash not in _prepared:
+        catalog = load_catalog(study.catalog_files)
+        study.check_against(catalog)
+        inverter = Inverter(study.specification, catalog)
+        _ = inverter.tables, inverter.sinks, inverter.ac_capacitor
+        _prepared.clear()
+        _prepared[study.file_hash] = inverter
+    return _prepared[study.file_hash]
+
+
+def normalised_hypervolume(study: Study, objectives: Array) -> float:
+    """Share of the box between zero and the objectives' reference values that the candidates dominate [-]."""
+    reference = np.array([OBJECTIVES[name].reference(study.specification) for name in study.objectives])
+    scaled = objectives / reference
+    scaled = scaled[(scaled < 1.0).all(-1)]
+    return float(moocore.hypervolume(scaled, ref=np.ones(len(reference)))) if len(scaled) else 0.0
+
+
+def search_class(
+    study: Study, device_class: str, seed: int, report: Callable[[Progress], None] | None = None
+) -> ClassResult:
+    """Search one device class.
+
+    Args:
+        study: the study.
+        device_class: one of its classes.
+        seed: of the whole search; the class's own generator is derived from it and the class's position.
+        report: called with the progress every few generations.
+    """
+    started = time.perf_counter()
+    problem = ClassProblem(SearchSpace(study, prepared_inverter(study), device_class))
+    in_models = _Stopwatch(problem.assess)
+    rng = np.random.default_rng([seed, study.search.device_classes.index(device_class)])
+    first = problem.space.repaired(qmc.LatinHypercube(problem.n_var, rng=rng).random(study.search.population))
+    algorithm = ArrayNSGA2(
+        study.search.population, problem.space.repaired, problem.space.redrawn, first,
+        evaluator=ArrayEvaluator(in_models), output=None,
+    )
+    algorithm.setup(problem, termination=("n_gen", study.search.generations), seed=int(rng.integers(2**31)))
+    records: list[tuple[int, float]] = []
+    generation = 0
+    while algorithm.has_next():
+        algorithm.next()
+        generation += 1
+        if generation % RECORD_EVERY == 0 or not algorithm.has_next():
+            value = normalised_hypervolume(study, algorithm.F[algorithm.violation <= 0.0])
+            records.append((problem.archive.evaluations, value))
+            if report:
+                report(Progress(device_class, *records[-1]))
+    points, objectives = problem.archive.feasible()
+    return ClassResult(
+        device_class=device_class,
+        points=points,
+        objectives=objectives,
+        evaluations=problem.archive.evaluations,
+        hypervolume=records,
+        constraints=_constraint_names(problem),
+        failures=np.asarray(problem.archive.failures) / max(problem.archive.evaluations, 1),
+        nearest=np.asarray(problem.archive.nearest),
+        seconds={"models": in_models.seconds, "search": time.perf_counter() - started - in_models.seconds},
+    )
+
+
+class _Stopwatch:
+    def __init__(self, function: Callable[[Array], Any]) -> None:
+        self.function, self.seconds = function, 0.0
+
+    def __call__(self, points: Array) -> Any:
+        started = time.perf_counter()
+        try:
+            return self.function(points)
+        finally:
+            self.seconds += time.perf_counter() - started
+
+
+def _constraint_names(problem: ClassProblem) -> tuple[str, ...]:
+    point = problem.space.repaired(np.full((1, problem.n_var), 0.5))
+    result = problem.space.inverter.evaluate(problem.space.designs(point))
+    return tuple(entry.name for entry in requirements_of(problem.space.study.at_most, result))
+
+
+_outbox: Any = None
+
+
+def _set_outbox(outbox: Any) -> None:
+    global _outbox
+    _outbox = outbox
+
+
+def _worker(study: Study, device_class: str, seed: int) -> ClassResult:
+    return search_class(study, device_class, seed, _outbox.put if _outbox is not None else None)
+
+
+def search(
+    study: Study, *, seed: int = 1, workers: int | None = None, report: Callable[[Progress], None] | None = None
+) -> SearchResult:
+    """Search all device classes of a study.
+
+    Args:
+        study: the study.
+        seed: same seed, same result, whatever the number of workers.
+        workers: processes; default one per core, never more than classes.
+        report: called with every population's progress.
+
+    Returns:
+        Every feasible candidate of every population.
+
+    Raises:
+        InputError: where the study names parts that the catalogue does not have.
+    """
+    classes = study.search.device_classes
+    prepared_inverter(study)
+    count = min(workers or os.cpu_count() or 1, len(classes))
+    if count == 1:
+        return SearchResult(study, seed, tuple(search_class(study, name, seed, report) for name in classes))
+    context = multiprocessing.get_context("fork" if "fork" in multiprocessing.get_all_start_methods() else "spawn")
+    outbox = context.Queue()
+    with ProcessPoolExecutor(count, mp_context=context, initializer=_set_outbox, initargs=(outbox,)) as pool:
+        futures = [pool.submit(_worker, study, name, seed) for name in classes]
+        _relay(futures, outbox, report)
+        return SearchResult(study, seed, tuple(future.result() for future in futures))
+
+
+def _relay(futures: list[Future[ClassResult]], outbox: Any, report: Callable[[Progress], None] | None) -> None:
+    """Pass the workers' progress on until all are done."""
+    while not all(future.done() for future in futures):
+        try:
+            progress = outbox.get(timeout=0.1)
+        except Empty:
+            continue
+        if report:
+            report(progress)

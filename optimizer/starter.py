@@ -1,0 +1,52 @@
+"""The commented starter study, and the two blocks in it that are written out of their declarations.
+
+The blocks stand in starter.toml as these functions return them; a test fails where a declaration has changed
+since, and its message shows the block to paste.
+"""
+
+from __future__ import annotations
+
+from dataclasses import fields
+from importlib.resources import files
+
+from models.specification import DesignRules
+from optimizer.quantity import written
+from optimizer.study_schema import RANGES
+
+DEFAULTS = DesignRules()
+
+
+def starter_text() -> str:
+    """Return the starter study as it lies beside this module."""
+    return (files("optimizer") / "starter.toml").read_text(encoding="utf-8")
+
+
+def ranges_block() -> str:
+    """Return the lines of [search.ranges], each commented out and with its default, unit and meaning."""
+    entries = []
+    for entry in RANGES:
+        low, high = (_toml(entry.kind.read(end), entry.unit) for end in entry.default)
+        entries.append((f"{entry.name} = {{ min = {low}, max = {high} }}", entry.meaning))
+    return _commented_out(entries)
+
+
+def rules_block() -> str:
+    """Return the lines of [rules], each commented out and with its default, unit and meaning."""
+    return _commented_out(
+        [
+            (
+                f"{rule.name} = {_toml(getattr(DEFAULTS, rule.name), rule.metadata['unit'])}",
+                rule.metadata["meaning"],
+            )
+            for rule in fields(DEFAULTS)
+        ]
+    )
+
+
+def _toml(value: float, unit: str) -> str:
+    return f'"{written(value, unit)}"' if unit else written(value, unit)
+
+
+def _commented_out(entries: list[tuple[str, str]]) -> str:
+    width = max(len(assignment) for assignment, _ in entries)
+    return "".join(f"# {assignment:<{width}}  # {meaning}\n" for assignment, meaning in entries)

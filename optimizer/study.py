@@ -1,0 +1,227 @@
+"""A study: one inverter's task and what the search may vary, read from a TOML file and checked."""
+
+from __future__ import annotations
+
+import hashlib
+import tomllib
+from collections.abc import Iterable, Mapping
+from dataclasses import dataclass
+from pathlib import Path
+from typing import TYPE_CHECKING, Any
+
+from models.specification import (
+    CALIFORNIAN_WEIGHTS,
+    EUROPEAN_WEIGHTS,
+    GRID_CONNECTED,
+    STAND_ALONE,
+    DesignRules,
+    Specification,
+)
+from optimizer.errors import InputError, Problem
+from optimizer.quantity import show
+from optimizer.study_checks import check_content, chosen_modulations, phase_voltage
+from optimizer.study_schema import (
+    CALIFORNIAN,
+    EUROPEAN,
+    GRID_CONNECTED_ONLY,
+    GRID_RATIO,
+    LC,
+    STAND_ALONE_ONLY,
+    SearchRange,
+    StudyContent,
+    read_content,
+)
+from optimizer.study_table import Reading, nearest, one_of
+
+if TYPE_CHECKING:
+    from models.catalog.parts import Catalog
+
+LARGEST_FILE = 1_000_000
+"""Bytes; a study file is a page of text, so that more is some other file."""
+
+WEIGHTS = {EUROPEAN: EUROPEAN_WEIGHTS, CALIFORNIAN: CALIFORNIAN_WEIGHTS}
+
+
+@dataclass(frozen=True, kw_only=True)
+class SearchSettings:
+    """What the search may choose from, and how long it searches.
+
+    Attributes:
+        modulations: names of the bridge's modulation schemes, in the bridge's order.
+        filter_kind: LCL or LC.
+        device_classes: classes of semiconductors; each gets a front of its own.
+        core_materials, conductors: names out of the catalogue; empty means all of it.
+        dc_links: technologies of dc-link capacitors.
+        cooling: "natural", "forced" or both.
+        ranges: search ranges in SI units by name, as study_schema.RANGES declares them; without
+            grid_inductance_ratio for an LC filter.
+        population: candidates per generation and class [-].
+        generations: [-].
+    """
+
+    modulations: tuple[str, ...]
+    filter_kind: str
+    device_classes: tuple[str, ...]
+    core_materials: tuple[str, ...]
+    conductors: tuple[str, ...]
+    dc_links: tuple[str, ...]
+    cooling: tuple[str, ...]
+    ranges: Mapping[str, SearchRange]
+    population: int
+    generations: int
+
+
+@dataclass(frozen=True, kw_only=True)
+class Study:
+    """A study file read, checked and turned into SI units.
+
+    Attributes:
+        name, description: as the file has them.
+        path: the file.
+        file_hash: SHA-256 of its bytes, hexadecimal.
+        specification: what the inverter is asked to do.
+        search: what the search may vary.
+        objectives: names of what is minimised, two to five.
+        at_most: greatest value of an objective by its name (minimised or not), SI units; only those the study names.
+        catalog_files: the user's own parts files.
+    """
+
+    name: str
+    description: str
+    path: Path
+    file_hash: str
+    specification: Specification
+    search: SearchSettings
+    objectives: tuple[str, ...]
+    at_most: Mapping[str, float]
+    catalog_files: tuple[Path, ...] = ()
+
+    @classmethod
+    def read(cls, path: Path | str) -> Study:
+        """Return the study of a file.
+
+        Raises:
+            InputError: with every problem of the file at once: file, key, what was given, what is expected.
+        """
+        path = Path(path)
+        raw = _read_bytes(path)
+        reading = Reading(path, _read_toml(path, raw))
+        content = read_content(reading)
+        check_content(reading, content)
+        reading.raise_problems()
+        return cls(
+            name=content.top["name"],
+            description=content.top["description"],
+            path=path,
+            file_hash=hashlib.sha256(raw).hexdigest(),
+            specification=_specification(content),
+            search=_search_settings(content),
+            objectives=content.objectives,
+            at_most=content.at_most,
+            catalog_files=tuple(path.parent / name for name in content.catalog["files"]),
+        )
+
+    def check_against(self, catalog: Catalog) -> None:
+        """Check that the catalogue has every device class, material, conductor and limit table asked for.
+
+        Raises:
+            InputError: with every unknown name and the nearest known one.
+        """
+        search = self.search
+        chosen: tuple[tuple[str, tuple[str, ...], Iterable[str]], ...] = (
+            ("search.device_classes", search.device_classes, catalog.devices.column("device_class")),
+            ("search.core_materials", search.core_materials, catalog.core_materials.names),
+            ("search.conductors", search.conductors, catalog.conductors.names),
+            ("search.dc_links", search.dc_links, catalog.dc_link_capacitors.column("technology")),
+        )
+        asked = [(f"{key}[{i}]", name, known) for key, names, known in chosen for i, name in enumerate(names)]
+        if self.specification.application == GRID_CONNECTED:
+            tables = [table.name for table in catalog.limit_tables]
+            asked.append(("application.harmonic_limits", self.specification.limit_table, tables))
+        problems = [
+            Problem(show(name), f"a name in the catalogue{_known(name, known)}", key, str(self.path))
+            for key, name, known in asked
+            if name not in set(known)
+        ]
+        if problems:
+            raise InputError(*problems)
+
+
+def _known(name: str, known: Iterable[str]) -> str:
+    listed = [str(other) for other in dict.fromkeys(known)]
+    return nearest(name, listed) or (f": {one_of(listed)}" if listed else ", which has none")
+
+
+def _read_bytes(path: Path) -> bytes:
+    expected = 'a study file (TOML text; "wattfront new" writes one to start from)'
+    try:
+        if path.is_dir():
+            raise _whole_file(path, "a folder", expected)
+        if not path.is_file():
+            raise _whole_file(path, "no such file", expected)
+        if path.stat().st_size > LARGEST_FILE:
+            raise _whole_file(path, f"a file of {path.stat().st_size / 1e6:.1f} MB", expected)
+        return path.read_bytes()
+    except OSError as trouble:
+        raise _whole_file(path, f"a file that cannot be read ({trouble.strerror})", expected) from trouble
+
+
+def _read_toml(path: Path, raw: bytes) -> dict[str, Any]:
+    try:
+        text = raw.decode("utf-8-sig")
+    except UnicodeDecodeError as trouble:
+        line = raw.count(b"\n", 0, trouble.start) + 1
+        raise _whole_file(path, f"bytes on line {line} that are no text", "TOML in UTF-8") from trouble
+    if "\0" in text:
+        raise _whole_file(path, "a binary file", "TOML in UTF-8")
+    try:
+        return tomllib.loads(text)
+    except (ValueError, RecursionError) as trouble:
+        raise _whole_file(path, f"text that is no TOML ({trouble})", "a study file in TOML") from trouble
+
+
+def _whole_file(path: Path, given: str, expected: str) -> InputError:
+    return InputError(Problem(given, expected, file=str(path)))
+
+
+def _specification(content: StudyContent) -> Specification:
+    asked = content.application
+    nominal = phase_voltage(asked["ac_voltage"], asked["phases"])
+    own = STAND_ALONE_ONLY if asked["kind"] == STAND_ALONE else ()
+    return Specification(
+        application=asked["kind"],
+        phases=asked["phases"],
+        apparent_power_va=asked["apparent_power"],
+        power_factor_min=asked["power_factor_min"],
+        phase_voltage_v=nominal,
+        phase_voltage_min_v=nominal * (1.0 - asked["ac_voltage_tolerance"]),
+        phase_voltage_max_v=nominal * (1.0 + asked["ac_voltage_tolerance"]),
+        line_frequency_hz=asked["line_frequency"],
+        dc_voltage_min_v=content.dc_voltage["min"],
+        dc_voltage_v=content.dc_voltage["nominal"],
+        dc_voltage_max_v=content.dc_voltage["max"],
+        ambient_c=asked["ambient"],
+        altitude_m=asked["altitude"],
+        bridge=content.bridge["kind"],
+        weights=_weights(content.weighting),
+        limit_table=asked[GRID_CONNECTED_ONLY[0].name],
+        rules=DesignRules(**content.rules),
+        **{key.name: asked[key.name] for key in own},
+    )
+
+
+def _weights(weighting: Mapping[str, Any]) -> dict[float, float]:
+    if weighting["scheme"] in WEIGHTS:
+        return dict(WEIGHTS[weighting["scheme"]])
+    return dict(sorted(zip(weighting["levels"], weighting["weights"], strict=True)))
+
+
+def _search_settings(content: StudyContent) -> SearchSettings:
+    search = {key: value for key, value in content.search.items() if key != "ranges"}
+    unused = {GRID_RATIO} if content.filter_kind == LC else set()
+    return SearchSettings(
+        modulations=tuple(scheme.name for scheme in chosen_modulations(content)),
+        filter_kind=content.filter_kind,
+        ranges={name: ends for name, ends in content.ranges.items() if name not in unused},
+        **search,
+    )

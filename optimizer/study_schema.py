@@ -1,0 +1,238 @@
+"""Every key a study file may hold, table by table: kind, unit, bounds and default.
+
+The starter study explains the same keys to people; a test keeps the two together. Bounds here keep typing
+errors out (a milli for a mega); what does not fit together physically is found in `study_checks`.
+"""
+
+from __future__ import annotations
+
+import math
+from collections.abc import Mapping
+from dataclasses import dataclass, fields
+from typing import Any
+
+from models.specification import GRID_CONNECTED, STAND_ALONE, DesignRules, Specification
+from models.waveforms.bridges import BRIDGES
+from optimizer.study_table import Choice, Key, Kind, Quantity, Reading, Several, SubTable, Text, Whole
+
+OBJECTIVES = ("weighted loss", "volume", "price", "mass", "distortion")
+DEVICE_CLASSES = ("silicon IGBT", "superjunction MOSFET", "SiC MOSFET", "GaN HEMT")
+DC_LINKS = ("electrolytic", "film")
+COOLING = ("natural", "forced")
+LCL, LC = "LCL", "LC"
+GRID_RATIO = "grid_inductance_ratio"
+EUROPEAN, CALIFORNIAN, CUSTOM = "european", "californian", "custom"
+
+
+@dataclass(frozen=True)
+class SearchRange:
+    """From where to where a quantity is searched.
+
+    Attributes:
+        low, high: least and greatest value, in the unit the range is declared with.
+    """
+
+    low: float
+    high: float
+
+
+@dataclass(frozen=True)
+class RangeEntry:
+    """One quantity of the search, as [search.ranges] knows it.
+
+    Attributes:
+        name: its key.
+        unit: unit of its values; "" where dimensionless.
+        default: the range where the study names none, as a study would write it.
+        hard_bounds: what no study may leave; below and above the models say nothing sensible.
+        meaning: what it is.
+        whole: whether it takes whole numbers only.
+    """
+
+    name: str
+    unit: str
+    default: tuple[str | float, str | float]
+    hard_bounds: tuple[float, float]
+    meaning: str
+    whole: bool = False
+
+    @property
+    def kind(self) -> Kind:
+        """How an end of the range is read."""
+        low, high = self.hard_bounds
+        return Whole(int(low), int(high)) if self.whole else Quantity(self.unit, low, high)
+
+
+# Judgement values for early concept work: where designs of 1..20 kVA are usually found, with room around.
+RANGES = (
+    RangeEntry("switching_frequency", "Hz", ("8 kHz", "200 kHz"), (1e3, 1e6), "carrier frequency of one leg"),
+    RangeEntry("parallel", "", (1, 3), (1, 8), "packages in parallel per switch position", whole=True),
+    RangeEntry("ripple", "", (0.08, 0.8), (0.01, 2.0), "peak-to-peak ripple over rated peak current"),
+    RangeEntry(
+        GRID_RATIO, "", (0.02, 1.0), (1e-3, 10.0), "grid-side over inverter-side inductance, not for LC"
+    ),
+    RangeEntry(
+        "filter_capacitance_share",
+        "",
+        (0.003, 0.08),
+        (1e-4, 0.5),
+        "capacitor reactive power over rated power",
+    ),
+    RangeEntry(
+        "damping",
+        "",
+        (0.05, 1.5),
+        (1e-3, 10.0),
+        "damping resistance over the capacitor's reactance at resonance",
+    ),
+    RangeEntry("sink_resistance", "K/W", ("0.05 K/W", "3 K/W"), (0.005, 20.0), "heatsink to ambient"),
+    RangeEntry("core_size_factor", "", (0.8, 6.0), (0.5, 20.0), "core area product over the least needed"),
+    RangeEntry("flux_use", "", (0.3, 1.0), (0.05, 1.0), "share of the allowed flux density used"),
+    RangeEntry("window_use", "", (0.3, 1.0), (0.05, 1.0), "share of the allowed copper fill used"),
+)
+
+TABLES = ("application", "weighting", "bridge", "filter", "objectives", "search", "rules", "catalog")
+NAME = Text(
+    "a text of letters, digits, blanks, dots, - and _ (the run folder is called so)", r"\w[\w .-]{0,79}"
+)
+TOP = (
+    Key("name", NAME),
+    Key("description", Text(pattern=".*"), ""),
+    *(Key(name, SubTable(), None) for name in TABLES),
+)
+_SHARE = Quantity("", 0.0, 1.0)
+_VOLTAGE = Quantity("V", 1.0, 50e3)
+_THD = Quantity("", 0.0, 0.5, above=True)
+APPLICATION = (
+    Key("kind", Choice((GRID_CONNECTED, STAND_ALONE))),
+    Key("phases", Choice((1, 3))),
+    Key("apparent_power", Quantity("VA", 10.0, 100e6)),
+    Key("power_factor_min", Quantity("", 0.0, 1.0, above=True), 0.9),
+    Key("ac_voltage", _VOLTAGE),
+    Key("ac_voltage_tolerance", Quantity("", 0.0, 0.5), 0.1),
+    Key("line_frequency", Quantity("Hz", 10.0, 1e3)),
+    Key("dc_voltage", SubTable(), None),
+    Key("ambient", Quantity("degC", -40.0, 85.0), 40.0),
+    Key("altitude", Quantity("m", -100.0, 5000.0), 1000.0),
+)
+DC_VOLTAGE = (Key("min", _VOLTAGE), Key("nominal", _VOLTAGE), Key("max", _VOLTAGE))
+_ASKED = {entry.name: entry.default for entry in fields(Specification)}
+STAND_ALONE_ONLY = (
+    Key("rectifier_share", _SHARE, _ASKED["rectifier_share"]),
+    Key("crest_factor", Quantity("", 1.42, 10.0), _ASKED["crest_factor"]),
+    Key("voltage_thd_limit_linear", _THD, _ASKED["voltage_thd_limit_linear"]),
+    Key("voltage_thd_limit_rectifier", _THD, _ASKED["voltage_thd_limit_rectifier"]),
+)
+GRID_CONNECTED_ONLY = (Key("harmonic_limits", Text(), _ASKED["limit_table"]),)
+WEIGHTING = (Key("scheme", Choice((EUROPEAN, CALIFORNIAN, CUSTOM)), EUROPEAN),)
+CUSTOM_WEIGHTING = (
+    Key("levels", Several(Quantity("", 0.0, 1.2, above=True)), None),
+    Key("weights", Several(_SHARE, repeats=True), None),
+)
+BRIDGE = (
+    Key("kind", Choice(tuple(BRIDGES))),
+    Key("modulations", Several(Text()), None),
+)
+FILTER = (Key("kind", Choice((LCL, LC)), LCL),)
+MINIMISE = (
+    Key("minimise", Several(Choice(OBJECTIVES), 2, 5), OBJECTIVES[:3]),
+    Key("at_most", SubTable(), None),
+)
+_POSITIVE = {"": 1.0, "m^3": 1e4, "kg": 1e7}
+AT_MOST = tuple(
+    Key(name, Quantity(unit, 0.0, _POSITIVE[unit] if name != "price" else math.inf, above=True), None)
+    for name, unit in zip(OBJECTIVES, ("", "m^3", "", "kg", ""), strict=True)
+)
+SEARCH = (
+    Key("device_classes", Several(Text()), DEVICE_CLASSES),
+    Key("core_materials", Several(Text()), ()),
+    Key("conductors", Several(Text()), ()),
+    Key("dc_links", Several(Choice(DC_LINKS)), DC_LINKS),
+    Key("cooling", Several(Choice(COOLING)), COOLING),
+    Key("population", Whole(8, 10_000), 100),
+    Key("generations", Whole(1, 100_000), 200),
+    Key("ranges", SubTable(), None),
+)
+CATALOG = (Key("files", Several(Text()), ()),)
+_RULES_THAT_MAY_BE_ZERO = {"modulation_reserve", "dead_time_compensated", "fan_load_start"}
+_RULES_UP_TO_ONE = {
+    "modulation_reserve",
+    "dead_time_compensated",
+    "fan_load_start",
+    "saturation_use",
+    "inductance_left",
+    "gap_share_limit",
+    "dc_voltage_use",
+    "sink_base_coverage",
+    "packing_factor",
+}
+
+
+def _rule(name: str, unit: str, default: float) -> Key:
+    above_zero = unit == "" and name not in _RULES_THAT_MAY_BE_ZERO
+    return Key(name, Quantity(unit, 0.0, 1.0 if name in _RULES_UP_TO_ONE else math.inf, above_zero), default)
+
+
+_DEFAULTS = DesignRules()
+RULES = tuple(
+    _rule(rule.name, rule.metadata["unit"], getattr(_DEFAULTS, rule.name)) for rule in fields(_DEFAULTS)
+)
+
+
+@dataclass(frozen=True)
+class StudyContent:
+    """The values of a study file in SI units, table by table; a value in trouble is missing.
+
+    Attributes:
+        top, application, dc_voltage, weighting, bridge, objectives, at_most, search, rules, catalog: tables by key.
+        filter_kind: LCL or LC.
+        ranges: search ranges by name.
+    """
+
+    top: Mapping[str, Any]
+    application: Mapping[str, Any]
+    dc_voltage: Mapping[str, float]
+    weighting: Mapping[str, Any]
+    bridge: Mapping[str, Any]
+    filter_kind: str
+    objectives: tuple[str, ...]
+    at_most: Mapping[str, float]
+    search: Mapping[str, Any]
+    ranges: Mapping[str, SearchRange]
+    rules: Mapping[str, float]
+    catalog: Mapping[str, Any]
+
+
+def read_content(reading: Reading) -> StudyContent:
+    """Return all values of a study file; problems are noted in the reading."""
+    return StudyContent(
+        top=reading.table("", TOP),
+        application=reading.table("application", APPLICATION + STAND_ALONE_ONLY + GRID_CONNECTED_ONLY),
+        dc_voltage=reading.table("application.dc_voltage", DC_VOLTAGE),
+        weighting=reading.table("weighting", WEIGHTING + CUSTOM_WEIGHTING),
+        bridge=reading.table("bridge", BRIDGE),
+        filter_kind=reading.table("filter", FILTER).get("kind", LCL),
+        objectives=reading.table("objectives", MINIMISE).get("minimise", ()),
+        at_most=_stated(reading.table("objectives.at_most", AT_MOST)),
+        search=reading.table("search", SEARCH),
+        ranges=_read_ranges(reading),
+        rules=reading.table("rules", RULES),
+        catalog=reading.table("catalog", CATALOG),
+    )
+
+
+def _stated(values: Mapping[str, Any]) -> dict[str, float]:
+    return {name: value for name, value in values.items() if value is not None}
+
+
+def _read_ranges(reading: Reading) -> Mapping[str, SearchRange]:
+    place = "search.ranges"
+    reading.table(place, tuple(Key(entry.name, SubTable(), None) for entry in RANGES))
+    ranges = {}
+    for entry in RANGES:
+        low, high = (entry.kind.read(end) for end in entry.default)
+        keys = (Key("min", entry.kind, low), Key("max", entry.kind, high))
+        ends = reading.table(f"{place}.{entry.name}", keys)
+        if len(ends) == 2:
+            ranges[entry.name] = SearchRange(ends["min"], ends["max"])
+    return ranges

@@ -2,7 +2,9 @@
 
 from __future__ import annotations
 
-from dataclasses import dataclass
+from collections.abc import Sequence
+from dataclasses import dataclass, fields
+from typing import Any
 
 import numpy as np
 from numpy.typing import NDArray
@@ -96,3 +98,29 @@ class Evaluation:
     def feasible(self) -> NDArray[np.bool_]:
         """Candidates that meet every constraint (n,)."""
         return np.all(self.margins >= 0.0, axis=-1)
+
+
+def joined(blocks: Sequence[Evaluation]) -> Evaluation:
+    """Put the evaluations of consecutive blocks of candidates together."""
+    return _joined_value(blocks)
+
+
+_SHARED = {"load_level", "rated", "name", "unit", "sense"}
+
+
+def _joined_value(values: Sequence[Any]) -> Any:
+    """Concatenate arrays along candidates, through dataclasses, dictionaries and tuples."""
+    first = values[0]
+    if isinstance(first, np.ndarray):
+        return np.concatenate(values)
+    if isinstance(first, dict):
+        return {key: _joined_value([value[key] for value in values]) for key in first}
+    if isinstance(first, tuple):
+        return tuple(_joined_value(same) for same in zip(*values, strict=True))
+    kept = {
+        entry.name: getattr(first, entry.name)
+        if entry.name in _SHARED
+        else _joined_value([getattr(value, entry.name) for value in values])
+        for entry in fields(first)
+    }
+    return type(first)(**kept)

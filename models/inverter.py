@@ -21,7 +21,7 @@ from models.catalog.parts import AcCapacitor, Catalog
 from models.cooling import SinkCurve, SinkPoint, sink_curve_forced, sink_curve_natural
 from models.designs import Designs
 from models.distortion import Distortion
-from models.evaluation import Evaluation
+from models.evaluation import Evaluation, joined
 from models.filter_inductors import RippleView, Surroundings, bridge_side, grid_side
 from models.magnetics.core_bands import CoreBands, core_bands
 from models.magnetics.inductor import Inductor, absent_inductor
@@ -42,7 +42,7 @@ from models.waveforms.state import WaveformState, waveform_state
 from models.waveforms.tables import WaveformTables, waveform_tables
 
 Array = NDArray[np.float64]
-BLOCK = 512
+BLOCK = 1024  # candidates; their arrays over load points and angles are about a megabyte each
 
 
 @dataclass(frozen=True)
@@ -92,7 +92,7 @@ class Inverter:
         return min(fitting, key=lambda kind: kind.volume_m3_per_f)
 
     def evaluate(self, designs: Designs) -> Evaluation:
-        """Evaluate candidates, all at once.
+        """Evaluate candidates, in blocks that stay in cache.
 
         Args:
             designs: candidates (n,).
@@ -101,6 +101,12 @@ class Inverter:
             Losses, sizes, prices, distortion and constraint margins; nothing in it is NaN or infinite for candidates
             with positive values in every field.
         """
+        starts = range(0, len(designs), BLOCK)
+        if len(starts) <= 1:
+            return self._evaluate_block(designs)
+        return joined([self._evaluate_block(designs.take(slice(start, start + BLOCK))) for start in starts])
+
+    def _evaluate_block(self, designs: Designs) -> Evaluation:
         spec, points = self.specification, self.points
         circuit = Filter(
             designs.inverter_inductance_h,

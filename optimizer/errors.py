@@ -2,6 +2,7 @@
 
 WattfrontError
 |-- InputError        bad input; exit code 2; every problem found, one line each (also a ValueError)
+|   `-- PartsError    faults of the catalogue or of a user's part files, in the catalogue's own words
 `-- NothingFeasible   no candidate keeps every constraint; exit code 1; which constraints ruled them out
 """
 
@@ -54,6 +55,17 @@ class InputError(WattfrontError, ValueError):
 
     def __str__(self) -> str:
         return "\n".join(str(problem) for problem in self.problems)
+
+
+class PartsError(InputError):
+    """Faults of part files, as the catalogue tells them."""
+
+    def __init__(self, told: str) -> None:
+        super().__init__()
+        self.told = told
+
+    def __str__(self) -> str:
+        return self.told
 
 
 class RuledOut(NamedTuple):

@@ -3,6 +3,7 @@
 from __future__ import annotations
 
 from dataclasses import dataclass
+from typing import Any
 
 import moocore
 import numpy as np
@@ -30,6 +31,7 @@ class Front:
         table: one row a design (front.csv).
         margins: one row a design, margins of all constraints [-].
         limits: (name, unit, sense) of the constraints.
+        limit_range: least and greatest limit of each over the designs (a junction limit is the device's own).
         efficiency: (n, p) over `load_level` (p,) [-].
         line_order, line_amplitude, line_limit: (n, k) harmonic lines over the base, listed ones; no limit is infinite.
     """
@@ -37,6 +39,7 @@ class Front:
     table: pd.DataFrame
     margins: pd.DataFrame
     limits: tuple[tuple[str, str, str], ...]
+    limit_range: tuple[tuple[float, float], ...]
     load_level: Array
     efficiency: Array
     line_order: Array
@@ -75,6 +78,7 @@ def front(result: SearchResult) -> Front:
         table=table,
         margins=margins,
         limits=tuple((entry.name, entry.unit, entry.sense) for entry in required[0]),
+        limit_range=tuple(_range([entry.limit for entry in same]) for same in zip(*required, strict=True)),
         load_level=evaluations[0].load_level,
         efficiency=np.concatenate([item.efficiency for item in evaluations]),
         line_order=np.concatenate([item.lines.order for item in lines]),
@@ -88,6 +92,11 @@ def _class_front(found: ClassResult) -> NDArray[np.int64]:
     _, first = np.unique(found.objectives, axis=0, return_index=True)
     rows = first[moocore.is_nondominated(found.objectives[first])]
     return rows[np.lexsort(found.objectives[rows].T[::-1])]
+
+
+def _range(limits: list[Array]) -> tuple[float, float]:
+    together = np.concatenate(limits)
+    return float(together.min()), float(together.max())
 
 
 def _initials(device_class: str) -> str:
@@ -119,8 +128,8 @@ def design_table(
         n rows; losses `loss_*_w` are at rated load and add up to `loss_rated_w`, volumes `volume_*_l` to `volume_l`,
         masses and prices likewise.
     """
-    catalog, rated = inverter.catalog, result.rated
-    columns: dict[str, object] = _choices(inverter, designs)
+    rated = result.rated
+    columns: dict[str, Any] = choices(inverter, designs)
     columns |= {
         "efficiency_rated": result.efficiency[:, rated],
         "efficiency_weighted": result.efficiency_weighted,
@@ -139,8 +148,6 @@ def design_table(
     columns |= {f"mass_{name}_kg": part for name, part in result.masses.items()}
     columns |= {f"price_{name}": part for name, part in result.prices.items()}
     columns |= result.details
-    columns |= _inductor_columns(catalog, "inverter_inductor", designs.inverter_inductor)
-    columns |= _inductor_columns(catalog, "grid_inductor", designs.grid_inductor)
     margins = margins_of(constraints)
     names = np.array([entry.name for entry in constraints])
     columns["tightest_constraint"] = names[np.argmin(margins, axis=-1)]
@@ -148,7 +155,8 @@ def design_table(
     return pd.DataFrame(columns)
 
 
-def _choices(inverter: Inverter, designs: Designs) -> dict[str, object]:
+def choices(inverter: Inverter, designs: Designs) -> dict[str, Any]:
+    """What every candidate is made of, by column name with unit suffix; `optimizer.designs_file` reads it back."""
     catalog = inverter.catalog
     classes = catalog.devices.column("device_class")[designs.device]
     schemes = np.array([scheme.name for scheme in inverter.bridge.modulations])
@@ -167,6 +175,8 @@ def _choices(inverter: Inverter, designs: Designs) -> dict[str, object]:
         "dc_link": np.array(catalog.dc_link_capacitors.names)[designs.dc_link],
         "cooling": np.where(designs.forced_cooling == 1, "forced", "natural"),
         "sink_resistance_k_per_w": designs.sink_resistance_k_per_w,
+        **_inductor_columns(catalog, "inverter_inductor", designs.inverter_inductor),
+        **(_inductor_columns(catalog, "grid_inductor", designs.grid_inductor) if np.any(designs.grid_inductance_h > 0.0) else {}),
     }
 
 

@@ -16,8 +16,8 @@ import numpy as np
 from numpy.typing import NDArray
 from scipy.stats import qmc
 
-from models.catalog import load_catalog
 from models.inverter import Inverter
+from optimizer.catalog_listing import read_catalog
 from optimizer.nsga import ArrayEvaluator, ArrayNSGA2
 from optimizer.objectives import OBJECTIVES, requirements_of
 from optimizer.problem import ClassProblem
@@ -86,7 +86,7 @@ def prepared_inverter(study: Study) -> Inverter:
         InputError: where the study names parts that the catalogue does not have.
     """
     if study.file_hash not in _prepared:
-        catalog = load_catalog(study.catalog_files)
+        catalog = read_catalog(study.catalog_files)
         study.check_against(catalog)
         inverter = Inverter(study.specification, catalog)
         _ = inverter.tables, inverter.sinks, inverter.ac_capacitor

@@ -5,7 +5,7 @@ from __future__ import annotations
 import hashlib
 import tomllib
 from collections.abc import Iterable, Mapping
-from dataclasses import dataclass
+from dataclasses import dataclass, replace
 from pathlib import Path
 from typing import TYPE_CHECKING, Any
 
@@ -120,6 +120,12 @@ class Study:
             at_most=content.at_most,
             catalog_files=tuple(path.parent / name for name in content.catalog["files"]),
         )
+
+    def with_effort(self, population: int | None, generations: int | None) -> Study:
+        """The same study searched with another population or number of generations; None keeps the study's own."""
+        effort = {"population": population, "generations": generations}
+        given = {name: value for name, value in effort.items() if value is not None}
+        return replace(self, search=replace(self.search, **given))
 
     def check_against(self, catalog: Catalog) -> None:
         """Check that the catalogue has every device class, material, conductor and limit table asked for.

@@ -9,7 +9,7 @@ import numpy as np
 from numpy.typing import NDArray
 
 from models.catalog.gathered import Gathered
-from models.semiconductors.conduction import Path, diode_path, switch_path
+from models.semiconductors.conduction import HeatLaw, conduction_law, diode_path, switch_path
 from models.semiconductors.junction import junction_to_case, solve
 from models.semiconductors.switching import LegSwitching, dead_time_loss, gate_drive_loss, leg_switching
 from models.waveforms.bridges import Bridge
@@ -62,45 +62,47 @@ class BridgeLosses:
 
 
 @dataclass(frozen=True)
-class _PositionLoss:
-    """What heats one switch position, per modelled leg (l, n, p); temperature-dependent parts kept apart."""
+class _Position:
+    """What heats one switch position, per modelled leg (l, n, p), each part apart.
 
-    switch: Path
-    diode: Path
-    currents: tuple[Array, Array, Array, Array]
-    shared: NDArray[np.bool_]
-    on_hot: Array
-    off_hot: Array
-    recovery_hot: Array
+    Attributes:
+        forward, channel: conduction of switch current and, of a shared die, of reverse current, in the switch die.
+        freewheel: conduction of a diode die of its own.
+        switching, recovery: laws without resistive part.
+        fixed: loss that does not depend on temperature (output charge, dead time) [W].
+        shared: true where one die carries both directions (n, 1).
+    """
+
+    forward: HeatLaw
+    channel: HeatLaw
+    freewheel: HeatLaw
+    switching: HeatLaw
+    recovery: HeatLaw
     fixed: Array
-    hot_c: Array
-    coefficients: tuple[Array, Array, Array]
+    shared: NDArray[np.bool_]
 
-    def conduction(self, switch_c: Array, diode_c: Array) -> tuple[Array, Array]:
-        """Conduction loss in the switch die and in the diode die [W]."""
-        switch_average, switch_square, diode_average, diode_square = self.currents
-        forward = self.switch.loss(switch_c, switch_average, switch_square)
-        channel = self.switch.slope_at(switch_c) * diode_square
-        apart = self.diode.loss(diode_c, diode_average, diode_square)
-        return forward + np.where(self.shared, channel, 0.0), np.where(self.shared, 0.0, apart)
+    def dies(self) -> tuple[HeatLaw, HeatLaw]:
+        """All of it as one law for the switch die and one for the diode die."""
+        together = self.shared.astype(float)
+        apart = 1.0 - together
+        switch = HeatLaw(
+            self.forward.constant + self.switching.constant + self.fixed + together * self.recovery.constant,
+            self.forward.linear + self.switching.linear + together * self.recovery.linear,
+            self.forward.resistive + together * self.channel.resistive,
+            self.forward.growth,
+        )
+        diode = HeatLaw(
+            apart * (self.freewheel.constant + self.recovery.constant),
+            apart * (self.freewheel.linear + self.recovery.linear),
+            apart * self.freewheel.resistive,
+            self.freewheel.growth,
+        )
+        return switch, diode
 
-    def switching(self, switch_c: Array) -> Array:
-        """Turn-on and turn-off loss of the position [W]."""
-        k_on, k_off, _ = self.coefficients
-        cooler = self.hot_c - switch_c
-        return self.on_hot * (1.0 - k_on * cooler) + self.off_hot * (1.0 - k_off * cooler)
-
-    def recovery(self, diode_c: Array) -> Array:
-        """Recovery loss of the position [W]."""
-        return self.recovery_hot * (1.0 - self.coefficients[2] * (self.hot_c - diode_c))
-
-    def dies(self, switch_c: Array, diode_c: Array) -> tuple[Array, Array]:
-        """Total loss of the switch die and of the diode die [W]."""
-        forward, apart = self.conduction(switch_c, diode_c)
-        hot_diode = np.where(self.shared, switch_c, diode_c)
-        recovered = self.recovery(hot_diode)
-        switch = forward + self.switching(switch_c) + self.fixed + np.where(self.shared, recovered, 0.0)
-        return switch, apart + np.where(self.shared, 0.0, recovered)
+    def conduction(self, switch_c: Array, diode_c: Array) -> Array:
+        """Conduction loss of the position [W]."""
+        reverse = np.where(self.shared, self.channel.at(switch_c), self.freewheel.at(diode_c))
+        return self.forward.at(switch_c) + reverse
 
 
 def bridge_losses(
@@ -124,7 +126,8 @@ def bridge_losses(
     """
     total_area = (parallel * die_area)[:, None]
     legs = _leg_switching(device, total_area, frequency, tables, state, dc_voltage)
-    position = _position_loss(device, total_area, frequency, tables, state, legs)
+    position = _position(device, total_area, frequency, tables, state, legs)
+    switch_law, diode_law = position.dies()
     dead = position.fixed - 0.5 * legs.output_charge
     count = parallel[:, None]
     resistances = (
@@ -137,7 +140,7 @@ def bridge_losses(
     positions = 2.0 * bridge.leg_copies
 
     def temperatures_from(temperature: Array) -> Array:
-        switch, diode = position.dies(temperature[0], temperature[1])
+        switch, diode = switch_law.at(temperature[0]), diode_law.at(temperature[1])
         heat = positions * (switch + diode).sum(0)
         case = cooling.ambient_c + cooling.sink_rise(heat) + resistances[2] * (switch + diode)
         return np.stack([case + resistances[0] * switch, case + resistances[1] * diode])
@@ -145,13 +148,13 @@ def bridge_losses(
     start = np.full((2, *position.fixed.shape), cooling.ambient_c + 30.0)
     point = solve(temperatures_from, start)
     switch_c, diode_c = point.temperature
-    switch, diode = position.dies(switch_c, diode_c)
-    conducting = position.conduction(switch_c, diode_c)
+    switch, diode = switch_law.at(switch_c), diode_law.at(diode_c)
+    recovering_c = np.where(position.shared, switch_c, diode_c)
     gate = gate_drive_loss(device, total_area, frequency[:, None]) * _active_legs(tables, state)
     return BridgeLosses(
-        conduction=positions * (conducting[0] + conducting[1]).sum(0),
-        switching=positions * position.switching(switch_c).sum(0),
-        recovery=positions * position.recovery(np.where(position.shared, switch_c, diode_c)).sum(0),
+        conduction=positions * position.conduction(switch_c, diode_c).sum(0),
+        switching=positions * position.switching.at(switch_c).sum(0),
+        recovery=positions * position.recovery.at(recovering_c).sum(0),
         output_charge=positions * 0.5 * legs.output_charge.sum(0),
         dead_time=positions * dead.sum(0),
         gate=positions * np.broadcast_to(gate.sum(0), switch.shape[1:]),
@@ -183,39 +186,36 @@ def _leg_switching(
     return LegSwitching(**{name: value * active for name, value in vars(leg).items()})
 
 
-def _position_loss(
+def _position(
     device: Gathered, total_area: Array, frequency: Array, tables: WaveformTables, state: WaveformState,
     legs: LegSwitching,
-) -> _PositionLoss:
+) -> _Position:
     scheme = state.scheme
     index = np.minimum(state.modulation_index, tables.linear_limit[scheme])
-    constant, slope = (np.moveaxis(table, 1, 0)[:, scheme] for table in (tables.reference_constant, tables.reference_slope))
-    per_unit = leg_currents(constant + index[..., None] * slope, state.displacement)
+    constant, slope = (np.moveaxis(table, 1, 0)[:, scheme[:, 0]] for table in (tables.reference_constant, tables.reference_slope))
+    per_unit = leg_currents(constant, slope, index, state.displacement)
     peak = state.peak_current
     square = peak**2 + 2.0 * state.ripple_mean_square
-    currents = (
-        per_unit.switch_average * peak,
-        per_unit.switch_mean_square * square,
-        per_unit.diode_average * peak,
-        per_unit.diode_mean_square * square,
-    )
     switch, diode = switch_path(device, total_area), diode_path(device, total_area)
-    line_square = 0.5 * square
-    dead = dead_time_loss(device, legs.mean_current, line_square, diode.slope, frequency[:, None])
-    active = _active_legs(tables, state)
-    return _PositionLoss(
-        switch=switch,
-        diode=diode,
-        currents=currents,
-        shared=device.shared_die,
-        on_hot=0.5 * legs.turn_on_hot,
-        off_hot=0.5 * legs.turn_off_hot,
-        recovery_hot=0.5 * legs.recovery_hot,
-        fixed=0.5 * (legs.output_charge + dead * active),
-        hot_c=device.energy_hot_c,
-        coefficients=(
-            device.turn_on_temperature_coefficient_per_k,
-            device.turn_off_temperature_coefficient_per_k,
-            device.recovery_temperature_coefficient_per_k,
+    dead = dead_time_loss(device, legs.mean_current, 0.5 * square, diode.slope, frequency[:, None])
+    reverse_square = per_unit.diode_mean_square * square
+    return _Position(
+        forward=conduction_law(switch, per_unit.switch_average * peak, per_unit.switch_mean_square * square),
+        channel=conduction_law(switch, np.zeros_like(reverse_square), reverse_square),
+        freewheel=conduction_law(diode, per_unit.diode_average * peak, reverse_square),
+        switching=_energy_law(
+            device,
+            (0.5 * legs.turn_on_hot, device.turn_on_temperature_coefficient_per_k),
+            (0.5 * legs.turn_off_hot, device.turn_off_temperature_coefficient_per_k),
         ),
+        recovery=_energy_law(device, (0.5 * legs.recovery_hot, device.recovery_temperature_coefficient_per_k)),
+        fixed=0.5 * (legs.output_charge + dead * _active_legs(tables, state)),
+        shared=device.shared_die,
     )
+
+
+def _energy_law(device: Gathered, *parts: tuple[Array, Array]) -> HeatLaw:
+    """Switching losses E_hot [1 - k (T_hot - T)] of (hot loss [W], coefficient k [1/K]) as one law of temperature."""
+    linear = sum(hot * coefficient for hot, coefficient in parts)
+    constant = sum(hot for hot, _ in parts) - device.energy_hot_c * linear
+    return HeatLaw(constant, linear, np.zeros(()), np.zeros(()))

@@ -41,6 +41,26 @@ class Path:
         return self.threshold_at(temperature) * average + self.slope_at(temperature) * mean_square
 
 
+@dataclass(frozen=True)
+class HeatLaw:
+    """Loss of a die over its junction temperature T: constant + linear T + resistive exp(growth (T - 25 degC)) [W]."""
+
+    constant: Array
+    linear: Array
+    resistive: Array
+    growth: Array
+
+    def at(self, temperature: Array) -> Array:
+        """Loss [W] at a junction temperature [degC]."""
+        return self.constant + self.linear * temperature + self.resistive * np.exp(self.growth * (temperature - COLD_C))
+
+
+def conduction_law(path: Path, average: Array, mean_square: Array) -> HeatLaw:
+    """Conduction loss of a path as a law of temperature, from average [A] and mean-square current [A2]."""
+    cold = path.threshold - path.threshold_slope * COLD_C
+    return HeatLaw(cold * average, path.threshold_slope * average, path.slope * mean_square, path.slope_log)
+
+
 def switch_path(device: Any, total_area: Array) -> Path:
     """Path through the switch of `total_area` [m2] of parallel dies; `device` has the catalogue's device fields."""
     span = device.hot_c - COLD_C

@@ -29,19 +29,23 @@ class LegCurrents:
     diode_mean_square: Array
 
 
-def leg_currents(reference: Complex, displacement: Array) -> LegCurrents:
+def leg_currents(constant: Complex, slope: Complex, modulation_index: Array, displacement: Array) -> LegCurrents:
     """Average and mean square of switch and diode current per unit of the peak phase current, no ripple.
 
     Args:
-        reference: harmonics U_k of the leg's reference, orders 1, 3, 5, ... on the last axis [-].
-        displacement: angle by which the leg current lags the fundamental voltage; broadcasts [rad].
+        constant, slope: harmonics of the legs' references, U = constant + M slope, orders 1, 3, 5, ... on the last
+            axis (..., n, order) [-].
+        modulation_index: M (n, p) [-].
+        displacement: angle by which the leg current lags the fundamental voltage (n, p) [rad].
 
     Returns:
-        Averages over the peak current and mean squares over its square [-].
+        Averages over the peak current and mean squares over its square (..., n, p) [-].
     """
-    turned = reference * rotations(displacement)
-    first = turned[..., 0].real
-    shaped = turned.real @ SINE_SQUARE_INTEGRALS
+    cosines, sines = _multiples(displacement)
+    fixed = _projected(constant * SINE_SQUARE_INTEGRALS, cosines, sines)
+    growing = _projected(slope * SINE_SQUARE_INTEGRALS, cosines, sines)
+    first = _fundamental(constant, cosines, sines) + modulation_index * _fundamental(slope, cosines, sines)
+    shaped = fixed + modulation_index * growing
     half = 0.5 * np.pi
     scale = 0.25 / np.pi
     return LegCurrents(
@@ -52,15 +56,28 @@ def leg_currents(reference: Complex, displacement: Array) -> LegCurrents:
     )
 
 
-def rotations(displacement: Array) -> Complex:
-    """exp(j k displacement) for the orders k, on a new last axis [-]."""
-    first = np.exp(1j * np.asarray(displacement))
-    square = first * first
-    turned = np.empty((*first.shape, len(ORDERS)), dtype=complex)
-    turned[..., 0] = first
-    for position in range(1, len(ORDERS)):
-        turned[..., position] = turned[..., position - 1] * square
-    return turned
+def _projected(harmonics: Complex, cosines: Array, sines: Array) -> Array:
+    """Real part of sum over k of U_k exp(j k phi), (..., n, p) [-]."""
+    along = np.einsum("...nk,npk->...np", harmonics.real, cosines)
+    return along - np.einsum("...nk,npk->...np", harmonics.imag, sines)
+
+
+def _fundamental(harmonics: Complex, cosines: Array, sines: Array) -> Array:
+    """Real part of U_1 exp(j phi), (..., n, p) [-]."""
+    lead = harmonics[..., 0, None]
+    return lead.real * cosines[..., 0] - lead.imag * sines[..., 0]
+
+
+def _multiples(angle: Array) -> tuple[Array, Array]:
+    """cos(k angle) and sin(k angle) for the odd orders k on a new last axis, by recurrence [-]."""
+    cosines, sines = np.empty((*angle.shape, len(ORDERS))), np.empty((*angle.shape, len(ORDERS)))
+    cosines[..., 0], sines[..., 0] = np.cos(angle), np.sin(angle)
+    double_cosine = 2.0 * np.square(cosines[..., 0]) - 1.0
+    double_sine = 2.0 * cosines[..., 0] * sines[..., 0]
+    for place in range(1, len(ORDERS)):
+        cosines[..., place] = cosines[..., place - 1] * double_cosine - sines[..., place - 1] * double_sine
+        sines[..., place] = sines[..., place - 1] * double_cosine + cosines[..., place - 1] * double_sine
+    return cosines, sines
 
 
 def reference_harmonics(samples: Array) -> Complex:

@@ -1,0 +1,124 @@
+"""The commands of `wattfront`. Each reads its input, calls the library and says what came out; nothing is computed here.
+
+Heavy imports happen inside the commands, so that `--help` answers at once.
+"""
+
+from __future__ import annotations
+
+import sys
+from pathlib import Path
+from typing import Annotated
+
+import typer
+
+from optimizer.errors import InputError, Problem, WattfrontError
+
+app = typer.Typer(
+    name="wattfront",
+    no_args_is_help=True,
+    add_completion=False,
+    pretty_exceptions_enable=False,
+    help="Pareto fronts of losses, volume, price and distortion for DC-AC inverters, before any layout.",
+    epilog="Early-concept figures. A dc link stores lethal energy; standards and licensed practice decide.",
+)
+
+StudyFile = Annotated[Path, typer.Argument(help="Study file (TOML).", show_default=False)]
+
+
+@app.command(epilog="Example: wattfront new my_inverter.toml")
+def new(file: Annotated[Path, typer.Argument(help="Study file to write.", show_default=False)]) -> None:
+    """Write a commented starter study."""
+    from optimizer.run_folder import write_whole
+    from optimizer.starter import starter_text
+
+    if file.exists():
+        raise InputError(Problem("a file that exists already", "a new file name", file=str(file)))
+    if not file.parent.is_dir():
+        raise InputError(Problem(f"a folder that does not exist, {file.parent}", "an existing folder", file=str(file)))
+    write_whole(file, starter_text())
+    typer.echo(f"Wrote {file}. Next: edit it, then run  wattfront search {file}")
+
+
+@app.command(epilog="Example: wattfront search studies/rooftop_5kw.toml --seed 7")
+def search(
+    study: StudyFile,
+    run: Annotated[Path | None, typer.Option(help="Run folder; default runs/<study name>.", show_default=False)] = None,
+    seed: Annotated[int, typer.Option(help="Seed; the same seed gives the same result.", min=0)] = 1,
+    workers: Annotated[
+        int | None, typer.Option(help="Processes; default one per core.", min=1, max=256, show_default=False)
+    ] = None,
+    population: Annotated[
+        int | None, typer.Option(help="Candidates per generation and class, instead of the study's.", min=8, show_default=False)
+    ] = None,
+    generations: Annotated[
+        int | None, typer.Option(help="Generations, instead of the study's.", min=1, show_default=False)
+    ] = None,
+    json: Annotated[bool, typer.Option("--json", help="Print the summary as JSON instead of a table.")] = False,
+) -> None:
+    """Search a study's inverter and write its run folder: fronts, margins, dashboard."""
+    from optimizer.progress import SearchBar
+    from optimizer.run import run_search
+    from optimizer.study import Study
+    from optimizer.summary import print_summary
+
+    asked = Study.read(study).with_effort(population, generations)
+    folder = run or Path("runs") / asked.name
+    with SearchBar(asked, hidden=json) as bar:
+        outcome = run_search(asked, folder, seed=seed, workers=workers, report=bar.report, stage=bar.stage)
+    print_summary(outcome, as_json=json)
+
+
+@app.command(epilog="Example: wattfront evaluate studies/rooftop_5kw.toml --designs prototypes.csv --out results.csv")
+def evaluate(
+    study: StudyFile,
+    designs: Annotated[
+        Path, typer.Option(help="Designs, one a row; columns as in front.csv (wattfront evaluate --columns).", show_default=False)
+    ],
+    out: Annotated[Path | None, typer.Option(help="Result file, .csv or .json; default: standard output.", show_default=False)] = None,
+    json: Annotated[bool, typer.Option("--json", help="JSON instead of CSV on standard output.")] = False,
+) -> None:
+    """Evaluate designs given by hand: every figure, every margin."""
+    from optimizer.designs_file import read_designs
+    from optimizer.evaluate import evaluated_table, written_table
+    from optimizer.run_folder import write_whole
+    from optimizer.search import prepared_inverter
+    from optimizer.study import Study
+
+    asked = Study.read(study)
+    inverter = prepared_inverter(asked)
+    table = evaluated_table(asked, inverter, read_designs(designs, inverter))
+    kind = "json" if json or (out is not None and out.suffix == ".json") else "csv"
+    text = written_table(table, kind)
+    if out is None:
+        typer.echo(text, nl=False)
+    else:
+        write_whole(out, text)
+        typer.echo(f"Wrote {len(table)} designs, {table.feasible.sum()} of them feasible, to {out}")
+
+
+@app.command(epilog="Example: wattfront catalog --kind devices --files my_parts.toml")
+def catalog(
+    kind: Annotated[str | None, typer.Option(help="List the parts of one kind with all their values.", show_default=False)] = None,
+    files: Annotated[list[Path] | None, typer.Option(help="Your own part files, checked and listed too.", show_default=False)] = None,
+    json: Annotated[bool, typer.Option("--json", help="JSON instead of a table.")] = False,
+) -> None:
+    """List and check parts, your own included, with where their values come from."""
+    from optimizer.catalog_listing import listing
+
+    typer.echo(listing(kind, tuple(files or ()), as_json=json), nl=False)
+
+
+def main() -> None:
+    """Run the command line: exit code 0 done, 1 nothing feasible, 2 bad input."""
+    try:
+        app()
+    except WattfrontError as trouble:
+        typer.echo(str(trouble), err=True)
+        sys.exit(trouble.exit_code)
+    except OSError as trouble:
+        typer.echo(f"{trouble.filename or 'file'}: {trouble.strerror or trouble}", err=True)
+        sys.exit(InputError.exit_code)
+
+
+if __name__ == "__main__":
+    main()

@@ -1,0 +1,174 @@
+"""A whole run: search, fronts, tables, dashboard, and the run folder that holds them."""
+
+from __future__ import annotations
+
+import gzip
+import json
+import time
+from collections.abc import Callable
+from dataclasses import dataclass
+from importlib.metadata import PackageNotFoundError, version
+from pathlib import Path
+from typing import Any
+
+import numpy as np
+import pandas as pd
+from numpy.typing import NDArray
+
+from optimizer.errors import NothingFeasible
+from optimizer.front import Front, choices, front
+from optimizer.objectives import OBJECTIVES
+from optimizer.run_folder import RUN_FILE, Content, write_run
+from optimizer.search import ClassResult, Progress, SearchResult, prepared_inverter, search
+from optimizer.space import SearchSpace
+from optimizer.study import Study
+
+DIGITS = 7
+GZIP_LEVEL = 1
+
+
+@dataclass(frozen=True)
+class Outcome:
+    """What a run left behind: its result, its fronts, its folder, where an earlier run was kept, and run.json's content."""
+
+    result: SearchResult
+    front: Front
+    folder: Path
+    kept: Path | None
+    summary: dict[str, Any]
+
+
+def run_search(
+    study: Study,
+    folder: Path,
+    *,
+    seed: int = 1,
+    workers: int | None = None,
+    report: Callable[[Progress], None] | None = None,
+    stage: Callable[[str], None] = lambda words: None,
+) -> Outcome:
+    """Search a study and write its run folder, whole or not at all.
+
+    Args:
+        study: the study.
+        folder: run folder to write.
+        seed, workers, report: as in `optimizer.search.search`.
+        stage: told what is being done.
+
+    Raises:
+        NothingFeasible: where no candidate of any class meets all requirements; nothing is written then.
+        InputError: for parts that do not exist or a folder that is no run.
+    """
+    started = time.perf_counter()
+    result = search(study, seed=seed, workers=workers, report=report)
+    if not any(len(found.points) for found in result.classes):
+        raise NothingFeasible(ruled_out(result))
+    searched = time.perf_counter()
+    stage("sorting fronts")
+    fronts = front(result)
+    evaluated = evaluated_table(result)
+    stage("drawing")
+    summary = _summary(result, fronts)
+    from optimizer.charts import dashboard_html
+
+    page = dashboard_html(study, fronts, evaluated, summary)
+    stage("writing")
+    files: dict[str, Content] = {
+        "front.csv": _csv(fronts.table),
+        "margins.csv": _csv(fronts.margins),
+        "evaluated.csv.gz": gzip.compress(_csv(evaluated).encode(), GZIP_LEVEL, mtime=0),
+        "dashboard.html": page,
+    }
+    ended = time.perf_counter()
+    summary["seconds"] = {
+        "models": sum(found.seconds["models"] for found in result.classes),
+        "search": searched - started,
+        "output": ended - searched,
+        "total": ended - started,
+    }
+    files[RUN_FILE] = json.dumps(summary, indent=1) + "\n"
+    return Outcome(result, fronts, folder, write_run(folder, files), summary)
+
+
+def ruled_out(result: SearchResult) -> list[tuple[str, float, str]]:
+    """Constraints that candidates failed, over all classes, with how near the nearest candidate came."""
+    weights = np.array([found.evaluations for found in result.classes], dtype=float)
+    shares = np.average([found.failures for found in result.classes], axis=0, weights=weights)
+    closest = min(result.classes, key=lambda found: float(np.maximum(-found.nearest, 0.0).sum()))
+    told = []
+    for name, share, margin in zip(closest.constraints, shares, closest.nearest, strict=True):
+        if margin < 0.0:
+            told.append((name, float(share), f"{-margin:.1%} beyond its limit ({closest.device_class})"))
+    return told
+
+
+def evaluated_table(result: SearchResult) -> pd.DataFrame:
+    """Every feasible candidate of a search: what it is and its objectives."""
+    inverter = prepared_inverter(result.study)
+    parts = []
+    for found in result.classes:
+        if len(found.points):
+            designs = SearchSpace(result.study, inverter, found.device_class).designs(found.points)
+            columns = choices(inverter, designs) | _objective_columns(result.study, found)
+            parts.append(pd.DataFrame(columns))
+    return pd.concat(parts, ignore_index=True)
+
+
+def _objective_columns(study: Study, found: ClassResult) -> dict[str, NDArray[np.float64]]:
+    return {OBJECTIVES[name].column: found.objectives[:, place] for place, name in enumerate(study.objectives)}
+
+
+def _summary(result: SearchResult, fronts: Front) -> dict[str, Any]:
+    study = result.study
+    return {
+        "study": {"name": study.name, "file": study.path.name, "hash": study.file_hash},
+        "version": _version(),
+        "seed": result.seed,
+        "objectives": [
+            {"name": name, "column": OBJECTIVES[name].column, "direction": "min", "unit": OBJECTIVES[name].unit}
+            for name in study.objectives
+        ],
+        "evaluations": result.evaluations,
+        "feasible": {found.device_class: len(found.points) for found in result.classes},
+        "designs": {
+            "class_front": fronts.table.device_class.value_counts().to_dict(),
+            "overall_front": int(fronts.table.overall_front.sum()),
+        },
+        "hypervolume": {
+            found.device_class: [{"evaluations": count, "hypervolume": value} for count, value in found.hypervolume]
+            for found in result.classes
+        },
+        "limits": [
+            {"name": name, "unit": unit, "sense": sense, "limit": low if low == high else [low, high]}
+            for (name, unit, sense), (low, high) in zip(fronts.limits, fronts.limit_range, strict=True)
+        ],
+        "ruled_out": {
+            found.device_class: ruled_out(SearchResult(study, result.seed, (found,)))
+            for found in result.classes
+            if not len(found.points)
+        },
+        "caution": "Early-concept figures from analytic models and representative parts. A dc link stores lethal energy; "
+        "standards and licensed practice decide.",
+    }
+
+
+def _version() -> str:
+    try:
+        return version("wattfront")
+    except PackageNotFoundError:
+        return "unknown (not installed)"
+
+
+def _csv(table: pd.DataFrame) -> str:
+    """CSV with floats of DIGITS significant digits."""
+    rounded = table.copy()
+    for name in rounded.columns[rounded.dtypes == np.float64]:
+        rounded[name] = _significant(rounded[name].to_numpy())
+    return rounded.to_csv(index=False, lineterminator="\n")
+
+
+def _significant(values: NDArray[np.float64]) -> NDArray[np.float64]:
+    size = np.abs(values)
+    exponent = DIGITS - 1 - np.floor(np.log10(np.where(size > 0.0, size, 1.0)))
+    factor = 10.0 ** np.abs(exponent)
+    return np.where(exponent >= 0, np.rint(values * factor) / factor, np.rint(values / factor) * factor)

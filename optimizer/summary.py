@@ -1,0 +1,50 @@
+"""What a finished search prints: a table of the fronts, and where the dashboard lies."""
+
+from __future__ import annotations
+
+import json
+
+from rich.console import Console
+from rich.table import Table
+
+from optimizer.objectives import OBJECTIVES
+from optimizer.run import Outcome
+
+
+def print_summary(outcome: Outcome, *, as_json: bool) -> None:
+    """Print the summary on standard output, as a table or as run.json's content plus the folder."""
+    if as_json:
+        print(json.dumps({"folder": str(outcome.folder), **outcome.summary}))
+        return
+    console = Console()
+    console.print(_table(outcome))
+    for device_class, reasons in outcome.summary["ruled_out"].items():
+        console.print(f"{device_class}: nothing feasible. " + "; ".join(f"{name}: {miss}" for name, _, miss in reasons))
+    seconds = outcome.summary["seconds"]
+    if outcome.kept:
+        console.print(f"The earlier run held files of your own and was kept as {outcome.kept}", soft_wrap=True)
+    console.print(f"{outcome.result.evaluations:,} evaluations in {seconds['total']:.1f} s, seed {outcome.result.seed}")
+    console.print(f"Dashboard: {outcome.folder / 'dashboard.html'}", soft_wrap=True)
+    console.print("[dim]Early-concept figures; lethal dc-link energy; standards and licensed practice decide.[/dim]", soft_wrap=True)
+
+
+def _table(outcome: Outcome) -> Table:
+    study, front = outcome.result.study, outcome.front.table
+    table = Table(title=f"{study.name}: Pareto designs by device class (best value of each objective)")
+    table.add_column("device class")
+    table.add_column("designs", justify="right")
+    table.add_column("on overall front", justify="right")
+    for name in study.objectives:
+        objective = OBJECTIVES[name]
+        table.add_column(f"{objective.title} [{objective.unit}]".replace("[", "\\["), justify="right")
+    table.add_column("switching frequency \\[kHz]", justify="right")
+    for found in outcome.result.classes:
+        rows = front[front.device_class == found.device_class]
+        if len(rows):
+            best = [f"{rows[OBJECTIVES[name].column].min():.3g}" for name in study.objectives]
+            hertz = rows.switching_frequency_hz / 1e3
+            span = f"{hertz.min():.3g} to {hertz.max():.3g}"
+            table.add_row(found.device_class, str(len(rows)), str(int(rows.overall_front.sum())), *best, span)
+        else:
+            table.add_row(found.device_class, "0", "0", *["-"] * len(study.objectives), "-")
+    return table

@@ -3,8 +3,9 @@
 E = e V_ref I_ref (I/I_ref)^k_i (V/V_ref)^k_v [1 - k_T (T_hot - T)] with I_ref = rated current of the dies. At each angle one
 of the leg's switches turns on at |i| - offset and off at |i| + offset, the offset being half the local ripple (exactly: the
 flux deviation at the instant). Where the current reverses within the period, turn-on is soft: no overlap, no recovery, and
-the load current recharges the output capacitance. Output charge of unipolar parts costs Q_oss V per hard turn-on (Kasper,
-Burkart, Deboy, Kolar 2016); a data-sheet turn-on energy that contains it is reduced by it first.
+the reversed current recharges the output capacitances as far as the dead time lets it. Output charge of unipolar parts costs
+Q_oss V per hard turn-on (Kasper, Burkart, Deboy, Kolar 2016); a data-sheet turn-on energy that contains it is reduced by it
+first.
 """
 
 from __future__ import annotations
@@ -16,6 +17,8 @@ import numpy as np
 from numpy.typing import NDArray
 
 Array = NDArray[np.float64]
+TINY_CHARGE = 1e-15  # C, keeps shares finite for parts whose turn-on energy contains the output charge
+LEAST_CURRENT_SHARE = 1e-9  # of the reference current: keeps logarithms finite where no current is commutated
 
 
 @dataclass(frozen=True)
@@ -62,6 +65,21 @@ def overlap_turn_on_energy(device: Any) -> Array:
     )
 
 
+def charge_left(valley: Array, charge: Array, dead_time: Array) -> Array:
+    """Share of the output-charge loss that a turn-on still costs [-].
+
+    Args:
+        valley: current at turn-on, negative where it has reversed [A].
+        charge: output charge of one position [C].
+        dead_time: [s].
+
+    A reversed current brings the charge |i| t_d of the 2 Q_oss that the switch node needs; what is left of the voltage swing,
+    1 - |i| t_d/(2 Q_oss), costs its square, as with constant capacitances (estimate for the nonlinear ones).
+    """
+    rest = 1.0 + valley * (0.5 * dead_time) / (charge + TINY_CHARGE)
+    return np.square(np.minimum(np.maximum(rest, 0.0), 1.0))
+
+
 def leg_switching(
     device: Any, total_area: Array, voltage: Array, frequency: Array, current: Array, offset: Array, share: Array
 ) -> LegSwitching:
@@ -72,21 +90,20 @@ def leg_switching(
         total_area: switch die area of one position [m2].
         voltage: dc voltage [V].
         frequency: switching frequency [Hz].
-        current: phase current at the angles of the last axis, (n, p, a) [A].
+        current: phase current at the middles of the angle cells, (n, p, a) [A].
         offset: current deviation at the switching instants, (n, p, a) [A].
-        share: 1 where the leg switches, 0 where it is clamped, (n, 1, a) or (n, p, a) [-].
+        share: 1 where the leg switches, 0 where it is clamped, (n, 1, a) [-].
 
     Returns:
         Losses of both switches of the leg, (n, p).
     """
-    count = current.shape[-1]
     magnitude = np.abs(current)
     reference = (device.reference_current_density_a_per_m2 * total_area)[..., None]
-    at_on = (magnitude - offset) / reference
-    at_off = (magnitude + offset) / reference
-    hard = (at_on > 0.0) * share
-    at_on = np.maximum(at_on, 1e-9)
-    at_off = np.maximum(at_off, 1e-9)
+    valley = magnitude - offset
+    log_on = np.log(np.maximum(valley / reference, LEAST_CURRENT_SHARE))
+    log_off = np.log(np.maximum((magnitude + offset) / reference, LEAST_CURRENT_SHARE))
+    shares = np.broadcast_to(share, magnitude.shape)
+    count = magnitude.shape[-1]
     per_second = frequency / count * reference[..., 0]
     exponents = (device.turn_on_current_exponent, device.turn_off_current_exponent, device.recovery_current_exponent)
     on, off, recovery = (exponent[..., None] for exponent in exponents)
@@ -94,13 +111,19 @@ def leg_switching(
     turn_off = energy_scale(device.turn_off_energy_j_per_av, voltage, device.energy_voltage_exponent, device)
     recovered = energy_scale(device.recovery_energy_j_per_av, voltage, device.recovery_voltage_exponent, device)
     charge = output_charge(device, voltage, total_area)
+    left = charge_left(valley, charge[..., None], device.dead_time_s[..., None])
     return LegSwitching(
-        turn_on_hot=overlap * per_second * np.einsum("...a,...a->...", hard, at_on**on),
-        turn_off_hot=turn_off * per_second * np.einsum("...a,...a->...", np.broadcast_to(share, at_off.shape), at_off**off),
-        recovery_hot=recovered * per_second * np.einsum("...a,...a->...", hard, at_on**recovery),
-        output_charge=charge * voltage * frequency / count * hard.sum(-1),
+        turn_on_hot=overlap * per_second * _summed(shares, on * log_on),
+        turn_off_hot=turn_off * per_second * _summed(shares, off * log_off),
+        recovery_hot=recovered * per_second * _summed(shares, recovery * log_on),
+        output_charge=charge * voltage * frequency / count * np.einsum("...a,...a->...", shares, left),
         mean_current=magnitude.mean(-1),
     )
+
+
+def _summed(weight: Array, logarithm: Array) -> Array:
+    """Sum over angles of weight times exp(logarithm): powers by logarithms cost half of what pow costs."""
+    return np.einsum("...a,...a->...", weight, np.exp(logarithm))
 
 
 def gate_drive_loss(device: Any, total_area: Array, frequency: Array) -> Array:

@@ -59,6 +59,8 @@ def leg_currents(constant: Complex, slope: Complex, modulation_index: Array, dis
 def _projected(harmonics: Complex, cosines: Array, sines: Array) -> Array:
     """Real part of sum over k of U_k exp(j k phi), (..., n, p) [-]."""
     along = np.einsum("...nk,npk->...np", harmonics.real, cosines)
+    if not harmonics.imag.any():  # references that are odd about the voltage's zero have sine terms only
+        return along
     return along - np.einsum("...nk,npk->...np", harmonics.imag, sines)
 
 

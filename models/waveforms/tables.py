@@ -21,8 +21,8 @@ Array = NDArray[np.float64]
 Ints = NDArray[np.int64]
 INDEX_POINTS = 72
 INDEX_MAX = 1.16
-ANGLE_POINTS = 18
-FINE = 6
+ANGLE_CELLS = 18  # a multiple of 6, so that 30 degree sectors end at cell bounds
+FINE = 6  # samples per cell for means and maxima
 SIDEBAND_COUNT = 24
 
 
@@ -31,7 +31,7 @@ class WaveformTables:
     """Tables of one bridge; axes: s scheme, i modulation index, a angle over half the line period, k sideband.
 
     Attributes:
-        angle: angles of the `a` axis, midpoints of equal cells over (0, pi) [rad].
+        angle: middles of equal cells over 0..pi [rad].
         linear_limit: (s,) greatest modulation index [-].
         peak_ripple: (s, i) greatest peak-to-peak ripple over the line period [V_dc/(L f_s)].
         ripple_mean_square: (s, i) mean square ripple [(V_dc/(L f_s))^2].
@@ -98,7 +98,7 @@ def waveform_tables(bridge_name: str, exponents: tuple[tuple[float, float], ...]
     bridge = BRIDGES[bridge_name]
     rows = [_scheme_rows(bridge, scheme, exponents) for scheme in bridge.modulations]
     stacked = {key: np.stack([row[key] for row in rows]) for key in rows[0]}
-    angle = np.pi * (np.arange(ANGLE_POINTS) + 0.5) / ANGLE_POINTS
+    angle = np.pi * (np.arange(ANGLE_CELLS) + 0.5) / ANGLE_CELLS
     limits = np.array([scheme.linear_limit for scheme in bridge.modulations])
     return WaveformTables(angle=angle, linear_limit=limits, exponents=exponents, **stacked)
 
@@ -107,15 +107,13 @@ def _scheme_rows(
     bridge: Bridge, scheme: Modulation, exponents: tuple[tuple[float, float], ...]
 ) -> dict[str, NDArray]:
     index = np.linspace(0.0, INDEX_MAX, INDEX_POINTS)
-    fine_count = ANGLE_POINTS * FINE
+    fine_count = ANGLE_CELLS * FINE
     angle = np.pi * (np.arange(fine_count) + 0.5) / fine_count
     usable = np.minimum(index, scheme.linear_limit)
     duty = 0.5 * (1.0 + scheme.references(*np.broadcast_arrays(angle, usable[:, None])))
     period = SwitchingPeriod(np.clip(duty, 0.0, 1.0), scheme.carrier_sign, bridge.voltage_weights)
     on_square = period.voltage_mean_square
-    offset = -period.flux_at_turn_on(0)
-    clamped = (duty[-1, :, 0] >= 1.0 - 1e-12) | (duty[-1, :, 0] <= 1e-12)
-    clamped &= (duty[1, :, 0] >= 1.0 - 1e-12) | (duty[1, :, 0] <= 1e-12)
+    share = _cell_means(1.0 - (_at_rail(duty[-1, :, 0]) & _at_rail(duty[1, :, 0])))
     shapes = [period.loss_shape(alpha, beta).mean(-1) for alpha, beta in exponents]
     spectrum = sidebands(bridge, scheme, usable, on_square.mean(-1), SIDEBAND_COUNT)
     constant, slope = _leg_references(bridge, scheme)
@@ -124,8 +122,8 @@ def _scheme_rows(
     return {
         "peak_ripple": period.peak_to_peak.max(-1),
         "ripple_mean_square": period.mean_square.mean(-1),
-        "commutation_offset": _cell_means(offset),
-        "switching_share": _cell_means(1.0 - clamped),
+        "commutation_offset": _cell_means(-period.flux_at_turn_on(0)),
+        "switching_share": share,
         "leg_switching": np.array([float(scheme.switching_legs[leg]) for leg in bridge.modelled_legs]),
         "reference_constant": constant,
         "reference_slope": slope,
@@ -142,7 +140,11 @@ def _scheme_rows(
 
 
 def _cell_means(fine: Array) -> Array:
-    return fine.reshape(*fine.shape[:-1], ANGLE_POINTS, FINE).mean(-1)
+    return fine.reshape(*fine.shape[:-1], ANGLE_CELLS, FINE).mean(-1)
+
+
+def _at_rail(duty: Array) -> NDArray[np.bool_]:
+    return (duty >= 1.0 - 1e-12) | (duty <= 1e-12)
 
 
 def _leg_references(bridge: Bridge, scheme: Modulation) -> tuple[NDArray, NDArray]:
@@ -153,4 +155,10 @@ def _leg_references(bridge: Bridge, scheme: Modulation) -> tuple[NDArray, NDArra
         for level in (0.25, 0.75)
     )
     slope = 2.0 * (high - low)
-    return low - 0.25 * slope, slope
+    return _without_noise(low - 0.25 * slope), _without_noise(slope)
+
+
+def _without_noise(harmonics: NDArray[np.complex128]) -> NDArray[np.complex128]:
+    """Set to zero what the transform's rounding left in components that symmetry forbids [-]."""
+    real, imag = (np.where(np.abs(part) < 1e-12, 0.0, part) for part in (harmonics.real, harmonics.imag))
+    return real + 1j * imag

@@ -16,7 +16,7 @@ from numpy.typing import NDArray
 Array = NDArray[np.float64]
 RUNAWAY_C = 260.0
 TOLERANCE_K = 0.1
-STEPS = 6
+STEPS = 10
 
 
 @dataclass(frozen=True)
@@ -28,30 +28,35 @@ class FixedPoint:
 
 
 def solve(temperatures_from: Callable[[Array], Array], start: Array, steps: int = STEPS) -> FixedPoint:
-    """Solve T = g(T) element by element where the elements couple weakly.
+    """Solve T = g(T) where the elements of a candidate couple weakly and candidates not at all.
 
     Args:
         temperatures_from: g, junction temperatures that the losses at the given temperatures cause [degC].
-        start: first guess [degC].
+        start: first guess (..., n, p), candidates on the axis before the last [degC].
         steps: greatest number of evaluations of g [-].
 
     Returns:
-        The fixed point; temperatures are clipped to RUNAWAY_C.
+        The fixed point; temperatures are clipped to RUNAWAY_C. A candidate rests once it is settled, so that its result
+        does not depend on the others it is solved with.
     """
     previous = start
     previous_image = np.minimum(temperatures_from(previous), RUNAWAY_C)
     current = image = previous_image
     residual = np.full_like(current, np.inf)
+    resting = np.zeros((current.shape[-2], 1), dtype=bool)
+    others = (*range(current.ndim - 2), current.ndim - 1)
     for _ in range(steps - 1):
-        image = np.minimum(temperatures_from(current), RUNAWAY_C)
-        residual = np.abs(image - current)
-        if np.all(residual < 0.2 * TOLERANCE_K):
+        latest = np.minimum(temperatures_from(current), RUNAWAY_C)
+        image = np.where(resting, image, latest)
+        residual = np.where(resting, residual, np.abs(image - current))
+        resting = (residual < 0.2 * TOLERANCE_K).all(axis=others)[:, None]
+        if resting.all():
             break
         step = current - previous
         moved = np.abs(step) > 1e-9
         slope = np.where(moved, np.clip((image - previous_image) / np.where(moved, step, 1.0), 0.0, 0.9), 0.0)
         previous, previous_image = current, image
-        current = np.minimum(current + (image - current) / (1.0 - slope), RUNAWAY_C)
+        current = np.where(resting, current, np.minimum(current + (image - current) / (1.0 - slope), RUNAWAY_C))
     return FixedPoint(image, (residual < TOLERANCE_K) & (image < RUNAWAY_C - 1.0))
 
 

@@ -1,0 +1,25 @@
+"""Fixtures shared by all tests: the shipped studies and one small search."""
+
+from __future__ import annotations
+
+from pathlib import Path
+
+import pytest
+
+from optimizer.search import SearchResult, prepared_inverter, search
+from optimizer.study import Study
+
+STUDIES = Path(__file__).parents[1] / "studies"
+
+
+@pytest.fixture(scope="session")
+def rooftop() -> Study:
+    """The rooftop study as shipped."""
+    return Study.read(STUDIES / "rooftop_5kw.toml")
+
+
+@pytest.fixture(scope="session")
+def small_search(rooftop: Study) -> SearchResult:
+    """A small search of the rooftop study, in this process."""
+    prepared_inverter(rooftop)
+    return search(rooftop.with_effort(40, 40), seed=3, workers=1)

@@ -1,0 +1,76 @@
+"""Designs by hand: rows of a front come back the same; every fault is told with its place."""
+
+import numpy as np
+import pytest
+
+from optimizer.designs_file import read_designs
+from optimizer.errors import InputError
+from optimizer.evaluate import evaluated_table, written_table
+from optimizer.front import front
+from optimizer.search import prepared_inverter
+
+
+@pytest.fixture(scope="module")
+def table(small_search):
+    return front(small_search).table.iloc[::29]
+
+
+@pytest.fixture
+def given(tmp_path, table):
+    def write(change=lambda text: text):
+        path = tmp_path / "designs.csv"
+        path.write_text(change(table.to_csv(index=False)))
+        return path
+
+    return write
+
+
+def test_rows_of_a_front_come_back_with_the_same_results(given, table, rooftop):
+    inverter = prepared_inverter(rooftop)
+    again = evaluated_table(rooftop, inverter, read_designs(given(), inverter))
+    assert again.feasible.all()
+    assert list(again.design_id) == list(table.design_id)
+    for column in ("loss_rated_w", "volume_l", "price", "current_thd", "junction_temperature_c", "efficiency_weighted"):
+        np.testing.assert_allclose(again[column], table[column], rtol=1e-6)
+
+
+def test_json_and_csv_hold_every_row(given, rooftop):
+    inverter = prepared_inverter(rooftop)
+    table = evaluated_table(rooftop, inverter, read_designs(given(), inverter))
+    assert written_table(table, "json").count('"design_id"') == len(table)
+    assert written_table(table, "csv").count("\n") == len(table) + 1
+
+
+@pytest.mark.parametrize(
+    ("change", "told"),
+    [
+        (lambda text: text.replace("switching_frequency_hz", "switching_frequency_khz"),
+         r"designs.csv: switching_frequency_hz: given no such column, expected a number above 0"),
+        (lambda text: text.replace("switching_frequency_hz", "switching_frequency_khz"),
+         r"given a column 'switching_frequency_khz', expected a known column \(the nearest is switching_frequency_hz\)"),
+        (lambda text: text.replace("SiC 650 V", "SiC 65 V", 1), r"row \d+, device: given 'SiC 65 V', expected .* the nearest is 'SiC 650 V'"),
+        (lambda text: text.replace(",natural,", ",lukewarm,", 1), r"row \d+, cooling: given 'lukewarm', expected one of the 2 names"),
+        (lambda text: "", "given no rows, expected a header and 1 to"),
+        (lambda text: text.splitlines()[0] + "\n", "given no rows"),
+    ],
+)  # fmt: skip
+def test_faults_are_told(given, rooftop, change, told):
+    with pytest.raises(InputError, match=told):
+        read_designs(given(change), prepared_inverter(rooftop))
+
+
+@pytest.mark.parametrize("cell", ["-1", "0", "nan", "inf", "much", ""])
+def test_bad_numbers_are_told(given, table, rooftop, cell):
+    broken = table.copy().astype({"die_area_mm2": object})
+    broken.iloc[0, broken.columns.get_loc("die_area_mm2")] = cell
+    with pytest.raises(InputError, match="row 2, die_area_mm2: given .*, expected a number above 0"):
+        read_designs(given(lambda _: broken.to_csv(index=False)), prepared_inverter(rooftop))
+
+
+def test_missing_and_binary_files(tmp_path, rooftop):
+    inverter = prepared_inverter(rooftop)
+    with pytest.raises(InputError, match="nowhere.csv: given a file that cannot be read"):
+        read_designs(tmp_path / "nowhere.csv", inverter)
+    (tmp_path / "b.csv").write_bytes(b"\xff\xfe\x00\x81")
+    with pytest.raises(InputError, match="given bytes that are no text"):
+        read_designs(tmp_path / "b.csv", inverter)

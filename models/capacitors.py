@@ -18,7 +18,8 @@ class AcFilterCapacitor:
     """Ac filter capacitors of all phases (n,), loss (n, p).
 
     Attributes:
-        loss: [W]; current_share: rms current over what the film takes [-]; volume: [m3]; mass: [kg]; price: [currency].
+        loss: [W]; current_share: rms current over what the film takes [-]; volume: [m3]; mass: [kg]; price:
+            [currency].
     """
 
     loss: Array
@@ -29,8 +30,14 @@ class AcFilterCapacitor:
 
 
 def ac_filter_capacitor(
-    kind: AcCapacitor, phases: int, capacitance: Array, line_current: Array, ripple_mean_square: Array,
-    line_frequency_hz: float, ripple_frequency: Array, worst: int,
+    kind: AcCapacitor,
+    phases: int,
+    capacitance: Array,
+    line_current: Array,
+    ripple_mean_square: Array,
+    line_frequency_hz: float,
+    ripple_frequency: Array,
+    worst: int,
 ) -> AcFilterCapacitor:
     """Evaluate the filter capacitors.
 
@@ -60,10 +67,12 @@ def ac_filter_capacitor(
 
 
 def double_frequency_capacitance(power: float, omega: float, dc_voltage: float, ripple: float) -> float:
-    """Dc-link capacitance of a single-phase inverter for a peak-to-peak voltage ripple, C = P/(omega V dV) [F].
+    """Dc-link capacitance of a single-phase inverter for a peak-to-peak voltage ripple, C = P/(omega V dV)
+    [F].
 
     Args:
-        power: apparent power [VA]; omega: line angular frequency [rad/s]; dc_voltage: [V]; ripple: peak to peak [V].
+        power: apparent power [VA]; omega: line angular frequency [rad/s]; dc_voltage: [V]; ripple: peak to
+            peak [V].
 
     Source: energy balance at twice the line frequency; Krein, Balog, Mirjafari (2012).
     """
@@ -73,8 +82,8 @@ def double_frequency_capacitance(power: float, omega: float, dc_voltage: float, 
 def switching_ripple_capacitance(current_rms: Array, frequency: Array, ripple: float) -> Array:
     """Dc-link capacitance that keeps the switching ripple below a peak-to-peak voltage [F].
 
-    The capacitor current is taken as a square wave of the same rms at twice the switching frequency, half of whose
-    period moves the charge I/(4 f_s): an estimate, exact for a half-on square wave.
+    The capacitor current is taken as a square wave of the same rms at twice the switching frequency, half of
+    whose period moves the charge I/(4 f_s): an estimate, exact for a half-on square wave.
 
     Args:
         current_rms: switching-frequency rms current [A]; frequency: switching frequency [Hz]; ripple: [V].
@@ -84,7 +93,9 @@ def switching_ripple_capacitance(current_rms: Array, frequency: Array, ripple: f
 
 @dataclass(frozen=True)
 class DcLink:
-    """Dc-link bank (n,), loss (n, p): units in series and parallel [-], capacitance [F], loss [W], volume [m3], ..."""
+    """Dc-link bank (n,), loss (n, p): units in series and parallel [-], capacitance [F], loss [W], volume
+    [m3], ...
+    """
 
     series: Array
     parallel: Array
@@ -97,8 +108,15 @@ class DcLink:
 
 
 def dc_link(
-    unit: Gathered, dc_voltage_max: float, dc_voltage: float, voltage_use: float, balancing_current: float,
-    needed: Array, slow_rms: Array, fast_rms: Array, worst: int,
+    unit: Gathered,
+    dc_voltage_max: float,
+    dc_voltage: float,
+    voltage_use: float,
+    balancing_current: float,
+    needed: Array,
+    slow_rms: Array,
+    fast_rms: Array,
+    worst: int,
 ) -> DcLink:
     """Size the bank and evaluate its loss.
 
@@ -117,7 +135,7 @@ def dc_link(
     for_ripple = np.ceil(heating[:, worst] / unit.unit_ripple_a - 1e-9)
     parallel = np.maximum(np.maximum(for_charge, for_ripple), 1.0)
     count = series * parallel
-    esr = (unit.unit_esr_low_ohm[:, None] * slow_rms**2 + unit.unit_esr_high_ohm[:, None] * fast_rms**2)
+    esr = unit.unit_esr_low_ohm[:, None] * slow_rms**2 + unit.unit_esr_high_ohm[:, None] * fast_rms**2
     balancing = np.where(series > 1.0, balancing_current * dc_voltage, 0.0)
     volume = count * unit.unit_volume_m3
     return DcLink(

@@ -1,8 +1,9 @@
 """Distortion of the injected current (grid) or of the output voltage (stand-alone).
 
-Switching sidebands come from the double Fourier series through the filter's transfer function at each line; low orders come
-from the dead time and, stand-alone, from the rectifier load, as the control loop leaves them: the loop is stated as an
-integrator of bandwidth f_bw, so that a disturbance at f is left with the share f/sqrt(f^2 + f_bw^2).
+Switching sidebands come from the double Fourier series through the filter's transfer function at each line;
+low orders come from the dead time and, stand-alone, from the rectifier load, as the control loop leaves them:
+the loop is stated as an integrator of bandwidth f_bw, so that a disturbance at f is left with the share
+f/sqrt(f^2 + f_bw^2).
 """
 
 from __future__ import annotations
@@ -13,7 +14,7 @@ import numpy as np
 from numpy.typing import NDArray
 
 Array = NDArray[np.float64]
-LOW_ORDERS = np.arange(3, 50, 2)
+LOW_ORDERS = np.arange(3.0, 50.0, 2.0)
 HIGHEST_ORDER = 50
 
 
@@ -64,7 +65,7 @@ def dead_time_voltage(order: Array, dc_voltage: Array, dead_time: Array, frequen
 
 def low_orders(phases: int) -> Array:
     """Low orders that the bridge can drive: odd, without multiples of three for three phases [-]."""
-    return LOW_ORDERS[LOW_ORDERS % 3 != 0] if phases == 3 else LOW_ORDERS
+    return LOW_ORDERS[LOW_ORDERS % 3 != 0.0] if phases == 3 else LOW_ORDERS
 
 
 def rectifier_harmonic(order: Array, crest_factor: float) -> Array:

@@ -33,13 +33,17 @@ class Constraint:
     sense: str
 
 
-def at_most(name: str, unit: str, value: Array, limit: Array | float, scale: Array | float | None = None) -> Constraint:
+def at_most(
+    name: str, unit: str, value: Array, limit: Array | float, scale: Array | float | None = None
+) -> Constraint:
     """Require value <= limit; the margin is their distance over `scale` (default: the limit)."""
     value, limit = np.broadcast_arrays(value, np.asarray(limit, dtype=float))
     return Constraint(name, unit, value, limit, (limit - value) / (limit if scale is None else scale), "max")
 
 
-def at_least(name: str, unit: str, value: Array, limit: Array | float, scale: Array | float | None = None) -> Constraint:
+def at_least(
+    name: str, unit: str, value: Array, limit: Array | float, scale: Array | float | None = None
+) -> Constraint:
     """Require value >= limit; the margin is their distance over `scale` (default: the limit)."""
     value, limit = np.broadcast_arrays(value, np.asarray(limit, dtype=float))
     return Constraint(name, unit, value, limit, (value - limit) / (limit if scale is None else scale), "min")

@@ -24,7 +24,9 @@ GROUPS = np.arange(1.0, CARRIER_GROUPS + 1)
 
 @dataclass(frozen=True)
 class Surroundings:
-    """What both inductors share: line frequency [Hz], air around them [degC], rise factor (n,) [-], labour [currency]."""
+    """What both inductors share: line frequency [Hz], air around them [degC], rise factor (n,) [-], labour
+    [currency].
+    """
 
     line_frequency_hz: float
     ambient_c: float
@@ -34,10 +36,12 @@ class Surroundings:
 
 @dataclass(frozen=True)
 class RippleView:
-    """Waveform state reduced to the operating points at which ripple losses are computed, then spread over points.
+    """Waveform state reduced to the operating points at which ripple losses are computed, then spread over
+    points.
 
-    Ripple depends on load only through the small change of the modulation index, so its losses are computed at `columns`
-    (rated load at nominal dc voltage, rated load at greatest dc voltage) and taken over to all points by `spread`.
+    Ripple depends on load only through the small change of the modulation index, so its losses are computed
+    at `columns` (rated load at nominal dc voltage, rated load at greatest dc voltage) and taken over to all
+    points by `spread`.
     """
 
     columns: tuple[int, ...]
@@ -45,8 +49,16 @@ class RippleView:
 
 
 def bridge_side(
-    catalog: Catalog, designs: Designs, bands: CoreBands, tables: WaveformTables, state: WaveformState,
-    dc_voltage: Array, phasors: LinePhasors, peak_current: Array, view: RippleView, around: Surroundings,
+    catalog: Catalog,
+    designs: Designs,
+    bands: CoreBands,
+    tables: WaveformTables,
+    state: WaveformState,
+    dc_voltage: Array,
+    phasors: LinePhasors,
+    peak_current: Array,
+    view: RippleView,
+    around: Surroundings,
 ) -> Inductor:
     """Evaluate the bridge-side inductor.
 
@@ -70,7 +82,9 @@ def bridge_side(
     shape = np.take_along_axis(shape, bands.pair[material, band][:, None, None], axis=-1)[..., 0]
     slope = dc_voltage[columns] / (built.turns * built.area)[:, None]
     alpha, beta = bands.alpha[material, band][:, None], bands.beta[material, band][:, None]
-    density = switched_loss(bands.factor[material, band][:, None], alpha, beta, shape, slope, frequency[:, None])
+    density = switched_loss(
+        bands.factor[material, band][:, None], alpha, beta, shape, slope, frequency[:, None]
+    )
     return inductor(
         catalog,
         built,
@@ -90,13 +104,19 @@ def bridge_side(
 
 
 def grid_side(
-    catalog: Catalog, designs: Designs, bands: CoreBands, tables: WaveformTables, phasors: LinePhasors,
-    ripple_rms: Array, around: Surroundings,
+    catalog: Catalog,
+    designs: Designs,
+    bands: CoreBands,
+    tables: WaveformTables,
+    phasors: LinePhasors,
+    ripple_rms: Array,
+    around: Surroundings,
 ) -> Inductor:
     """Evaluate the grid-side inductor; its ripple is nearly sinusoidal behind the capacitor.
 
     Args:
-        ripple_rms: switching-frequency rms current at the greatest dc voltage (n,) [A]; others as in `bridge_side`.
+        ripple_rms: switching-frequency rms current at the greatest dc voltage (n,) [A]; others as in
+            `bridge_side`.
     """
     built = build(catalog, designs.grid_inductor)
     frequency = designs.switching_frequency_hz * tables.main_carrier[designs.modulation]
@@ -123,4 +143,3 @@ def grid_side(
         ),
         around.labour,
     )
-

@@ -47,7 +47,8 @@ BLOCK = 1024  # candidates; their arrays over load points and angles are about a
 
 @dataclass(frozen=True)
 class Inverter:
-    """One study's inverter: specification and catalogue with everything that is solved once for all candidates.
+    """One study's inverter: specification and catalogue with everything that is solved once for all
+    candidates.
 
     `evaluate` maps designs to an evaluation; it holds no state between calls.
     """
@@ -79,8 +80,14 @@ class Inverter:
     def sinks(self) -> tuple[SinkCurve, SinkCurve]:
         """Least-volume heatsinks over thermal resistance: natural, forced."""
         spec, price = self.specification, self.catalog.cost.heatsink_price_per_kg
-        air = {"ambient_c": spec.ambient_c, "altitude_m": spec.altitude_m, "price_per_kg": price}
-        return sink_curve_natural(**air), sink_curve_forced(fans=tuple(self.catalog.fans), **air)
+        natural = sink_curve_natural(ambient_c=spec.ambient_c, altitude_m=spec.altitude_m, price_per_kg=price)
+        forced = sink_curve_forced(
+            fans=tuple(self.catalog.fans),
+            ambient_c=spec.ambient_c,
+            altitude_m=spec.altitude_m,
+            price_per_kg=price,
+        )
+        return natural, forced
 
     @cached_property
     def ac_capacitor(self) -> AcCapacitor:
@@ -98,8 +105,8 @@ class Inverter:
             designs: candidates (n,).
 
         Returns:
-            Losses, sizes, prices, distortion and constraint margins; nothing in it is NaN or infinite for candidates
-            with positive values in every field.
+            Losses, sizes, prices, distortion and constraint margins; nothing in it is NaN or infinite for
+            candidates with positive values in every field.
         """
         starts = range(0, len(designs), BLOCK)
         if len(starts) <= 1:
@@ -117,24 +124,44 @@ class Inverter:
         columns = circuit.columns()
         phasors = line_phasors(columns, spec.line_frequency_hz, points.output_voltage, points.output_current)
         state = waveform_state(
-            self.bridge, self.tables, designs.modulation, phasors, points.dc_voltage,
+            self.bridge,
+            self.tables,
+            designs.modulation,
+            phasors,
+            points.dc_voltage,
             1.0 / (designs.inverter_inductance_h * designs.switching_frequency_hz),
         )
         device = Gathered(self.catalog.devices, designs.device, 1)
         losing = _at_points(state, points.losses)
         sink = self._sink(designs)
         losses = bridge_losses(
-            device, designs.parallel.astype(float), designs.die_area_m2, designs.switching_frequency_hz, self.bridge,
-            self.tables, losing, points.dc_voltage[points.losses],
+            device,
+            designs.parallel.astype(float),
+            designs.die_area_m2,
+            designs.switching_frequency_hz,
+            self.bridge,
+            self.tables,
+            losing,
+            points.dc_voltage[points.losses],
             Cooling(spec.ambient_c, lambda power: self._rise(designs, power)),
         )
         distortion, linear = self._distortion(columns, state, designs, device.dead_time_s[:, 0])
         inductors = self._inductors(designs, phasors, state, distortion)
         capacitors = self._capacitors(designs, phasors, losing)
         findings = Findings(
-            designs=designs, circuit=circuit, phasors=phasors, state=state, device=device, losses=losses, sink=sink,
-            distortion=distortion, linear_distortion=linear, inductors=inductors, ac_capacitor=capacitors[0],
-            dc_link=capacitors[1], resonance=resonance_hz(circuit),
+            designs=designs,
+            circuit=circuit,
+            phasors=phasors,
+            state=state,
+            device=device,
+            losses=losses,
+            sink=sink,
+            distortion=distortion,
+            linear_distortion=linear,
+            inductors=inductors,
+            ac_capacitor=capacitors[0],
+            dc_link=capacitors[1],
+            resonance=resonance_hz(circuit),
         )
         constraints = requirements(spec, self.catalog, self.bridge, self.tables, points, findings)
         return roll_up(spec, self.catalog, self.bridge, points, findings, constraints)
@@ -143,7 +170,10 @@ class Inverter:
         natural, forced = (curve.at(designs.sink_resistance_k_per_w) for curve in self.sinks)
         driven = designs.forced_cooling == 1
         return SinkPoint(
-            **{name: np.where(driven, getattr(forced, name), getattr(natural, name)) for name in vars(natural)}
+            **{
+                name: np.where(driven, getattr(forced, name), getattr(natural, name))
+                for name in vars(natural)
+            }
         )
 
     def _rise(self, designs: Designs, power: Array) -> Array:
@@ -205,9 +235,14 @@ class Inverter:
         frequency = designs.switching_frequency_hz
         worst = points.thermal.start
         film = ac_filter_capacitor(
-            self.ac_capacitor, spec.phases, designs.filter_capacitance_f,
-            np.abs(phasors.capacitor_current[:, points.losses]), state.ripple_mean_square, spec.line_frequency_hz,
-            frequency * self.tables.main_carrier[designs.modulation], worst,
+            self.ac_capacitor,
+            spec.phases,
+            designs.filter_capacitance_f,
+            np.abs(phasors.capacitor_current[:, points.losses]),
+            state.ripple_mean_square,
+            spec.line_frequency_hz,
+            frequency * self.tables.main_carrier[designs.modulation],
+            worst,
         )
         slow, fast = self._dc_currents(state)
         ripple = rules.dc_switching_ripple_share * spec.dc_voltage_v
@@ -216,12 +251,20 @@ class Inverter:
             slow_ripple = rules.dc_ripple_share * spec.dc_voltage_v
             omega = 2.0 * np.pi * spec.line_frequency_hz
             needed = np.maximum(
-                needed, double_frequency_capacitance(spec.apparent_power_va, omega, spec.dc_voltage_v, slow_ripple)
+                needed,
+                double_frequency_capacitance(spec.apparent_power_va, omega, spec.dc_voltage_v, slow_ripple),
             )
         unit = Gathered(self.catalog.dc_link_capacitors, designs.dc_link)
         bank = dc_link(
-            unit, spec.dc_voltage_max_v, spec.dc_voltage_v, rules.dc_voltage_use, rules.dc_balancing_current, needed,
-            slow, fast, worst,
+            unit,
+            spec.dc_voltage_max_v,
+            spec.dc_voltage_v,
+            rules.dc_voltage_use,
+            rules.dc_balancing_current,
+            needed,
+            slow,
+            fast,
+            worst,
         )
         return film, bank
 

@@ -19,15 +19,18 @@ Array = NDArray[np.float64]
 
 @dataclass(frozen=True)
 class OperatingPoints:
-    """Operating points on one axis q: load levels, thermal worst points, distortion point, modulation limit points.
+    """Operating points on one axis q: load levels, thermal worst points, distortion point, modulation limit
+    points.
 
     Attributes:
         load_level: apparent power over rated (q,) [-].
         output_voltage: rms phase voltage (q,) [V].
         output_current: rms phasor of the phase current, lagging negative imaginary (q,) [A].
         dc_voltage: (q,) [V].
-        loads, thermal, modulation: slices of the axis; losses are computed on `losses` = loads and thermal points.
-        distortion: index of the point for ripple, distortion and capacitor ripple (rated current, greatest dc voltage).
+        loads, thermal, modulation: slices of the axis; losses are computed on `losses` = loads and thermal
+            points.
+        distortion: index of the point for ripple, distortion and capacitor ripple (rated current, greatest dc
+            voltage).
         rated: index of rated load at nominal voltages.
     """
 
@@ -50,11 +53,12 @@ class OperatingPoints:
 def operating_points(specification: Specification) -> OperatingPoints:
     """List the operating points of a specification.
 
-    - every load level of the European, the Californian and the study's own weighting at nominal voltages and unity
+    - every load level of the European, the Californian and the study's own weighting at nominal voltages and
+    unity
       power factor;
-    - thermal points: rated apparent power at the least ac and the greatest dc voltage, at unity and least power factor;
-    - distortion point: rated power at nominal ac and greatest dc voltage;
-    - modulation points: nominal ac at least dc voltage, and greatest ac at nominal dc voltage, both while delivering
+    - thermal points: rated apparent power at the least ac and the greatest dc voltage, at unity and least
+    power factor; - distortion point: rated power at nominal ac and greatest dc voltage; - modulation points:
+    nominal ac at least dc voltage, and greatest ac at nominal dc voltage, both while delivering
       lagging current at the least power factor, which asks most of the bridge.
     """
     spec = specification

@@ -1,4 +1,6 @@
-"""Distortion of a whole population at its worst point: sidebands and low orders put together for grid or load."""
+"""Distortion of a whole population at its worst point: sidebands and low orders put together for grid or
+load.
+"""
 
 from __future__ import annotations
 
@@ -41,8 +43,14 @@ def sideband_voltages(
 
 
 def current_distortion(
-    spec: Specification, limits: LimitTable, circuit: Filter, tables: WaveformTables, state: WaveformState, point: int,
-    frequency: Array, dead_time: Array,
+    spec: Specification,
+    limits: LimitTable,
+    circuit: Filter,
+    tables: WaveformTables,
+    state: WaveformState,
+    point: int,
+    frequency: Array,
+    dead_time: Array,
 ) -> Distortion:
     """Distortion of the current injected into the grid, over the rated current.
 
@@ -70,13 +78,20 @@ def current_distortion(
 
 
 def voltage_distortion(
-    spec: Specification, circuit: Filter, tables: WaveformTables, state: WaveformState, point: int, frequency: Array,
-    dead_time: Array, rectifier_share: float,
+    spec: Specification,
+    circuit: Filter,
+    tables: WaveformTables,
+    state: WaveformState,
+    point: int,
+    frequency: Array,
+    dead_time: Array,
+    rectifier_share: float,
 ) -> Distortion:
     """Distortion of the stand-alone output voltage, over the rated voltage.
 
-    Switching ripple is that of the unloaded filter; the rectifier load's harmonic currents meet the output impedance as the
-    voltage loop leaves it, and add to the dead-time error's harmonics of the same order in the worst phase.
+    Switching ripple is that of the unloaded filter; the rectifier load's harmonic currents meet the output
+    impedance as the voltage loop leaves it, and add to the dead-time error's harmonics of the same order in
+    the worst phase.
 
     Args:
         as in `current_distortion`; rectifier_share: share of rated apparent power that rectifiers draw [-].
@@ -95,11 +110,18 @@ def voltage_distortion(
 
 
 def _dead_time_error(
-    spec: Specification, tables: WaveformTables, state: WaveformState, frequency: Array, dead_time: Array, orders: Array
+    spec: Specification,
+    tables: WaveformTables,
+    state: WaveformState,
+    frequency: Array,
+    dead_time: Array,
+    orders: Array,
 ) -> Array:
     """Rms error voltage of the bridge per order (n, k) [V]: the switching legs of a phase add up."""
     legs = tables.leg_switching[state.scheme[:, 0]].sum(-1)[:, None]
-    peak = dead_time_voltage(orders, spec.dc_voltage_max_v, dead_time[:, None], frequency[:, None])
+    peak = dead_time_voltage(
+        orders, np.asarray(spec.dc_voltage_max_v), dead_time[:, None], frequency[:, None]
+    )
     return legs * peak * (1.0 - spec.rules.dead_time_compensated) / np.sqrt(2.0)
 
 
@@ -107,7 +129,9 @@ def _lines(
     spec: Specification, orders: Array, slow: Array, hertz: Array, switched: Array, listed: NDArray[np.bool_]
 ) -> Lines:
     return Lines(
-        order=np.concatenate([np.broadcast_to(orders.astype(float), slow.shape), hertz / spec.line_frequency_hz], axis=-1),
+        order=np.concatenate(
+            [np.broadcast_to(orders.astype(float), slow.shape), hertz / spec.line_frequency_hz], axis=-1
+        ),
         amplitude=np.concatenate([slow, switched], axis=-1),
         listed=np.concatenate([np.ones(slow.shape, dtype=bool), listed], axis=-1),
     )

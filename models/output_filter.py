@@ -1,7 +1,9 @@
-"""Output filter L-C(-L) with a resistor in series with the capacitor: phasors at line frequency, transfer at harmonics.
+"""Output filter L-C(-L) with a resistor in series with the capacitor: phasors at line frequency, transfer at
+harmonics.
 
-All quantities per phase. The bridge must supply the voltage drop of the filter, so its modulation index follows from the
-phasor circuit, not from the grid voltage alone. Sources: Liserre, Blaabjerg, Hansen (2005) for the LCL filter; circuit laws.
+All quantities per phase. The bridge must supply the voltage drop of the filter, so its modulation index
+follows from the phasor circuit, not from the grid voltage alone. Sources: Liserre, Blaabjerg, Hansen (2005)
+for the LCL filter; circuit laws.
 """
 
 from __future__ import annotations
@@ -17,7 +19,9 @@ Complex = NDArray[np.complex128]
 
 @dataclass(frozen=True)
 class Filter:
-    """Filter elements per phase, broadcastable arrays: inductances [H], capacitance [F], damping resistance [ohm]."""
+    """Filter elements per phase, broadcastable arrays: inductances [H], capacitance [F], damping resistance
+    [ohm].
+    """
 
     inverter_inductance: Array
     grid_inductance: Array
@@ -125,7 +129,8 @@ def grid_transfer(circuit: Filter, frequency_hz: Array) -> HarmonicTransfer:
 
 
 def open_circuit_transfer(circuit: Filter, frequency_hz: Array) -> HarmonicTransfer:
-    """Transfer of an LC filter without load, the worst case for the output voltage's switching ripple, magnitudes.
+    """Transfer of an LC filter without load, the worst case for the output voltage's switching ripple,
+    magnitudes.
 
     Args:
         circuit: elements with a trailing axis of length one.

@@ -46,15 +46,34 @@ class Findings:
 
 
 def requirements(
-    spec: Specification, catalog: Catalog, bridge: Bridge, tables: WaveformTables, points: OperatingPoints, found: Findings
+    spec: Specification,
+    catalog: Catalog,
+    bridge: Bridge,
+    tables: WaveformTables,
+    points: OperatingPoints,
+    found: Findings,
 ) -> tuple[Constraint, ...]:
     """List all requirements of a population in a fixed order."""
     return (
         *_bridge(spec, tables, points, found),
         *_semiconductors(spec, bridge, points, found),
-        *_inductor("inverter-side inductor", spec.rules, points, found.inductors[0], found.designs.inverter_inductor.material, catalog),
+        *_inductor(
+            "inverter-side inductor",
+            spec.rules,
+            points,
+            found.inductors[0],
+            found.designs.inverter_inductor.material,
+            catalog,
+        ),
         *(
-            _inductor("grid-side inductor", spec.rules, points, found.inductors[1], found.designs.grid_inductor.material, catalog)
+            _inductor(
+                "grid-side inductor",
+                spec.rules,
+                points,
+                found.inductors[1],
+                found.designs.grid_inductor.material,
+                catalog,
+            )
             if np.any(found.designs.grid_inductance_h > 0.0)
             else ()
         ),
@@ -88,7 +107,13 @@ def _semiconductors(
     return (
         at_most("switch junction temperature", "degC", switch, limit, scale),
         at_most("diode junction temperature", "degC", diode, limit, scale),
-        at_most("heatsink temperature", "degC", losses.sink_temperature[:, points.thermal].max(-1), hot, hot - spec.ambient_c),
+        at_most(
+            "heatsink temperature",
+            "degC",
+            losses.sink_temperature[:, points.thermal].max(-1),
+            hot,
+            hot - spec.ambient_c,
+        ),
         at_least("no thermal runaway", "yes/no", losses.settled.astype(float), 0.5),
         at_least("heatsink can be built", "yes/no", found.sink.available.astype(float), 0.5),
         at_most("heatsink base covered by devices", "", covered, spec.rules.sink_base_coverage),
@@ -96,9 +121,16 @@ def _semiconductors(
 
 
 def _inductor(
-    name: str, rules: DesignRules, points: OperatingPoints, part: Inductor, material: NDArray[np.int64], catalog: Catalog
+    name: str,
+    rules: DesignRules,
+    points: OperatingPoints,
+    part: Inductor,
+    material: NDArray[np.int64],
+    catalog: Catalog,
 ) -> tuple[Constraint, ...]:
-    limit = np.minimum(rules.winding_temperature_limit, catalog.core_materials.column("temperature_limit_c")[material])
+    limit = np.minimum(
+        rules.winding_temperature_limit, catalog.core_materials.column("temperature_limit_c")[material]
+    )
     temperature = part.temperature[:, points.thermal].max(-1)
     return (
         at_most(f"{name} flux density", "of saturation", part.flux_share, rules.saturation_use),
@@ -116,13 +148,22 @@ def _filter(spec: Specification, found: Findings) -> tuple[Constraint, ...]:
     reactance = omega * (designs.inverter_inductance_h + designs.grid_inductance_h) / spec.base_impedance_ohm
     reactive = omega * designs.filter_capacitance_f * spec.base_impedance_ohm
     return (
-        at_least("filter resonance over line frequency", "", found.resonance / spec.line_frequency_hz, rules.resonance_over_line),
+        at_least(
+            "filter resonance over line frequency",
+            "",
+            found.resonance / spec.line_frequency_hz,
+            rules.resonance_over_line,
+        ),
         at_most(
-            "filter resonance over switching frequency", "", found.resonance / designs.switching_frequency_hz,
+            "filter resonance over switching frequency",
+            "",
+            found.resonance / designs.switching_frequency_hz,
             rules.resonance_over_switching,
         ),
         at_most("filter reactance", "of base impedance", reactance, rules.total_inductance_share),
-        at_most("filter capacitor reactive power", "of rated power", reactive, rules.capacitor_reactive_share),
+        at_most(
+            "filter capacitor reactive power", "of rated power", reactive, rules.capacitor_reactive_share
+        ),
         at_most("filter capacitor current", "of its limit", found.ac_capacitor.current_share, 1.0),
         at_most("dc-link capacitor count", "", link.series * link.parallel, rules.dc_link_units_limit),
     )
@@ -138,7 +179,14 @@ def _quality(spec: Specification, catalog: Catalog, found: Findings) -> tuple[Co
         )
     linear = found.linear_distortion
     return (
-        at_most("voltage distortion, linear load", "of rated voltage", linear.total, spec.voltage_thd_limit_linear),
-        at_most("voltage distortion, rectifier load", "of rated voltage", worst.total, spec.voltage_thd_limit_rectifier),
+        at_most(
+            "voltage distortion, linear load", "of rated voltage", linear.total, spec.voltage_thd_limit_linear
+        ),
+        at_most(
+            "voltage distortion, rectifier load",
+            "of rated voltage",
+            worst.total,
+            spec.voltage_thd_limit_rectifier,
+        ),
         at_most("tightest voltage line", "of its limit", worst.worst_share, 1.0),
     )

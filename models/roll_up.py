@@ -1,4 +1,6 @@
-"""Roll-up: losses, volumes, masses and prices of all components, efficiencies, and what the columns of a result show."""
+"""Roll-up: losses, volumes, masses and prices of all components, efficiencies, and what the columns of a
+result show.
+"""
 
 from __future__ import annotations
 
@@ -27,7 +29,11 @@ def weighted_efficiency(efficiency: Array, weights: Array) -> Array:
 
 
 def roll_up(
-    spec: Specification, catalog: Catalog, bridge: Bridge, points: OperatingPoints, found: Findings,
+    spec: Specification,
+    catalog: Catalog,
+    bridge: Bridge,
+    points: OperatingPoints,
+    found: Findings,
     constraints: tuple[Constraint, ...],
 ) -> Evaluation:
     """Put the single results together.
@@ -57,7 +63,9 @@ def roll_up(
     )
 
 
-def _losses(spec: Specification, catalog: Catalog, points: OperatingPoints, found: Findings) -> dict[str, Array]:
+def _losses(
+    spec: Specification, catalog: Catalog, points: OperatingPoints, found: Findings
+) -> dict[str, Array]:
     """Losses per component at the load levels (n, p) [W]."""
     loads, bridge = points.loads, found.losses
     first, second = found.inductors
@@ -87,7 +95,7 @@ def _losses(spec: Specification, catalog: Catalog, points: OperatingPoints, foun
 
 
 def _packages(bridge: Bridge, found: Findings) -> Array:
-    return 2.0 * bridge.leg_copies * len(bridge.modelled_legs) * found.designs.parallel
+    return 2.0 * bridge.leg_copies * len(bridge.modelled_legs) * found.designs.parallel.astype(np.float64)
 
 
 def _volumes(spec: Specification, bridge: Bridge, found: Findings) -> dict[str, Array]:

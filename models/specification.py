@@ -13,7 +13,9 @@ CALIFORNIAN_WEIGHTS = {0.10: 0.04, 0.20: 0.05, 0.30: 0.12, 0.50: 0.21, 0.75: 0.5
 
 
 def rule(default: float, unit: str, meaning: str) -> Any:
-    """Declare one design rule: its default, its unit and what it means, in one place for reader, checks, docs."""
+    """Declare one design rule: its default, its unit and what it means, in one place for reader, checks,
+    docs.
+    """
     return field(default=default, metadata={"unit": unit, "meaning": meaning})
 
 
@@ -27,27 +29,61 @@ class DesignRules:
     modulation_reserve: float = rule(0.02, "", "share of the linear modulation range kept for control")
     junction_margin: float = rule(15.0, "K", "distance kept from the greatest junction temperature")
     saturation_use: float = rule(0.85, "", "greatest flux density over the hot saturation flux density")
-    inductance_left: float = rule(0.5, "", "least inductance of a powder core at peak current over its initial value")
-    winding_temperature_limit: float = rule(130.0, "degC", "mean winding temperature allowed (class F with reserve)")
+    inductance_left: float = rule(
+        0.5, "", "least inductance of a powder core at peak current over its initial value"
+    )
+    winding_temperature_limit: float = rule(
+        130.0, "degC", "mean winding temperature allowed (class F with reserve)"
+    )
     gap_share_limit: float = rule(0.3, "", "greatest total air gap over the winding breadth")
-    forced_inductor_rise_factor: float = rule(0.5, "", "temperature rise of inductors in the fan's air over still air")
+    forced_inductor_rise_factor: float = rule(
+        0.5, "", "temperature rise of inductors in the fan's air over still air"
+    )
     resonance_over_line: float = rule(10.0, "", "least resonance frequency over the line frequency")
-    resonance_over_switching: float = rule(0.5, "", "greatest resonance frequency over the switching frequency")
-    capacitor_reactive_share: float = rule(0.08, "", "greatest filter capacitor reactive power over rated power")
-    total_inductance_share: float = rule(0.20, "", "greatest reactance of both filter inductors over base impedance")
-    sideband_limit: float = rule(0.003, "", "greatest switching sideband above order 50 over the rated current")
-    voltage_sideband_limit: float = rule(0.02, "", "greatest switching sideband of the output voltage, stand-alone")
-    current_loop_share: float = rule(0.10, "", "current-loop bandwidth over switching frequency (grid-connected)")
-    voltage_loop_share: float = rule(0.05, "", "voltage-loop bandwidth over switching frequency (stand-alone)")
-    dead_time_compensated: float = rule(0.5, "", "share of the dead-time voltage error that control compensates")
-    dc_ripple_share: float = rule(0.08, "", "double-line-frequency dc voltage ripple, peak to peak over nominal")
-    dc_switching_ripple_share: float = rule(0.01, "", "switching dc voltage ripple, peak to peak over nominal")
+    resonance_over_switching: float = rule(
+        0.5, "", "greatest resonance frequency over the switching frequency"
+    )
+    capacitor_reactive_share: float = rule(
+        0.08, "", "greatest filter capacitor reactive power over rated power"
+    )
+    total_inductance_share: float = rule(
+        0.20, "", "greatest reactance of both filter inductors over base impedance"
+    )
+    sideband_limit: float = rule(
+        0.003, "", "greatest switching sideband above order 50 over the rated current"
+    )
+    voltage_sideband_limit: float = rule(
+        0.02, "", "greatest switching sideband of the output voltage, stand-alone"
+    )
+    current_loop_share: float = rule(
+        0.10, "", "current-loop bandwidth over switching frequency (grid-connected)"
+    )
+    voltage_loop_share: float = rule(
+        0.05, "", "voltage-loop bandwidth over switching frequency (stand-alone)"
+    )
+    dead_time_compensated: float = rule(
+        0.5, "", "share of the dead-time voltage error that control compensates"
+    )
+    dc_ripple_share: float = rule(
+        0.08, "", "double-line-frequency dc voltage ripple, peak to peak over nominal"
+    )
+    dc_switching_ripple_share: float = rule(
+        0.01, "", "switching dc voltage ripple, peak to peak over nominal"
+    )
     dc_voltage_use: float = rule(0.90, "", "greatest dc voltage over the rating of the dc-link capacitors")
-    dc_balancing_current: float = rule(0.002, "A", "current in the balancing resistors of series dc-link capacitors")
-    surge_current_factor: float = rule(1.0, "", "peak current to carry without saturation over the rated peak")
-    sink_temperature_limit: float = rule(95.0, "degC", "greatest heatsink temperature (touch, boards beside it)")
+    dc_balancing_current: float = rule(
+        0.002, "A", "current in the balancing resistors of series dc-link capacitors"
+    )
+    surge_current_factor: float = rule(
+        1.0, "", "peak current to carry without saturation over the rated peak"
+    )
+    sink_temperature_limit: float = rule(
+        95.0, "degC", "greatest heatsink temperature (touch, boards beside it)"
+    )
     dc_link_units_limit: float = rule(40.0, "", "greatest number of dc-link capacitors")
-    sink_base_coverage: float = rule(0.6, "", "greatest share of the heatsink base that the devices may cover")
+    sink_base_coverage: float = rule(
+        0.6, "", "greatest share of the heatsink base that the devices may cover"
+    )
     internal_air_rise: float = rule(10.0, "K", "air inside the housing, around inductors, over ambient")
     fan_load_start: float = rule(0.25, "", "load level from which the fan runs")
     packing_factor: float = rule(0.45, "", "sum of component boxes over the volume of the whole")

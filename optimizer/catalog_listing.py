@@ -14,7 +14,15 @@ from models.catalog.part_table import PartTable
 from models.catalog.parts import Catalog
 from optimizer.errors import InputError, PartsError, Problem
 
-KINDS = ("devices", "core_materials", "core_shapes", "conductors", "ac_capacitors", "dc_link_capacitors", "fans")
+KINDS = (
+    "devices",
+    "core_materials",
+    "core_shapes",
+    "conductors",
+    "ac_capacitors",
+    "dc_link_capacitors",
+    "fans",
+)
 
 
 def read_catalog(files: Sequence[Path]) -> Catalog:
@@ -47,7 +55,9 @@ def listing(kind: str | None, files: Sequence[Path], *, as_json: bool) -> str:
         return _json(names) if as_json else "".join(_overview(names))
     if kind not in KINDS:
         near = get_close_matches(kind, KINDS, n=1, cutoff=0.0)[0]
-        raise InputError(Problem(repr(kind), f"one of {', '.join(KINDS)} (the nearest is {near})", key="--kind"))
+        raise InputError(
+            Problem(repr(kind), f"one of {', '.join(KINDS)} (the nearest is {near})", key="--kind")
+        )
     table: PartTable[Any] = getattr(catalog, kind)
     parts = [_part(part) for part in table]
     return _json(parts) if as_json else "".join(_described(parts))

@@ -1,4 +1,5 @@
-"""The commands of `wattfront`. Each reads its input, calls the library and says what came out; nothing is computed here.
+"""The commands of `wattfront`. Each reads its input, calls the library and says what came out; nothing is
+computed here.
 
 Heavy imports happen inside the commands, so that `--help` answers at once.
 """
@@ -34,7 +35,9 @@ def new(file: Annotated[Path, typer.Argument(help="Study file to write.", show_d
     if file.exists():
         raise InputError(Problem("a file that exists already", "a new file name", file=str(file)))
     if not file.parent.is_dir():
-        raise InputError(Problem(f"a folder that does not exist, {file.parent}", "an existing folder", file=str(file)))
+        raise InputError(
+            Problem(f"a folder that does not exist, {file.parent}", "an existing folder", file=str(file))
+        )
     write_whole(file, starter_text())
     typer.echo(f"Wrote {file}. Next: edit it, then run  wattfront search {file}")
 
@@ -42,18 +45,25 @@ def new(file: Annotated[Path, typer.Argument(help="Study file to write.", show_d
 @app.command(epilog="Example: wattfront search studies/rooftop_5kw.toml --seed 7")
 def search(
     study: StudyFile,
-    run: Annotated[Path | None, typer.Option(help="Run folder; default runs/<study name>.", show_default=False)] = None,
+    run: Annotated[
+        Path | None, typer.Option(help="Run folder; default runs/<study name>.", show_default=False)
+    ] = None,
     seed: Annotated[int, typer.Option(help="Seed; the same seed gives the same result.", min=0)] = 1,
     workers: Annotated[
         int | None, typer.Option(help="Processes; default one per core.", min=1, max=256, show_default=False)
     ] = None,
     population: Annotated[
-        int | None, typer.Option(help="Candidates per generation and class, instead of the study's.", min=8, show_default=False)
+        int | None,
+        typer.Option(
+            help="Candidates per generation and class, instead of the study's.", min=8, show_default=False
+        ),
     ] = None,
     generations: Annotated[
         int | None, typer.Option(help="Generations, instead of the study's.", min=1, show_default=False)
     ] = None,
-    json: Annotated[bool, typer.Option("--json", help="Print the summary as JSON instead of a table.")] = False,
+    json: Annotated[
+        bool, typer.Option("--json", help="Print the summary as JSON instead of a table.")
+    ] = False,
 ) -> None:
     """Search a study's inverter and write its run folder: fronts, margins, dashboard."""
     from optimizer.progress import SearchBar
@@ -68,13 +78,22 @@ def search(
     print_summary(outcome, as_json=json)
 
 
-@app.command(epilog="Example: wattfront evaluate studies/rooftop_5kw.toml --designs prototypes.csv --out results.csv")
+@app.command(
+    epilog="Example: wattfront evaluate studies/rooftop_5kw.toml --designs prototypes.csv --out results.csv"
+)
 def evaluate(
     study: StudyFile,
     designs: Annotated[
-        Path, typer.Option(help="Designs, one a row; columns as in front.csv (wattfront evaluate --columns).", show_default=False)
+        Path,
+        typer.Option(
+            help="Designs, one a row; columns as in front.csv (wattfront evaluate --columns).",
+            show_default=False,
+        ),
     ],
-    out: Annotated[Path | None, typer.Option(help="Result file, .csv or .json; default: standard output.", show_default=False)] = None,
+    out: Annotated[
+        Path | None,
+        typer.Option(help="Result file, .csv or .json; default: standard output.", show_default=False),
+    ] = None,
     json: Annotated[bool, typer.Option("--json", help="JSON instead of CSV on standard output.")] = False,
 ) -> None:
     """Evaluate designs given by hand: every figure, every margin."""
@@ -98,8 +117,13 @@ def evaluate(
 
 @app.command(epilog="Example: wattfront catalog --kind devices --files my_parts.toml")
 def catalog(
-    kind: Annotated[str | None, typer.Option(help="List the parts of one kind with all their values.", show_default=False)] = None,
-    files: Annotated[list[Path] | None, typer.Option(help="Your own part files, checked and listed too.", show_default=False)] = None,
+    kind: Annotated[
+        str | None, typer.Option(help="List the parts of one kind with all their values.", show_default=False)
+    ] = None,
+    files: Annotated[
+        list[Path] | None,
+        typer.Option(help="Your own part files, checked and listed too.", show_default=False),
+    ] = None,
     json: Annotated[bool, typer.Option("--json", help="JSON instead of a table.")] = False,
 ) -> None:
     """List and check parts, your own included, with where their values come from."""

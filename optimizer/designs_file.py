@@ -23,7 +23,9 @@ LABEL = "design_id"
 
 @dataclass(frozen=True)
 class Column:
-    """One column of a designs file: its name, how a cell is read, what is expected, and its default where it may be left out."""
+    """One column of a designs file: its name, how a cell is read, what is expected, and its default where it
+    may be left out.
+    """
 
     name: str
     read: Callable[[str], Any]
@@ -106,13 +108,14 @@ def read_designs(path: Path, inverter: Inverter, also_known: Sequence[str] = ())
     """Read a designs file.
 
     Args:
-        path: CSV with a header; columns as `columns` lists them, in any order. Columns of front.csv that hold results
-            are passed over, so that rows of a run can be fed in again.
+        path: CSV with a header; columns as `columns` lists them, in any order. Columns of front.csv that hold
+            results are passed over, so that rows of a run can be fed in again.
         inverter: the study's inverter.
         also_known: further column names to pass over.
 
     Raises:
-        InputError: with all problems: missing or unknown columns, unreadable cells (row, column, given, expected).
+        InputError: with all problems: missing or unknown columns, unreadable cells (row, column, given,
+            expected).
     """
     rows, header = _rows(path)
     wanted = columns(inverter)
@@ -126,7 +129,9 @@ def read_designs(path: Path, inverter: Inverter, also_known: Sequence[str] = ())
             values[column.name].append(_cell(path, number, column, cell, problems))
     if problems:
         raise InputError(*problems)
-    labels = tuple((row.get(LABEL) or "").strip() or f"row {number}" for number, row in enumerate(rows, start=2))
+    labels = tuple(
+        (row.get(LABEL) or "").strip() or f"row {number}" for number, row in enumerate(rows, start=2)
+    )
     return HandDesigns(labels, _designs({name: np.array(column) for name, column in values.items()}))
 
 
@@ -134,21 +139,29 @@ def _rows(path: Path) -> tuple[list[dict[str, str]], list[str]]:
     try:
         text = path.read_text(encoding="utf-8-sig")
     except OSError as trouble:
-        raise InputError(Problem(f"a file that cannot be read ({trouble.strerror})", "a CSV file", file=str(path))) from trouble
+        raise InputError(
+            Problem(f"a file that cannot be read ({trouble.strerror})", "a CSV file", file=str(path))
+        ) from trouble
     except UnicodeDecodeError as trouble:
-        raise InputError(Problem("bytes that are no text", "a CSV file in UTF-8", file=str(path))) from trouble
+        raise InputError(
+            Problem("bytes that are no text", "a CSV file in UTF-8", file=str(path))
+        ) from trouble
     reader = csv.DictReader(io.StringIO(text))
     try:
         rows = list(reader)
     except csv.Error as trouble:
-        raise InputError(Problem(f"text that is no CSV ({trouble})", "a CSV file", file=str(path))) from trouble
+        raise InputError(
+            Problem(f"text that is no CSV ({trouble})", "a CSV file", file=str(path))
+        ) from trouble
     if not rows or len(rows) > MOST_ROWS:
         given = f"{len(rows)} rows" if rows else "no rows"
         raise InputError(Problem(given, f"a header and 1 to {MOST_ROWS:,} designs", file=str(path)))
     return rows, [name for name in reader.fieldnames or [] if name is not None]
 
 
-def _header_problems(path: Path, header: Sequence[str], wanted: Sequence[Column], known: set[str]) -> list[Problem]:
+def _header_problems(
+    path: Path, header: Sequence[str], wanted: Sequence[Column], known: set[str]
+) -> list[Problem]:
     names = [column.name for column in wanted]
     problems = [
         Problem("no such column", column.expected, key=column.name, file=str(path))
@@ -158,16 +171,43 @@ def _header_problems(path: Path, header: Sequence[str], wanted: Sequence[Column]
     for name in header:
         if name not in names and name not in known and not _is_result(name):
             near = get_close_matches(name, names, n=1, cutoff=0.0)[0]
-            problems.append(Problem(f"a column {name!r}", f"a known column (the nearest is {near})", file=str(path)))
+            problems.append(
+                Problem(f"a column {name!r}", f"a known column (the nearest is {near})", file=str(path))
+            )
     return problems
 
 
-_RESULT_STARTS = ("loss_", "volume_", "mass_", "price", "efficiency_", "margin", "tightest", "distortion_", "modulation_index_")
+_RESULT_STARTS = (
+    "loss_",
+    "volume_",
+    "mass_",
+    "price",
+    "efficiency_",
+    "margin",
+    "tightest",
+    "distortion_",
+    "modulation_index_",
+)
 _RESULT_NAMES = {
-    "class_front", "overall_front", "device_class", "bridge", "current_thd", "voltage_thd", "feasible",
-    "ripple_peak_to_peak_a", "ripple_share", "resonance_hz", "junction_temperature_c", "diode_temperature_c",
-    "sink_temperature_c", "heat_worst_w", "filter_capacitor_current_share", "dc_link_capacitance_f", "dc_link_series",
-    "dc_link_parallel", "dc_link_ripple_share",
+    "class_front",
+    "overall_front",
+    "device_class",
+    "bridge",
+    "current_thd",
+    "voltage_thd",
+    "feasible",
+    "ripple_peak_to_peak_a",
+    "ripple_share",
+    "resonance_hz",
+    "junction_temperature_c",
+    "diode_temperature_c",
+    "sink_temperature_c",
+    "heat_worst_w",
+    "filter_capacitor_current_share",
+    "dc_link_capacitance_f",
+    "dc_link_series",
+    "dc_link_parallel",
+    "dc_link_ripple_share",
 }
 _RESULT_ENDS = ("_flux_t", "_gap_m", "_window_fill", "_inductance_left", "_temperature_c", "_resistance_ohm")
 
@@ -184,7 +224,9 @@ def _cell(path: Path, number: int, column: Column, cell: str, problems: list[Pro
     except ValueError as trouble:
         hint = str(trouble) if str(trouble).startswith(";") else ""
         given = repr(cell) if cell else "nothing"
-        problems.append(Problem(given, column.expected + hint, key=f"row {number}, {column.name}", file=str(path)))
+        problems.append(
+            Problem(given, column.expected + hint, key=f"row {number}, {column.name}", file=str(path))
+        )
         return column.default or 1
 
 

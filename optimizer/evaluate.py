@@ -27,7 +27,7 @@ def evaluated_table(study: Study, inverter: Inverter, given: HandDesigns) -> pd.
     constraints = requirements_of(study.at_most, result)
     table = design_table(inverter, given.designs, result, constraints)
     table.insert(0, LABEL, given.labels)
-    table.insert(1, "feasible", (margins_of(constraints) >= 0.0).all(-1))
+    table.insert(1, "feasible", np.asarray((margins_of(constraints) >= 0.0).all(-1)).tolist())
     margins = margin_table(constraints).drop(columns="tightest")
     margins.columns = [f"margin: {name}" for name in margins.columns]
     return pd.concat([table, _over_load(result), margins], axis=1)

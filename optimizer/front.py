@@ -1,4 +1,6 @@
-"""From a search's archive to tables: the class fronts and the overall front, one row a design, units in the names."""
+"""From a search's archive to tables: the class fronts and the overall front, one row a design, units in the
+names.
+"""
 
 from __future__ import annotations
 
@@ -33,7 +35,8 @@ class Front:
         limits: (name, unit, sense) of the constraints.
         limit_range: least and greatest limit of each over the designs (a junction limit is the device's own).
         efficiency: (n, p) over `load_level` (p,) [-].
-        line_order, line_amplitude, line_limit: (n, k) harmonic lines over the base, listed ones; no limit is infinite.
+        line_order, line_amplitude, line_limit: (n, k) harmonic lines over the base, listed ones; no limit is
+            infinite.
     """
 
     table: pd.DataFrame
@@ -63,9 +66,14 @@ def front(result: SearchResult) -> Front:
         parts.append((designs, inverter.evaluate(designs)))
     required = [requirements_of(result.study.at_most, evaluation) for _, evaluation in parts]
     table = pd.concat(
-        [design_table(inverter, *part, entries) for part, entries in zip(parts, required, strict=True)], ignore_index=True
+        [design_table(inverter, *part, entries) for part, entries in zip(parts, required, strict=True)],
+        ignore_index=True,
     )
-    ids = [f"{_initials(found.device_class)}{number:04d}" for found, rows in kept for number in range(1, len(rows) + 1)]
+    ids = [
+        f"{_initials(found.device_class)}{number:04d}"
+        for found, rows in kept
+        for number in range(1, len(rows) + 1)
+    ]
     table.insert(0, "design_id", ids)
     table.insert(1, "class_front", True)
     table.insert(2, "overall_front", overall)
@@ -125,8 +133,8 @@ def design_table(
         constraints: their requirements, the study's own limits among them.
 
     Returns:
-        n rows; losses `loss_*_w` are at rated load and add up to `loss_rated_w`, volumes `volume_*_l` to `volume_l`,
-        masses and prices likewise.
+        n rows; losses `loss_*_w` are at rated load and add up to `loss_rated_w`, volumes `volume_*_l` to
+        `volume_l`, masses and prices likewise.
     """
     rated = result.rated
     columns: dict[str, Any] = choices(inverter, designs)
@@ -156,7 +164,9 @@ def design_table(
 
 
 def choices(inverter: Inverter, designs: Designs) -> dict[str, Any]:
-    """What every candidate is made of, by column name with unit suffix; `optimizer.designs_file` reads it back."""
+    """What every candidate is made of, by column name with unit suffix; `optimizer.designs_file` reads it
+    back.
+    """
     catalog = inverter.catalog
     classes = catalog.devices.column("device_class")[designs.device]
     schemes = np.array([scheme.name for scheme in inverter.bridge.modulations])
@@ -176,7 +186,11 @@ def choices(inverter: Inverter, designs: Designs) -> dict[str, Any]:
         "cooling": np.where(designs.forced_cooling == 1, "forced", "natural"),
         "sink_resistance_k_per_w": designs.sink_resistance_k_per_w,
         **_inductor_columns(catalog, "inverter_inductor", designs.inverter_inductor),
-        **(_inductor_columns(catalog, "grid_inductor", designs.grid_inductor) if np.any(designs.grid_inductance_h > 0.0) else {}),
+        **(
+            _inductor_columns(catalog, "grid_inductor", designs.grid_inductor)
+            if np.any(designs.grid_inductance_h > 0.0)
+            else {}
+        ),
     }
 
 

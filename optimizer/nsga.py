@@ -1,14 +1,15 @@
 """pymoo's NSGA-II with its mating and survival done on whole arrays.
 
-The algorithm object, its loop, its termination and its result are pymoo's; ranks and crowding distances are pymoo's
-functions. Only the steps that pymoo runs once per individual in Python are replaced: they cost several times what they do
-(selection by binary tournament, simulated binary crossover, polynomial mutation: Deb & Agrawal 1995; Deb et al. 2002).
+The algorithm object, its loop, its termination and its result are pymoo's; ranks and crowding distances are
+pymoo's functions. Only the steps that pymoo runs once per individual in Python are replaced: they cost
+several times what they do (selection by binary tournament, simulated binary crossover, polynomial mutation:
+Deb & Agrawal 1995; Deb et al. 2002).
 """
 
 from __future__ import annotations
 
 from collections.abc import Callable
-from typing import Any
+from typing import Any, cast
 
 import numpy as np
 from moocore import pareto_rank
@@ -27,7 +28,7 @@ MATING_ROUNDS = 5
 
 
 class ArrayEvaluator(Evaluator):
-    """Evaluates a whole population through the problem and leaves F and the constraint violation as arrays."""
+    """Evaluates a whole population through the problem; leaves F and the constraint violation as arrays."""
 
     def __init__(self, assess: Callable[[Array], tuple[Array, Array]]) -> None:
         super().__init__()
@@ -50,7 +51,7 @@ class PointPopulation(Population):
     @classmethod
     def of(cls, points: Array) -> PointPopulation:
         """Population of the given points; its individuals stay empty, nothing reads them."""
-        population = np.empty(len(points), dtype=object).view(cls)
+        population = cast(PointPopulation, np.empty(len(points), dtype=object).view(cls))
         population.points = points
         return population
 
@@ -71,7 +72,12 @@ class ArrayNSGA2(NSGA2):
     """
 
     def __init__(
-        self, pop_size: int, repaired: Callable[[Array], Array], redrawn: NDArray[np.bool_], first: Array, **kwargs: Any
+        self,
+        pop_size: int,
+        repaired: Callable[[Array], Array],
+        redrawn: NDArray[np.bool_],
+        first: Array,
+        **kwargs: Any,
     ) -> None:
         super().__init__(pop_size=pop_size, **kwargs)
         self.repaired = repaired
@@ -120,18 +126,24 @@ class ArrayNSGA2(NSGA2):
         self.opt = Population.new("X", self.points[best], "F", self.F[best], "G", self.violation[best, None])
 
 
-def tournament(rng: np.random.Generator, pairs: int, violation: Array, rank: Array, crowding: Array) -> NDArray[np.int64]:
-    """Binary tournaments for `pairs` pairs of parents: less violation, then lower rank, then more crowding distance."""
+def tournament(
+    rng: np.random.Generator, pairs: int, violation: Array, rank: Array, crowding: Array
+) -> NDArray[np.int64]:
+    """Binary tournaments for `pairs` pairs of parents: less violation, then lower rank, then more crowding
+    distance.
+    """
     first, second = rng.integers(len(rank), size=(2, pairs, 2))
     better = np.where(crowding[second] > crowding[first], second, first)
     better = np.where(rank[second] < rank[first], second, np.where(rank[first] < rank[second], first, better))
     return np.where(
-        violation[second] < violation[first], second, np.where(violation[first] < violation[second], first, better)
+        violation[second] < violation[first],
+        second,
+        np.where(violation[first] < violation[second], first, better),
     )
 
 
 def crossover(rng: np.random.Generator, mothers: Array, fathers: Array) -> Array:
-    """Simulated binary crossover in [0, 1], one child a pair, each axis exchanged with probability one half."""
+    """Simulated binary crossover in [0, 1], one child a pair, each axis blended with probability one half."""
     spread = rng.random(mothers.shape)
     low = spread <= 0.5
     power = 1.0 / (CROSSOVER_INDEX + 1.0)
@@ -144,11 +156,15 @@ def crossover(rng: np.random.Generator, mothers: Array, fathers: Array) -> Array
 
 
 def mutation(rng: np.random.Generator, points: Array, redrawn: NDArray[np.bool_]) -> Array:
-    """Polynomial mutation in [0, 1] of about one axis a point; axes of distinct choices are drawn anew instead."""
+    """Polynomial mutation in [0, 1] of about one axis a point; axes of distinct choices are drawn anew
+    instead.
+    """
     chosen = rng.random(points.shape) < 1.0 / points.shape[1]
     draw = rng.random(points.shape)
     power = 1.0 / (MUTATION_INDEX + 1.0)
-    step = np.where(draw < 0.5, (2.0 * draw) ** power - 1.0, 1.0 - (2.0 * np.maximum(1.0 - draw, 0.0)) ** power)
+    step = np.where(
+        draw < 0.5, (2.0 * draw) ** power - 1.0, 1.0 - (2.0 * np.maximum(1.0 - draw, 0.0)) ** power
+    )
     return np.where(chosen, np.where(redrawn, draw, points + step), points)
 
 

@@ -45,15 +45,49 @@ OBJECTIVES = {
     objective.name: objective
     for objective in (
         Objective(
-            "weighted loss", "loss_weighted_percent", "weighted loss", "%", 100.0,
-            lambda result: 100.0 * (1.0 - result.efficiency_weighted), lambda spec: 12.0,
+            "weighted loss",
+            "loss_weighted_percent",
+            "weighted loss",
+            "%",
+            100.0,
+            lambda result: 100.0 * (1.0 - result.efficiency_weighted),
+            lambda spec: 12.0,
         ),
-        Objective("volume", "volume_l", "volume", "l", 1e3, lambda result: 1e3 * result.volume, lambda spec: 1.0 + 4.0 * _kva(spec)),
-        Objective("price", "price", "price", "currency", 1.0, lambda result: result.price, lambda spec: 50.0 + 100.0 * _kva(spec)),
-        Objective("mass", "mass_kg", "mass", "kg", 1.0, lambda result: result.mass, lambda spec: 1.0 + 6.0 * _kva(spec)),
         Objective(
-            "distortion", "distortion_percent", "distortion", "%", 100.0,
-            lambda result: 100.0 * result.distortion.total, lambda spec: 10.0,
+            "volume",
+            "volume_l",
+            "volume",
+            "l",
+            1e3,
+            lambda result: 1e3 * result.volume,
+            lambda spec: 1.0 + 4.0 * _kva(spec),
+        ),
+        Objective(
+            "price",
+            "price",
+            "price",
+            "currency",
+            1.0,
+            lambda result: result.price,
+            lambda spec: 50.0 + 100.0 * _kva(spec),
+        ),
+        Objective(
+            "mass",
+            "mass_kg",
+            "mass",
+            "kg",
+            1.0,
+            lambda result: result.mass,
+            lambda spec: 1.0 + 6.0 * _kva(spec),
+        ),
+        Objective(
+            "distortion",
+            "distortion_percent",
+            "distortion",
+            "%",
+            100.0,
+            lambda result: 100.0 * result.distortion.total,
+            lambda spec: 10.0,
         ),
     )
 }
@@ -67,7 +101,12 @@ def requirements_of(limits: Mapping[str, float], result: Evaluation) -> tuple[Co
         result: evaluation (n,).
     """
     own = (
-        at_most(f"{name} wanted", OBJECTIVES[name].unit, OBJECTIVES[name].read(result), OBJECTIVES[name].scale * limit)
+        at_most(
+            f"{name} wanted",
+            OBJECTIVES[name].unit,
+            OBJECTIVES[name].read(result),
+            OBJECTIVES[name].scale * limit,
+        )
         for name, limit in limits.items()
     )
     return (*result.constraints, *own)

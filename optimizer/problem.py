@@ -1,4 +1,6 @@
-"""The optimisation problem of one device class: points of the unit cube in, objectives and violations out; an archive beside."""
+"""The optimisation problem of one device class: points of the unit cube in, objectives and violations out; an
+archive beside.
+"""
 
 from __future__ import annotations
 
@@ -56,7 +58,8 @@ class Archive:
 class ClassProblem(Problem):
     """One device class of a study as a pymoo problem over the unit cube.
 
-    The constraint violation is the sum of the negative margins, each limited so that one absurd value does not hide the rest.
+    The constraint violation is the sum of the negative margins, each limited so that one absurd value does
+    not hide the rest.
     """
 
     VIOLATION_CAP = 5.0
@@ -68,7 +71,7 @@ class ClassProblem(Problem):
         super().__init__(n_var=len(space.variables), n_obj=len(self.chosen), xl=0.0, xu=1.0)
 
     def assess(self, points: Array) -> tuple[Array, Array]:
-        """Objectives (n, m) and constraint violation (n,) of repaired points; feasible ones have violation 0."""
+        """Objectives (n, m) and violation (n,) of repaired points; feasible ones have violation 0."""
         result = self.space.inverter.evaluate(self.space.designs(points))
         objectives = np.stack([objective.read(result) for objective in self.chosen], axis=-1)
         margins = margins_of(requirements_of(self.space.study.at_most, result))

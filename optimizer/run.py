@@ -29,7 +29,9 @@ GZIP_LEVEL = 1
 
 @dataclass(frozen=True)
 class Outcome:
-    """What a run left behind: its result, its fronts, its folder, where an earlier run was kept, and run.json's content."""
+    """What a run left behind: its result, its fronts, its folder, where an earlier run was kept, and
+    run.json's content.
+    """
 
     result: SearchResult
     front: Front
@@ -115,7 +117,9 @@ def evaluated_table(result: SearchResult) -> pd.DataFrame:
 
 
 def _objective_columns(study: Study, found: ClassResult) -> dict[str, NDArray[np.float64]]:
-    return {OBJECTIVES[name].column: found.objectives[:, place] for place, name in enumerate(study.objectives)}
+    return {
+        OBJECTIVES[name].column: found.objectives[:, place] for place, name in enumerate(study.objectives)
+    }
 
 
 def _summary(result: SearchResult, fronts: Front) -> dict[str, Any]:
@@ -125,7 +129,12 @@ def _summary(result: SearchResult, fronts: Front) -> dict[str, Any]:
         "version": _version(),
         "seed": result.seed,
         "objectives": [
-            {"name": name, "column": OBJECTIVES[name].column, "direction": "min", "unit": OBJECTIVES[name].unit}
+            {
+                "name": name,
+                "column": OBJECTIVES[name].column,
+                "direction": "min",
+                "unit": OBJECTIVES[name].unit,
+            }
             for name in study.objectives
         ],
         "evaluations": result.evaluations,
@@ -135,7 +144,9 @@ def _summary(result: SearchResult, fronts: Front) -> dict[str, Any]:
             "overall_front": int(fronts.table.overall_front.sum()),
         },
         "hypervolume": {
-            found.device_class: [{"evaluations": count, "hypervolume": value} for count, value in found.hypervolume]
+            found.device_class: [
+                {"evaluations": count, "hypervolume": value} for count, value in found.hypervolume
+            ]
             for found in result.classes
         },
         "limits": [
@@ -147,7 +158,8 @@ def _summary(result: SearchResult, fronts: Front) -> dict[str, Any]:
             for found in result.classes
             if not len(found.points)
         },
-        "caution": "Early-concept figures from analytic models and representative parts. A dc link stores lethal energy; "
+        "caution": "Early-concept figures from analytic models and representative parts. "
+        "A dc link stores lethal energy; "
         "standards and licensed practice decide.",
     }
 

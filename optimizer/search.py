@@ -80,7 +80,8 @@ _prepared: dict[str, Inverter] = {}
 
 
 def prepared_inverter(study: Study) -> Inverter:
-    """The study's inverter with everything solved that does not depend on a candidate; kept for the last study asked.
+    """The study's inverter with everything solved that does not depend on a candidate; kept for the last
+    study asked.
 
     Raises:
         InputError: where the study names parts that the catalogue does not have.
@@ -120,8 +121,12 @@ def search_class(
     rng = np.random.default_rng([seed, study.search.device_classes.index(device_class)])
     first = problem.space.repaired(qmc.LatinHypercube(problem.n_var, rng=rng).random(study.search.population))
     algorithm = ArrayNSGA2(
-        study.search.population, problem.space.repaired, problem.space.redrawn, first,
-        evaluator=ArrayEvaluator(in_models), output=None,
+        study.search.population,
+        problem.space.repaired,
+        problem.space.redrawn,
+        first,
+        evaluator=ArrayEvaluator(in_models),
+        output=None,
     )
     algorithm.setup(problem, termination=("n_gen", study.search.generations), seed=int(rng.integers(2**31)))
     records: list[tuple[int, float]] = []
@@ -179,7 +184,11 @@ def _worker(study: Study, device_class: str, seed: int) -> ClassResult:
 
 
 def search(
-    study: Study, *, seed: int = 1, workers: int | None = None, report: Callable[[Progress], None] | None = None
+    study: Study,
+    *,
+    seed: int = 1,
+    workers: int | None = None,
+    report: Callable[[Progress], None] | None = None,
 ) -> SearchResult:
     """Search all device classes of a study.
 
@@ -200,7 +209,9 @@ def search(
     count = min(workers or os.cpu_count() or 1, len(classes))
     if count == 1:
         return SearchResult(study, seed, tuple(search_class(study, name, seed, report) for name in classes))
-    context = multiprocessing.get_context("fork" if "fork" in multiprocessing.get_all_start_methods() else "spawn")
+    context = multiprocessing.get_context(
+        "fork" if "fork" in multiprocessing.get_all_start_methods() else "spawn"
+    )
     outbox = context.Queue()
     with ProcessPoolExecutor(count, mp_context=context, initializer=_set_outbox, initargs=(outbox,)) as pool:
         futures = [pool.submit(_worker, study, name, seed) for name in classes]
@@ -208,7 +219,9 @@ def search(
         return SearchResult(study, seed, tuple(future.result() for future in futures))
 
 
-def _relay(futures: list[Future[ClassResult]], outbox: Any, report: Callable[[Progress], None] | None) -> None:
+def _relay(
+    futures: list[Future[ClassResult]], outbox: Any, report: Callable[[Progress], None] | None
+) -> None:
     """Pass the workers' progress on until all are done."""
     while not all(future.done() for future in futures):
         try:

@@ -1,7 +1,7 @@
 """The search space: points of a unit cube to candidate inverters.
 
-Every variable runs over [0, 1]: real ones on a linear or logarithmic scale, categories and whole numbers in equal parts that
-`repaired` snaps to their middles, so that equal candidates are equal points.
+Every variable runs over [0, 1]: real ones on a linear or logarithmic scale, categories and whole numbers in
+equal parts that `repaired` snaps to their middles, so that equal candidates are equal points.
 """
 
 from __future__ import annotations
@@ -68,14 +68,21 @@ class SearchSpace:
         Where none does, those of the highest rating stand in, so that the search can say what they lack.
         """
         voltage = self.study.specification.dc_voltage_max_v
-        of_class = self.inverter.catalog.devices.select(lambda device: device.device_class == self.device_class)
+        of_class = self.inverter.catalog.devices.select(
+            lambda device: device.device_class == self.device_class
+        )
         parts = [self.inverter.catalog.devices[index] for index in of_class]
         bearing = [part.voltage_rating_v * part.voltage_use_limit >= voltage for part in parts]
         if not any(bearing):
             highest = max(part.voltage_rating_v for part in parts)
             bearing = [part.voltage_rating_v == highest for part in parts]
         least = min(part.voltage_rating_v for part, bears in zip(parts, bearing, strict=True) if bears)
-        return of_class[[bears and part.voltage_rating_v <= 2.0 * least for part, bears in zip(parts, bearing, strict=True)]]
+        return of_class[
+            [
+                bears and part.voltage_rating_v <= 2.0 * least
+                for part, bears in zip(parts, bearing, strict=True)
+            ]
+        ]
 
     @cached_property
     def materials(self) -> Ints:
@@ -141,7 +148,9 @@ class SearchSpace:
 
     @cached_property
     def redrawn(self) -> NDArray[np.bool_]:
-        """True for axes that a mutation draws anew: categories, and whole numbers, whose steps small moves never cross."""
+        """True for axes that a mutation draws anew: categories, and whole numbers, whose steps small moves
+        never cross.
+        """
         return self.parts > 0
 
     def repaired(self, points: Array) -> Array:
@@ -154,26 +163,37 @@ class SearchSpace:
     def designs(self, points: Array) -> Designs:
         """Candidates of repaired points (n, k)."""
         values = {name: self.variables[axis].value(points[:, axis]) for name, axis in self.axis.items()}
-        choose = {name: values[name].astype(np.int64) for name in ("device", "modulation", "dc link", "cooling")}
+        choose = {
+            name: values[name].astype(np.int64) for name in ("device", "modulation", "dc link", "cooling")
+        }
         spec, catalog, tables = self.study.specification, self.inverter.catalog, self.inverter.tables
         device = self.devices[choose["device"]]
         scheme = self._schemes[choose["modulation"]]
         frequency = values["switching_frequency"]
         ripple_current = values["ripple"] * np.sqrt(2.0) * spec.rated_current_a
-        inverter_inductance = spec.dc_voltage_max_v * self._ripple_scale(tables)[scheme] / (ripple_current * frequency)
+        inverter_inductance = (
+            spec.dc_voltage_max_v * self._ripple_scale(tables)[scheme] / (ripple_current * frequency)
+        )
         grid_inductance = inverter_inductance * values.get("grid_inductance_ratio", np.zeros_like(frequency))
         omega = 2.0 * np.pi * spec.line_frequency_hz
         capacitance = values["filter_capacitance_share"] / (omega * spec.base_impedance_ohm)
         effective = np.where(
-            grid_inductance > 0.0, inverter_inductance * grid_inductance / (inverter_inductance + grid_inductance),
+            grid_inductance > 0.0,
+            inverter_inductance * grid_inductance / (inverter_inductance + grid_inductance),
             inverter_inductance,
         )
         low, high = (catalog.devices.column(f"die_area_{end}_m2")[device] for end in ("min", "max"))
         current = spec.apparent_power_va / (spec.phases * spec.phase_voltage_min_v)
         peak = np.sqrt(2.0) * current + 0.5 * ripple_current
-        first = self._inductor(values, "inverter", inverter_inductance, self._surge(peak, ripple_current), current)
-        second = first if "grid core material" not in values else self._inductor(
-            values, "grid", grid_inductance, np.full_like(peak, 1.05 * np.sqrt(2.0) * current), current
+        first = self._inductor(
+            values, "inverter", inverter_inductance, self._surge(peak, ripple_current), current
+        )
+        second = (
+            first
+            if "grid core material" not in values
+            else self._inductor(
+                values, "grid", grid_inductance, np.full_like(peak, 1.05 * np.sqrt(2.0) * current), current
+            )
         )
         return Designs(
             device=device,
@@ -198,7 +218,9 @@ class SearchSpace:
         pulse = (share * spec.crest_factor + (1.0 - share) * np.sqrt(2.0)) * spec.rated_current_a
         return np.maximum(peak, pulse + 0.5 * ripple_current)
 
-    def _inductor(self, values: dict[str, Array], side: str, inductance: Array, peak: Array, rms: float) -> InductorDesigns:
+    def _inductor(
+        self, values: dict[str, Array], side: str, inductance: Array, peak: Array, rms: float
+    ) -> InductorDesigns:
         return size_inductor(
             self.inverter.catalog,
             self._ladder,
@@ -219,7 +241,9 @@ class SearchSpace:
 
     @cached_property
     def _schemes(self) -> Ints:
-        return np.array([self.inverter.bridge.modulation_index(name) for name in self.study.search.modulations])
+        return np.array(
+            [self.inverter.bridge.modulation_index(name) for name in self.study.search.modulations]
+        )
 
     @cached_property
     def _forced(self) -> Ints:

@@ -82,7 +82,8 @@ class Study:
         specification: what the inverter is asked to do.
         search: what the search may vary.
         objectives: names of what is minimised, two to five.
-        at_most: greatest value of an objective by its name (minimised or not), SI units; only those the study names.
+        at_most: greatest value of an objective by its name (minimised or not), SI units; only those the study
+            names.
         catalog_files: the user's own parts files.
     """
 
@@ -122,10 +123,15 @@ class Study:
         )
 
     def with_effort(self, population: int | None, generations: int | None) -> Study:
-        """The same study searched with another population or number of generations; None keeps the study's own."""
-        effort = {"population": population, "generations": generations}
-        given = {name: value for name, value in effort.items() if value is not None}
-        return replace(self, search=replace(self.search, **given))
+        """The same study searched with another population or number of generations; None keeps the study's
+        own.
+        """
+        search = replace(
+            self.search,
+            population=self.search.population if population is None else population,
+            generations=self.search.generations if generations is None else generations,
+        )
+        return replace(self, search=search)
 
     def check_against(self, catalog: Catalog) -> None:
         """Check that the catalogue has every device class, material, conductor and limit table asked for.

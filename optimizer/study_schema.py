@@ -184,7 +184,8 @@ class StudyContent:
     """The values of a study file in SI units, table by table; a value in trouble is missing.
 
     Attributes:
-        top, application, dc_voltage, weighting, bridge, objectives, at_most, search, rules, catalog: tables by key.
+        top, application, dc_voltage, weighting, bridge, objectives, at_most, search, rules, catalog: tables
+            by key.
         filter_kind: LCL or LC.
         ranges: search ranges by name.
     """

@@ -19,13 +19,22 @@ def print_summary(outcome: Outcome, *, as_json: bool) -> None:
     console = Console()
     console.print(_table(outcome))
     for device_class, reasons in outcome.summary["ruled_out"].items():
-        console.print(f"{device_class}: nothing feasible. " + "; ".join(f"{name}: {miss}" for name, _, miss in reasons))
+        console.print(
+            f"{device_class}: nothing feasible. " + "; ".join(f"{name}: {miss}" for name, _, miss in reasons)
+        )
     seconds = outcome.summary["seconds"]
     if outcome.kept:
-        console.print(f"The earlier run held files of your own and was kept as {outcome.kept}", soft_wrap=True)
-    console.print(f"{outcome.result.evaluations:,} evaluations in {seconds['total']:.1f} s, seed {outcome.result.seed}")
+        console.print(
+            f"The earlier run held files of your own and was kept as {outcome.kept}", soft_wrap=True
+        )
+    console.print(
+        f"{outcome.result.evaluations:,} evaluations in {seconds['total']:.1f} s, seed {outcome.result.seed}"
+    )
     console.print(f"Dashboard: {outcome.folder / 'dashboard.html'}", soft_wrap=True)
-    console.print("[dim]Early-concept figures; lethal dc-link energy; standards and licensed practice decide.[/dim]", soft_wrap=True)
+    console.print(
+        "[dim]Early-concept figures; lethal dc-link energy; standards and licensed practice decide.[/dim]",
+        soft_wrap=True,
+    )
 
 
 def _table(outcome: Outcome) -> Table:

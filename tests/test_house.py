@@ -23,7 +23,9 @@ def imported(path):
             yield node.module.split(".")[0]
 
 
-@pytest.mark.parametrize("path", [path for path in MODULES if "models" in path.parts], ids=lambda path: path.stem)
+@pytest.mark.parametrize(
+    "path", [path for path in MODULES if "models" in path.parts], ids=lambda path: path.stem
+)
 def test_models_stand_alone(path):
     assert not set(imported(path)) & FORBIDDEN_IN_MODELS
 

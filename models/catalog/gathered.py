@@ -11,10 +11,11 @@ from models.catalog.part_table import PartTable
 
 
 class Gathered:
-    """Attribute access to any field of the chosen parts, as arrays of shape (n,) plus `trailing` axes of length one.
+    """Attribute access to any field of the chosen parts, as arrays of shape (n,) plus `trailing` axes of
+    length one.
 
-    `Gathered(catalog.devices, designs.device, 2).junction_limit_c` has the shape (n, 1, 1) and the field's unit.
-    Raises ValueError for a field that the parts do not have.
+    `Gathered(catalog.devices, designs.device, 2).junction_limit_c` has the shape (n, 1, 1) and the field's
+    unit. Raises ValueError for a field that the parts do not have.
     """
 
     def __init__(self, table: PartTable[Any], index: NDArray[np.int64], trailing: int = 0) -> None:

@@ -15,7 +15,8 @@ class Named(Protocol):
     """Anything with a name."""
 
     @property
-    def name(self) -> str: ...
+    def name(self) -> str:
+        """What it is called."""
 
 
 T = TypeVar("T", bound=Named)

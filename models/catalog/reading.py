@@ -20,6 +20,7 @@ class RawPart:
 
     @property
     def name(self) -> str:
+        """Its name, as far as the file gives one."""
         return str(self.entries.get("name", "(no name)"))
 
 
@@ -30,6 +31,7 @@ class Problems:
     messages: list[str] = field(default_factory=list)
 
     def add(self, raw: RawPart, message: str) -> None:
+        """Note what is wrong with a part."""
         self.messages.append(f"{raw.file}, part {raw.name!r}: {message}")
 
     def raise_if_any(self) -> None:

@@ -21,7 +21,8 @@ class Build:
     """Derived build of a population of inductors, all (n,).
 
     Attributes:
-        area: effective iron area of the stack [m2]; path: effective length [m]; core_volume: effective volume [m3].
+        area: effective iron area of the stack [m2]; path: effective length [m]; core_volume: effective volume
+            [m3].
         breadth: winding breadth of one coil [m].
         coil_turns: turns of one coil [-].
         turn_length: mean length of a turn [m].
@@ -66,11 +67,15 @@ def build(catalog: Catalog, choice: InductorDesigns) -> Build:
     largest = 0.25 * np.pi * conductor.strand_diameter_m**2
     is_foil, is_litz = kind == "foil", kind == "litz"
     wanted = choice.copper_area_m2 / np.where(is_foil, 1.0, largest)
-    strands = np.where(is_foil, 1.0, np.maximum(np.where(is_litz, np.rint(wanted), np.ceil(wanted - 1e-9)), 1.0))
+    strands = np.where(
+        is_foil, 1.0, np.maximum(np.where(is_litz, np.rint(wanted), np.ceil(wanted - 1e-9)), 1.0)
+    )
     copper_area = np.where(is_litz, strands * largest, choice.copper_area_m2)
     breadth = shape.window_breadth_m
     round_diameter = np.sqrt(4.0 / np.pi * copper_area / strands)
-    diameter = np.where(is_foil, copper_area / breadth, np.where(is_litz, conductor.strand_diameter_m, round_diameter))
+    diameter = np.where(
+        is_foil, copper_area / breadth, np.where(is_litz, conductor.strand_diameter_m, round_diameter)
+    )
     in_hole = np.char.startswith(shape.family.astype(str), "toroid")
     share = np.where(in_hole, conductor.copper_share_toroid, conductor.copper_share_bobbin)
     turn_length = shape.mean_turn_length_m + 2.0 * (stack - 1.0) * shape.stack_depth_m
@@ -98,7 +103,7 @@ def build(catalog: Catalog, choice: InductorDesigns) -> Build:
     )
 
 
-def resistance_ratio(built: Build, frequency_hz: Array, resistivity: float) -> Array:
+def resistance_ratio(built: Build, frequency_hz: Array, resistivity: Array) -> Array:
     """Ac over dc winding resistance at frequencies on the last axis, (n, k) [-].
 
     Args:

@@ -41,7 +41,9 @@ def core_bands(catalog: Catalog) -> CoreBands:
     materials = catalog.core_materials
     k, alpha, beta = (materials.column(f"steinmetz_{name}") for name in ("k", "alpha", "beta"))
     exponents = sorted(set(zip(alpha.ravel().tolist(), beta.ravel().tolist(), strict=True)))
-    pairs = [exponents.index(pair) for pair in zip(alpha.ravel().tolist(), beta.ravel().tolist(), strict=True)]
+    pairs = [
+        exponents.index(pair) for pair in zip(alpha.ravel().tolist(), beta.ravel().tolist(), strict=True)
+    ]
     return CoreBands(
         upper_hz=materials.column("band_max_hz"),
         k=k,

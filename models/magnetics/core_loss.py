@@ -14,9 +14,11 @@ def igse_factor(k: Array, alpha: Array, beta: Array) -> Array:
     """Constant k_i of the improved generalised Steinmetz equation [W/m3 with s and T].
 
     Args:
-        k, alpha, beta: Steinmetz constants for sine flux, P = k f^alpha B^beta, SI [W/m3 with Hz and T; -; -].
+        k, alpha, beta: Steinmetz constants for sine flux, P = k f^alpha B^beta, SI [W/m3 with Hz and T; -;
+            -].
 
-    Source: Venkatachalam, Sullivan, Abdallah, Tacca (2002): k / ((2 pi)^(alpha-1) 2^(beta-alpha) integral |cos|^alpha).
+    Source: Venkatachalam, Sullivan, Abdallah, Tacca (2002): k / ((2 pi)^(alpha-1) 2^(beta-alpha) integral
+        |cos|^alpha).
     """
     integral = 2.0 * np.sqrt(np.pi) * gamma(0.5 * (alpha + 1.0)) / gamma(0.5 * alpha + 1.0)
     return k / ((2.0 * np.pi) ** (alpha - 1.0) * 2.0 ** (beta - alpha) * integral)
@@ -67,8 +69,8 @@ def line_loss(line_loss_density: Array, exponent: Array, peak_flux: Array, line_
         line_loss_density: at 50 Hz and 1 T peak [W/m3].
         exponent: of the loss on flux density [-].
         peak_flux: line-frequency peak flux density [T].
-        line_frequency_hz: [Hz]; the loss per cycle is taken as constant between 50 and 60 Hz, times (f/50)^1.3
-            (common practice for hysteresis with some eddy current, no source).
+        line_frequency_hz: [Hz]; the loss per cycle is taken as constant between 50 and 60 Hz, times
+            (f/50)^1.3 (common practice for hysteresis with some eddy current, no source).
     """
     return line_loss_density * peak_flux**exponent * (line_frequency_hz / 50.0) ** 1.3
 
@@ -76,7 +78,7 @@ def line_loss(line_loss_density: Array, exponent: Array, peak_flux: Array, line_
 def bias_factor(bias_loss_factor: Array, line_peak_flux: Array, saturation: Array) -> Array:
     """Rise of the switching-frequency loss by the slowly moving line-frequency premagnetisation [-].
 
-    `bias_loss_factor` is the rise at half of saturation; taken linear in the local bias and averaged over the line cycle
-    (mean of |sin| = 2/pi). The linear law is a judgement; the factor itself is catalogue data.
+    `bias_loss_factor` is the rise at half of saturation; taken linear in the local bias and averaged over the
+    line cycle (mean of |sin| = 2/pi). The linear law is a judgement; the factor itself is catalogue data.
     """
     return 1.0 + (bias_loss_factor - 1.0) * BIAS_MEAN * np.minimum(line_peak_flux / (0.5 * saturation), 2.0)

@@ -23,12 +23,15 @@ def fringing_factor(gap: Array, area: Array, window_breadth: Array) -> Array:
     return 1.0 + safe / np.sqrt(area) * np.log(np.maximum(2.0 * window_breadth / safe, 1.0))
 
 
-def gapped_inductance(turns: Array, gap: Array, area: Array, path: Array, permeability: Array, breadth: Array) -> Array:
+def gapped_inductance(
+    turns: Array, gap: Array, area: Array, path: Array, permeability: Array, breadth: Array
+) -> Array:
     """Inductance of a core with an air gap of one limb, with fringing [H].
 
     Args:
         turns: [-].
-        gap: [m]; area [m2]; path: effective length [m]; permeability: of the ungapped set [-]; breadth: window [m].
+        gap: [m]; area [m2]; path: effective length [m]; permeability: of the ungapped set [-]; breadth:
+            window [m].
     """
     gap_reluctance = gap / (mu_0 * area * fringing_factor(gap, area, breadth))
     return turns**2 / (gap_reluctance + path / (mu_0 * permeability * area))
@@ -62,7 +65,13 @@ def powder_permeability_share(field: Array, half_field: Array, exponent: Array) 
 
 
 def powder_inductance(
-    turns: Array, current: Array, area: Array, path: Array, permeability: Array, half_field: Array, exponent: Array
+    turns: Array,
+    current: Array,
+    area: Array,
+    path: Array,
+    permeability: Array,
+    half_field: Array,
+    exponent: Array,
 ) -> Array:
     """Inductance of a powder core at a current [H]; arguments as above, `current` [A]."""
     left = powder_permeability_share(turns * current / path, half_field, exponent)

@@ -55,8 +55,8 @@ class Inductor:
         winding_loss, core_loss: [W]; temperature: [degC].
         flux_density: peak [T]; flux_share: over the hot saturation flux density [-].
         inductance_left: inductance at peak current over its initial value [-].
-        inductance_share: inductance that the build can reach at peak current (a gapped core: without gap) over the
-            required one [-].
+        inductance_share: inductance that the build can reach at peak current (a gapped core: without gap)
+            over the required one [-].
         gap: total air gap, 0 for powder [m]; gap_share: over the winding breadth [-].
         window_fill: copper over what the window takes [-].
         volume: boxed [m3]; mass: [kg]; price: [currency].
@@ -130,7 +130,10 @@ def _core_loss(built: Build, duty: InductorDuty, flux_per_ampere: Array) -> Arra
     material = built.material
     line_flux = flux_per_ampere[:, None] * np.sqrt(2.0) * duty.line_current
     major = line_loss(
-        material.line_loss_w_per_m3[:, None], material.line_loss_exponent[:, None], line_flux, duty.line_frequency_hz
+        material.line_loss_w_per_m3[:, None],
+        material.line_loss_exponent[:, None],
+        line_flux,
+        duty.line_frequency_hz,
     )
     bias = bias_factor(material.bias_loss_factor[:, None], line_flux, material.saturation_t[:, None])
     density = major + duty.switched_loss_density * bias
@@ -138,7 +141,7 @@ def _core_loss(built: Build, duty: InductorDuty, flux_per_ampere: Array) -> Arra
 
 
 def _winding_loss(built: Build, duty: InductorDuty, core_loss: Array) -> tuple[Array, Array]:
-    resistivity = float(copper_resistivity(np.asarray(RATIO_TEMPERATURE_C)))
+    resistivity = copper_resistivity(np.asarray(RATIO_TEMPERATURE_C))
     ratio = resistance_ratio(built, duty.group_frequency, resistivity)
     ripple = np.einsum("npm,nm->np", duty.group_mean_square, ratio)
     effective = duty.line_current**2 + ripple
@@ -154,7 +157,9 @@ def _winding_loss(built: Build, duty: InductorDuty, core_loss: Array) -> tuple[A
 
 
 def _price(catalog: Catalog, built: Build, labour: float) -> Array:
-    material = built.core_mass * built.material.price_per_kg + built.copper_mass * built.conductor.price_per_kg
+    material = (
+        built.core_mass * built.material.price_per_kg + built.copper_mass * built.conductor.price_per_kg
+    )
     return (material + labour) / (1.0 - catalog.cost.wound_part_margin)
 
 

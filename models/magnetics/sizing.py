@@ -1,8 +1,9 @@
 """First sizing of inductors: from inductance and currents to a core, turns and copper.
 
-A candidate of the search names no core by number but by how much larger than the least core it is; the sizing here turns
-that into the smallest boxed core (and stack) of the material with the area product it asks for. The evaluation then judges
-the result without knowing how it was chosen. Area-product method: McLyman, Transformer and Inductor Design Handbook.
+A candidate of the search names no core by number but by how much larger than the least core it is; the sizing
+here turns that into the smallest boxed core (and stack) of the material with the area product it asks for.
+The evaluation then judges the result without knowing how it was chosen. Area-product method: McLyman,
+Transformer and Inductor Design Handbook.
 """
 
 from __future__ import annotations
@@ -43,7 +44,9 @@ def core_ladder(catalog: Catalog, stack_limit: int = STACK_LIMIT) -> CoreLadder:
     """For every material, the cores that no other beats in both area product and boxed volume."""
     rows = [_ladder_of(catalog, material, stack_limit) for material in range(len(catalog.core_materials))]
     length = max(len(row[0]) for row in rows)
-    padded = [[np.concatenate([part, np.repeat(part[-1:], length - len(part))]) for part in row] for row in rows]
+    padded = [
+        [np.concatenate([part, np.repeat(part[-1:], length - len(part))]) for part in row] for row in rows
+    ]
     product, shape, stack = (np.stack(parts) for parts in zip(*padded, strict=True))
     return CoreLadder(product, shape, stack)
 
@@ -58,7 +61,9 @@ def _ladder_of(catalog: Catalog, material: int, stack_limit: int) -> tuple[Array
                 extra = shape.box_volume_m3 ** (2.0 / 3.0) * shape.stack_depth_m * (stack - 1)
                 entries.append((product, shape.box_volume_m3 + 1.17 * extra, index, stack))
     if not entries:
-        raise ValueError(f"core material {part.name!r}: no core shape of the families {', '.join(part.families)}")
+        raise ValueError(
+            f"core material {part.name!r}: no core shape of the families {', '.join(part.families)}"
+        )
     entries.sort(key=lambda entry: (-entry[0], entry[1]))
     kept, smallest = [], np.inf
     for entry in entries:
@@ -66,13 +71,22 @@ def _ladder_of(catalog: Catalog, material: int, stack_limit: int) -> tuple[Array
             kept.append(entry)
             smallest = entry[1]
     kept.reverse()
-    product, _, shape_index, stack_count = zip(*kept, strict=True)
-    return np.array(product), np.array(shape_index, dtype=np.int64), np.array(stack_count, dtype=np.int64)
+    products, _, shape_index, stack_count = zip(*kept, strict=True)
+    return np.array(products), np.array(shape_index, dtype=np.int64), np.array(stack_count, dtype=np.int64)
 
 
 def size_inductor(
-    catalog: Catalog, ladder: CoreLadder, material: Ints, conductor: Ints, inductance: Array, peak_current: Array,
-    rms_current: Array, size_factor: Array, flux_use: Array, window_use: Array, saturation_use: float,
+    catalog: Catalog,
+    ladder: CoreLadder,
+    material: Ints,
+    conductor: Ints,
+    inductance: Array,
+    peak_current: Array,
+    rms_current: Array,
+    size_factor: Array,
+    flux_use: Array,
+    window_use: Array,
+    saturation_use: float,
 ) -> InductorDesigns:
     """Choose core, stack, turns and copper area.
 
@@ -87,27 +101,43 @@ def size_inductor(
         saturation_use: greatest flux density over saturation [-].
 
     Returns:
-        The builds; turns are whole and at least 1. Where the ladder ends too early the largest core is taken, and the
-        evaluation will say what it lacks.
+        The builds; turns are whole and at least 1. Where the ladder ends too early the largest core is taken,
+        and the evaluation will say what it lacks.
     """
     materials, shapes, conductors = catalog.core_materials, catalog.core_shapes, catalog.conductors
     powder = materials.column("kind")[material] == "powder"
-    allowed_flux = np.where(powder, _powder_flux(catalog)[material], materials.column("saturation_t")[material] * saturation_use)
-    needed = inductance * peak_current * rms_current / (allowed_flux * REFERENCE_CURRENT_DENSITY * REFERENCE_COPPER_SHARE)
+    allowed_flux = np.where(
+        powder, _powder_flux(catalog)[material], materials.column("saturation_t")[material] * saturation_use
+    )
+    needed = (
+        inductance
+        * peak_current
+        * rms_current
+        / (allowed_flux * REFERENCE_CURRENT_DENSITY * REFERENCE_COPPER_SHARE)
+    )
     rung = np.sum(ladder.area_product[material] < (size_factor * needed)[:, None], axis=-1)
     rung = np.minimum(rung, ladder.area_product.shape[1] - 1)
     shape, stack = ladder.shape[material, rung], ladder.stack[material, rung]
     area = shapes.column("area_m2")[shape] * stack * materials.column("area_factor")[material]
     gapped_turns = np.ceil(inductance * peak_current / (allowed_flux * flux_use * area))
-    powder_turns = _powder_turns(catalog, material, area, shapes.column("path_length_m")[shape], inductance, peak_current)
+    powder_turns = _powder_turns(
+        catalog, material, area, shapes.column("path_length_m")[shape], inductance, peak_current
+    )
     turns = np.maximum(np.where(powder, powder_turns, gapped_turns), 1.0)
     in_hole = np.char.startswith(shapes.column("family")[shape].astype(str), "toroid")
     share = np.where(
-        in_hole, conductors.column("copper_share_toroid")[conductor], conductors.column("copper_share_bobbin")[conductor]
+        in_hole,
+        conductors.column("copper_share_toroid")[conductor],
+        conductors.column("copper_share_bobbin")[conductor],
     )
     copper = window_use * np.maximum(share, 1e-3) * shapes.column("window_area_m2")[shape] / turns
     return InductorDesigns(
-        material=material, shape=shape, stack=stack, turns=turns.astype(np.int64), conductor=conductor, copper_area_m2=copper
+        material=material,
+        shape=shape,
+        stack=stack,
+        turns=turns.astype(np.int64),
+        conductor=conductor,
+        copper_area_m2=copper,
     )
 
 

@@ -5,7 +5,7 @@ from __future__ import annotations
 import numpy as np
 from numpy.typing import NDArray
 from scipy.constants import mu_0
-from scipy.special import ber, bei, beip, berp
+from scipy.special import bei, beip, ber, berp
 
 Array = NDArray[np.float64]
 COPPER_RESISTIVITY_20 = 1.7241e-8  # ohm m, 100 % of the International Annealed Copper Standard
@@ -50,7 +50,12 @@ def round_wire_skin_ratio(diameter_over_skin_depth: Array) -> Array:
 
 
 def litz_ratio(
-    frequency_hz: Array, strands: Array, turns: Array, strand_diameter: Array, breadth: Array, resistivity: Array
+    frequency_hz: Array,
+    strands: Array,
+    turns: Array,
+    strand_diameter: Array,
+    breadth: Array,
+    resistivity: Array,
 ) -> Array:
     """Ac over dc resistance of a litz winding, low-frequency proximity form.
 
@@ -73,12 +78,18 @@ def litz_ratio(
 
 
 def wire_ratio(
-    frequency_hz: Array, strands: Array, turns: Array, diameter: Array, outer_factor: Array, breadth: Array,
+    frequency_hz: Array,
+    strands: Array,
+    turns: Array,
+    diameter: Array,
+    outer_factor: Array,
+    breadth: Array,
     resistivity: Array,
 ) -> Array:
     """Ac over dc resistance of a winding of (parallel) solid round wires by Dowell's method [-].
 
-    A wire of diameter d counts as a square one of side d sqrt(pi)/2; the porosity is the copper's share of the breadth.
+    A wire of diameter d counts as a square one of side d sqrt(pi)/2; the porosity is the copper's share of
+    the breadth.
 
     Args:
         frequency_hz, strands, turns, breadth, resistivity: as in `litz_ratio`.

@@ -39,7 +39,8 @@ class BridgeLosses:
 
     Attributes:
         conduction, switching, recovery, output_charge, dead_time, gate: [W].
-        switch_temperature, diode_temperature: hottest junction of its kind; of a shared die both are the same [degC].
+        switch_temperature, diode_temperature: hottest junction of its kind; of a shared die both are the same
+            [degC].
         sink_temperature: [degC].
         settled: true where the electro-thermal fixed point was found (n,).
     """
@@ -66,7 +67,8 @@ class _Position:
     """What heats one switch position, per modelled leg (l, n, p), each part apart.
 
     Attributes:
-        forward, channel: conduction of switch current and, of a shared die, of reverse current, in the switch die.
+        forward, channel: conduction of switch current and, of a shared die, of reverse current, in the switch
+            die.
         freewheel: conduction of a diode die of its own.
         switching, recovery: laws without resistive part.
         fixed: loss that does not depend on temperature (output charge, dead time) [W].
@@ -106,8 +108,15 @@ class _Position:
 
 
 def bridge_losses(
-    device: Gathered, parallel: Array, die_area: Array, frequency: Array, bridge: Bridge, tables: WaveformTables,
-    state: WaveformState, dc_voltage: Array, cooling: Cooling,
+    device: Gathered,
+    parallel: Array,
+    die_area: Array,
+    frequency: Array,
+    bridge: Bridge,
+    tables: WaveformTables,
+    state: WaveformState,
+    dc_voltage: Array,
+    cooling: Cooling,
 ) -> BridgeLosses:
     """Solve the bridge's losses and junction temperatures.
 
@@ -161,7 +170,7 @@ def bridge_losses(
         switch_temperature=switch_c.max(0),
         diode_temperature=np.where(device.shared_die, switch_c.max(0), diode_c.max(0)),
         sink_temperature=cooling.ambient_c + cooling.sink_rise(positions * (switch + diode).sum(0)),
-        settled=point.converged.all(axis=(0, 1, 3)),
+        settled=np.asarray(point.converged.all(axis=(0, 1, 3))),
     )
 
 
@@ -171,7 +180,11 @@ def _active_legs(tables: WaveformTables, state: WaveformState) -> Array:
 
 
 def _leg_switching(
-    device: Gathered, total_area: Array, frequency: Array, tables: WaveformTables, state: WaveformState,
+    device: Gathered,
+    total_area: Array,
+    frequency: Array,
+    tables: WaveformTables,
+    state: WaveformState,
     dc_voltage: Array,
 ) -> LegSwitching:
     """Switching of every modelled leg, (l, n, p): legs that rest at line frequency have none."""
@@ -187,12 +200,19 @@ def _leg_switching(
 
 
 def _position(
-    device: Gathered, total_area: Array, frequency: Array, tables: WaveformTables, state: WaveformState,
+    device: Gathered,
+    total_area: Array,
+    frequency: Array,
+    tables: WaveformTables,
+    state: WaveformState,
     legs: LegSwitching,
 ) -> _Position:
     scheme = state.scheme
     index = np.minimum(state.modulation_index, tables.linear_limit[scheme])
-    constant, slope = (np.moveaxis(table, 1, 0)[:, scheme[:, 0]] for table in (tables.reference_constant, tables.reference_slope))
+    constant, slope = (
+        np.moveaxis(table, 1, 0)[:, scheme[:, 0]]
+        for table in (tables.reference_constant, tables.reference_slope)
+    )
     per_unit = leg_currents(constant, slope, index, state.displacement)
     peak = state.peak_current
     square = peak**2 + 2.0 * state.ripple_mean_square
@@ -208,14 +228,18 @@ def _position(
             (0.5 * legs.turn_on_hot, device.turn_on_temperature_coefficient_per_k),
             (0.5 * legs.turn_off_hot, device.turn_off_temperature_coefficient_per_k),
         ),
-        recovery=_energy_law(device, (0.5 * legs.recovery_hot, device.recovery_temperature_coefficient_per_k)),
+        recovery=_energy_law(
+            device, (0.5 * legs.recovery_hot, device.recovery_temperature_coefficient_per_k)
+        ),
         fixed=0.5 * (legs.output_charge + dead * _active_legs(tables, state)),
         shared=device.shared_die,
     )
 
 
 def _energy_law(device: Gathered, *parts: tuple[Array, Array]) -> HeatLaw:
-    """Switching losses E_hot [1 - k (T_hot - T)] of (hot loss [W], coefficient k [1/K]) as one law of temperature."""
-    linear = sum(hot * coefficient for hot, coefficient in parts)
-    constant = sum(hot for hot, _ in parts) - device.energy_hot_c * linear
+    """Switching losses E_hot [1 - k (T_hot - T)] of (hot loss [W], coefficient k [1/K]) as one law of
+    temperature.
+    """
+    linear = np.sum([hot * coefficient for hot, coefficient in parts], axis=0)
+    constant = np.sum([hot for hot, _ in parts], axis=0) - device.energy_hot_c * linear
     return HeatLaw(constant, linear, np.zeros(()), np.zeros(()))

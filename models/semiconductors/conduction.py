@@ -1,7 +1,8 @@
-"""Conduction of switch and freewheeling path: threshold plus resistance, scaled by die area, over temperature.
+"""Conduction of switch and freewheeling path: threshold plus resistance, scaled by die area, over
+temperature.
 
-Silicon IGBT and diode: v = V0(T) + r(T) i. MOSFET and HEMT: R_on(T), which also carries reverse current (synchronous
-rectification); their diode conducts in the dead time only. Resistances scale with 1/area.
+Silicon IGBT and diode: v = V0(T) + r(T) i. MOSFET and HEMT: R_on(T), which also carries reverse current
+(synchronous rectification); their diode conducts in the dead time only. Resistances scale with 1/area.
 """
 
 from __future__ import annotations
@@ -33,7 +34,7 @@ class Path:
         return self.threshold + self.threshold_slope * (temperature - COLD_C)
 
     def slope_at(self, temperature: Array) -> Array:
-        """Slope resistance [ohm]: r25 (r_hot/r25)^((T - 25)/(T_hot - 25)) at a junction temperature [degC]."""
+        """Slope resistance r25 (r_hot/r25)^((T - 25)/(T_hot - 25)) [ohm] at a junction temperature [degC]."""
         return self.slope * np.exp(self.slope_log * (temperature - COLD_C))
 
     def loss(self, temperature: Array, average: Array, mean_square: Array) -> Array:
@@ -43,7 +44,9 @@ class Path:
 
 @dataclass(frozen=True)
 class HeatLaw:
-    """Loss of a die over its junction temperature T: constant + linear T + resistive exp(growth (T - 25 degC)) [W]."""
+    """Loss of a die over its junction temperature T: constant + linear T + resistive exp(growth (T - 25
+    degC)) [W].
+    """
 
     constant: Array
     linear: Array
@@ -52,7 +55,11 @@ class HeatLaw:
 
     def at(self, temperature: Array) -> Array:
         """Loss [W] at a junction temperature [degC]."""
-        return self.constant + self.linear * temperature + self.resistive * np.exp(self.growth * (temperature - COLD_C))
+        return (
+            self.constant
+            + self.linear * temperature
+            + self.resistive * np.exp(self.growth * (temperature - COLD_C))
+        )
 
 
 def conduction_law(path: Path, average: Array, mean_square: Array) -> HeatLaw:
@@ -62,7 +69,9 @@ def conduction_law(path: Path, average: Array, mean_square: Array) -> HeatLaw:
 
 
 def switch_path(device: Any, total_area: Array) -> Path:
-    """Path through the switch of `total_area` [m2] of parallel dies; `device` has the catalogue's device fields."""
+    """Path through the switch of `total_area` [m2] of parallel dies; `device` has the catalogue's device
+    fields.
+    """
     span = device.hot_c - COLD_C
     cold = device.slope_area_25_ohm_m2
     return Path(

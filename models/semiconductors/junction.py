@@ -1,8 +1,8 @@
 """Electro-thermal fixed point: losses at the junction temperature, junction temperature from the losses.
 
-Solved for all candidates, load points and positions at once by fixed-point steps with element-wise secant acceleration. A
-candidate whose losses grow faster than its cooling removes them has no fixed point below RUNAWAY_C: it is reported as
-thermal runaway, never as NaN.
+Solved for all candidates, load points and positions at once by fixed-point steps with element-wise secant
+acceleration. A candidate whose losses grow faster than its cooling removes them has no fixed point below
+RUNAWAY_C: it is reported as thermal runaway, never as NaN.
 """
 
 from __future__ import annotations
@@ -36,8 +36,8 @@ def solve(temperatures_from: Callable[[Array], Array], start: Array, steps: int 
         steps: greatest number of evaluations of g [-].
 
     Returns:
-        The fixed point; temperatures are clipped to RUNAWAY_C. A candidate rests once it is settled, so that its result
-        does not depend on the others it is solved with.
+        The fixed point; temperatures are clipped to RUNAWAY_C. A candidate rests once it is settled, so that
+        its result does not depend on the others it is solved with.
     """
     previous = start
     previous_image = np.minimum(temperatures_from(previous), RUNAWAY_C)
@@ -49,14 +49,16 @@ def solve(temperatures_from: Callable[[Array], Array], start: Array, steps: int 
         latest = np.minimum(temperatures_from(current), RUNAWAY_C)
         image = np.where(resting, image, latest)
         residual = np.where(resting, residual, np.abs(image - current))
-        resting = (residual < 0.2 * TOLERANCE_K).all(axis=others)[:, None]
+        resting = np.asarray((residual < 0.2 * TOLERANCE_K).all(axis=others))[:, None]
         if resting.all():
             break
         step = current - previous
         moved = np.abs(step) > 1e-9
         slope = np.where(moved, np.clip((image - previous_image) / np.where(moved, step, 1.0), 0.0, 0.9), 0.0)
         previous, previous_image = current, image
-        current = np.where(resting, current, np.minimum(current + (image - current) / (1.0 - slope), RUNAWAY_C))
+        current = np.where(
+            resting, current, np.minimum(current + (image - current) / (1.0 - slope), RUNAWAY_C)
+        )
     return FixedPoint(image, (residual < TOLERANCE_K) & (image < RUNAWAY_C - 1.0))
 
 

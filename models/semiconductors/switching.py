@@ -1,11 +1,11 @@
 """Switching loss of a leg: energies at the true commutated currents, averaged over the line angle.
 
-E = e V_ref I_ref (I/I_ref)^k_i (V/V_ref)^k_v [1 - k_T (T_hot - T)] with I_ref = rated current of the dies. At each angle one
-of the leg's switches turns on at |i| - offset and off at |i| + offset, the offset being half the local ripple (exactly: the
-flux deviation at the instant). Where the current reverses within the period, turn-on is soft: no overlap, no recovery, and
-the reversed current recharges the output capacitances as far as the dead time lets it. Output charge of unipolar parts costs
-Q_oss V per hard turn-on (Kasper, Burkart, Deboy, Kolar 2016); a data-sheet turn-on energy that contains it is reduced by it
-first.
+E = e V_ref I_ref (I/I_ref)^k_i (V/V_ref)^k_v [1 - k_T (T_hot - T)] with I_ref = rated current of the dies. At
+each angle one of the leg's switches turns on at |i| - offset and off at |i| + offset, the offset being half
+the local ripple (exactly: the flux deviation at the instant). Where the current reverses within the period,
+turn-on is soft: no overlap, no recovery, and the reversed current recharges the output capacitances as far as
+the dead time lets it. Output charge of unipolar parts costs Q_oss V per hard turn-on (Kasper, Burkart, Deboy,
+Kolar 2016); a data-sheet turn-on energy that contains it is reduced by it first.
 """
 
 from __future__ import annotations
@@ -73,15 +73,22 @@ def charge_left(valley: Array, charge: Array, dead_time: Array) -> Array:
         charge: output charge of one position [C].
         dead_time: [s].
 
-    A reversed current brings the charge |i| t_d of the 2 Q_oss that the switch node needs; what is left of the voltage swing,
-    1 - |i| t_d/(2 Q_oss), costs its square, as with constant capacitances (estimate for the nonlinear ones).
+    A reversed current brings the charge |i| t_d of the 2 Q_oss that the switch node needs; what is left of
+    the voltage swing, 1 - |i| t_d/(2 Q_oss), costs its square, as with constant capacitances (estimate for
+    the nonlinear ones).
     """
     rest = 1.0 + valley * (0.5 * dead_time) / (charge + TINY_CHARGE)
     return np.square(np.minimum(np.maximum(rest, 0.0), 1.0))
 
 
 def leg_switching(
-    device: Any, total_area: Array, voltage: Array, frequency: Array, current: Array, offset: Array, share: Array
+    device: Any,
+    total_area: Array,
+    voltage: Array,
+    frequency: Array,
+    current: Array,
+    offset: Array,
+    share: Array,
 ) -> LegSwitching:
     """Average the switching energies of one leg over half a line period.
 
@@ -105,11 +112,17 @@ def leg_switching(
     shares = np.broadcast_to(share, magnitude.shape)
     count = magnitude.shape[-1]
     per_second = frequency / count * reference[..., 0]
-    exponents = (device.turn_on_current_exponent, device.turn_off_current_exponent, device.recovery_current_exponent)
+    exponents = (
+        device.turn_on_current_exponent,
+        device.turn_off_current_exponent,
+        device.recovery_current_exponent,
+    )
     on, off, recovery = (exponent[..., None] for exponent in exponents)
     overlap = energy_scale(overlap_turn_on_energy(device), voltage, device.energy_voltage_exponent, device)
     turn_off = energy_scale(device.turn_off_energy_j_per_av, voltage, device.energy_voltage_exponent, device)
-    recovered = energy_scale(device.recovery_energy_j_per_av, voltage, device.recovery_voltage_exponent, device)
+    recovered = energy_scale(
+        device.recovery_energy_j_per_av, voltage, device.recovery_voltage_exponent, device
+    )
     charge = output_charge(device, voltage, total_area)
     left = charge_left(valley, charge[..., None], device.dead_time_s[..., None])
     return LegSwitching(
@@ -131,7 +144,9 @@ def gate_drive_loss(device: Any, total_area: Array, frequency: Array) -> Array:
     return device.gate_charge_c_per_m2 * total_area * device.gate_swing_v * frequency
 
 
-def dead_time_loss(device: Any, mean_current: Array, mean_square: Array, diode_slope: Array, frequency: Array) -> Array:
+def dead_time_loss(
+    device: Any, mean_current: Array, mean_square: Array, diode_slope: Array, frequency: Array
+) -> Array:
     """Extra loss of one leg while a unipolar part's diode carries the current in the dead times [W].
 
     Args:

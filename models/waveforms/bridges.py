@@ -1,12 +1,14 @@
 """Bridges and their modulation schemes: the registry every other waveform module works from.
 
-A scheme is given by the reference of each leg over the line angle, u = 2 d - 1 with the on-state share d of the
-upper switch, by the sign of each leg's triangular carrier, and by the weights that turn leg states into the voltage
-across the filter. Ripple, spectrum and device currents follow from these alone, so that a new scheme is one entry.
+A scheme is given by the reference of each leg over the line angle, u = 2 d - 1 with the on-state share d of
+the upper switch, by the sign of each leg's triangular carrier, and by the weights that turn leg states into
+the voltage across the filter. Ripple, spectrum and device currents follow from these alone, so that a new
+scheme is one entry.
 
-Modulation index M: peak of a leg's fundamental over V_dc/2 (three phases), peak fundamental of the bridge voltage
-over V_dc (single phase). Carriers are symmetrical triangles (double-edge modulation), naturally sampled.
-Sources: Holmes & Lipo, Pulse Width Modulation for Power Converters (2003), ch. 3-6; Hava, Kerkman, Lipo (1999).
+Modulation index M: peak of a leg's fundamental over V_dc/2 (three phases), peak fundamental of the bridge
+voltage over V_dc (single phase). Carriers are symmetrical triangles (double-edge modulation), naturally
+sampled. Sources: Holmes & Lipo, Pulse Width Modulation for Power Converters (2003), ch. 3-6; Hava, Kerkman,
+Lipo (1999).
 """
 
 from __future__ import annotations
@@ -136,7 +138,11 @@ SIX_SWITCH_BRIDGE = Bridge(
         Modulation("third harmonic one sixth", INJECTION_LIMIT, _third_harmonic, (1, 1, 1), (1, 1, 1)),
         Modulation("centred space vector", INJECTION_LIMIT, _centred_space_vector, (1, 1, 1), (1, 1, 1)),
         Modulation(
-            "discontinuous clamped at voltage peak", INJECTION_LIMIT, _clamped_at_voltage_peak, (1, 1, 1), (1, 1, 1)
+            "discontinuous clamped at voltage peak",
+            INJECTION_LIMIT,
+            _clamped_at_voltage_peak,
+            (1, 1, 1),
+            (1, 1, 1),
         ),
     ),
 )

@@ -18,7 +18,8 @@ def three_phase_rms(modulation_index: Array, displacement: Array) -> Array:
     Returns:
         Ratio [-].
 
-    Source: Dahono, Sato, Kataoka (1996); Kolar & Round (2006): sqrt(2 M (sqrt3/(4 pi) + cos^2 phi (sqrt3/pi - 9 M/16))).
+    Source: Dahono, Sato, Kataoka (1996); Kolar & Round (2006): sqrt(2 M (sqrt3/(4 pi) + cos^2 phi (sqrt3/pi -
+        9 M/16))).
     """
     cosine = np.cos(displacement)
     root3 = np.sqrt(3.0)
@@ -29,7 +30,8 @@ def three_phase_rms(modulation_index: Array, displacement: Array) -> Array:
 def single_phase_double_frequency_rms(modulation_index: Array) -> Array:
     """Double-line-frequency part of a full bridge's dc current over the peak output current [-].
 
-    The dc current is m(theta) i(theta): its alternating part has the amplitude M I/2 at twice the line frequency.
+    The dc current is m(theta) i(theta): its alternating part has the amplitude M I/2 at twice the line
+    frequency.
     """
     return np.asarray(modulation_index) / (2.0 * np.sqrt(2.0))
 
@@ -38,7 +40,8 @@ def single_phase_mean_square(on_mean: Array, on_cosine: Array, displacement: Arr
     """Mean square of a full bridge's dc current over the square of the peak output current [-].
 
     Args:
-        on_mean: mean over the line angle of the squared bridge state (share of time current flows from the link) [-].
+        on_mean: mean over the line angle of the squared bridge state (share of time current flows from the
+            link) [-].
         on_cosine: mean of that squared state times cos 2 theta [-].
         displacement: current lag phi [rad].
     """
@@ -48,7 +51,7 @@ def single_phase_mean_square(on_mean: Array, on_cosine: Array, displacement: Arr
 def single_phase_switching_rms(
     modulation_index: Array, displacement: Array, on_mean: Array, on_cosine: Array
 ) -> Array:
-    """Carrier-frequency part of a full bridge's dc-link capacitor current over the peak output current [-]."""
+    """Carrier-frequency part of a full bridge's dc-link current, rms over peak output current [-]."""
     average = 0.5 * modulation_index * np.cos(displacement)
     rest = single_phase_mean_square(on_mean, on_cosine, displacement) - average**2
     return np.sqrt(np.maximum(rest - single_phase_double_frequency_rms(modulation_index) ** 2, 0.0))

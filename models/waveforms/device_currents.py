@@ -1,9 +1,11 @@
-"""Average and rms currents of a two-level leg's switch and diode, exact for any reference with half-wave symmetry.
+"""Average and rms currents of a two-level leg's switch and diode, exact for any reference with half-wave
+symmetry.
 
-With the leg current i = I sin(theta - phi) and the reference u = sum Im(U_k exp(j k theta)), k odd, the upper switch
-carries i for the share (1 + u)/2 of each period while i > 0, its diode for (1 - u)/2 of the other half wave. Over the half
-wave sin x integrates against sin kx to pi/2 (k = 1) or 0, and sin^2 x to -4/(k (k^2 - 4)), which gives the sums below; with
-a sinusoidal reference they are the textbook closed forms (Kolar, Ertl, Zach 1990).
+With the leg current i = I sin(theta - phi) and the reference u = sum Im(U_k exp(j k theta)), k odd, the upper
+switch carries i for the share (1 + u)/2 of each period while i > 0, its diode for (1 - u)/2 of the other half
+wave. Over the half wave sin x integrates against sin kx to pi/2 (k = 1) or 0, and sin^2 x to -4/(k (k^2 -
+4)), which gives the sums below; with a sinusoidal reference they are the textbook closed forms (Kolar, Ertl,
+Zach 1990).
 """
 
 from __future__ import annotations
@@ -29,12 +31,14 @@ class LegCurrents:
     diode_mean_square: Array
 
 
-def leg_currents(constant: Complex, slope: Complex, modulation_index: Array, displacement: Array) -> LegCurrents:
+def leg_currents(
+    constant: Complex, slope: Complex, modulation_index: Array, displacement: Array
+) -> LegCurrents:
     """Average and mean square of switch and diode current per unit of the peak phase current, no ripple.
 
     Args:
-        constant, slope: harmonics of the legs' references, U = constant + M slope, orders 1, 3, 5, ... on the last
-            axis (..., n, order) [-].
+        constant, slope: harmonics of the legs' references, U = constant + M slope, orders 1, 3, 5, ... on the
+            last axis (..., n, order) [-].
         modulation_index: M (n, p) [-].
         displacement: angle by which the leg current lags the fundamental voltage (n, p) [rad].
 

@@ -1,8 +1,9 @@
 """Spectrum of naturally sampled pulse-width modulation as a double Fourier series.
 
-A leg that is on for the share d of a period, centred, has the carrier-multiple m coefficient (2/(m pi)) sin(m pi d).
-Its Fourier series over the line angle gives the sidebands m f_s + n f_1: for a sinusoidal reference these are the Bessel
-functions of Black (1953) and Bowes & Bird (1975); for any reference, Holmes & Lipo (2003), ch. 3 and 4.
+A leg that is on for the share d of a period, centred, has the carrier-multiple m coefficient (2/(m pi)) sin(m
+pi d). Its Fourier series over the line angle gives the sidebands m f_s + n f_1: for a sinusoidal reference
+these are the Bessel functions of Black (1953) and Bowes & Bird (1975); for any reference, Holmes & Lipo
+(2003), ch. 3 and 4.
 """
 
 from __future__ import annotations
@@ -27,8 +28,10 @@ class Sidebands:
 
     Attributes:
         carrier_multiple, line_multiple: m and n (k,) [-].
-        listed: (k,) true for a sideband, false for a group's rest line (rms of all that is not listed there) [-].
-        amplitude: (index, k), peak over V_dc; all lines together have the exact rms of the switched voltage [-].
+        listed: (k,) true for a sideband, false for a group's rest line (rms of all that is not listed there)
+            [-].
+        amplitude: (index, k), peak over V_dc; all lines together have the exact rms of the switched voltage
+            [-].
         group_mean_square: (index, m - 1), mean square of whole carrier groups [V_dc^2].
     """
 
@@ -57,7 +60,9 @@ def leg_sideband(carrier_multiple: Array, line_multiple: Array, modulation_index
     return np.abs(4.0 / (np.pi * m) * bessel * np.sin(0.5 * np.pi * (m + n)))
 
 
-def carrier_coefficients(bridge: Bridge, modulation: Modulation, modulation_index: Array) -> Array:
+def carrier_coefficients(
+    bridge: Bridge, modulation: Modulation, modulation_index: Array
+) -> NDArray[np.complex128]:
     """Complex sideband coefficients of the filter voltage, (index, m - 1, angle harmonic) [V_dc peak]."""
     angle = 2.0 * np.pi * (np.arange(ANGLE_SAMPLES) + 0.5) / ANGLE_SAMPLES
     duty = 0.5 * (1.0 + modulation.references(*np.broadcast_arrays(angle, modulation_index[:, None])))
@@ -81,8 +86,8 @@ def sidebands(
         count: how many sidebands to keep [-].
 
     Returns:
-        `count` sidebands and CARRIER_GROUPS + 1 rest lines; the last rest line stands at the first carrier group that
-        is not expanded and closes the rms identity.
+        `count` sidebands and CARRIER_GROUPS + 1 rest lines; the last rest line stands at the first carrier
+        group that is not expanded and closes the rms identity.
     """
     coefficients = np.abs(carrier_coefficients(bridge, modulation, modulation_index))
     groups = 0.5 * np.sum(coefficients**2, axis=-1)
@@ -91,7 +96,9 @@ def sidebands(
     carrier = np.repeat(np.arange(1, CARRIER_GROUPS + 1), len(span)).astype(float)
     line = np.tile(span, CARRIER_GROUPS).astype(float)
     kept = np.sort(np.argsort(-(listed.max(0) / carrier**2), kind="stable")[:count])
-    inside = [0.5 * np.sum(listed[:, kept[carrier[kept] == m]] ** 2, axis=-1) for m in range(1, CARRIER_GROUPS + 1)]
+    inside = [
+        0.5 * np.sum(listed[:, kept[carrier[kept] == m]] ** 2, axis=-1) for m in range(1, CARRIER_GROUPS + 1)
+    ]
     fundamental = 0.5 * (bridge.index_base * modulation_index) ** 2
     beyond = voltage_mean_square - fundamental - groups.sum(-1)
     rest = np.concatenate([groups - np.stack(inside, axis=-1), beyond[:, None]], axis=-1)

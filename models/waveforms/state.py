@@ -42,7 +42,12 @@ class WaveformState:
 
 
 def waveform_state(
-    bridge: Bridge, tables: WaveformTables, scheme: Ints, phasors: LinePhasors, dc_voltage: Array, reactive_volt: Array
+    bridge: Bridge,
+    tables: WaveformTables,
+    scheme: Ints,
+    phasors: LinePhasors,
+    dc_voltage: Array,
+    reactive_volt: Array,
 ) -> WaveformState:
     """Read the waveform tables for a population.
 

@@ -1,7 +1,8 @@
 """One switching period in exact pieces: voltage levels, flux, ripple, current at the switching instants.
 
-Within a period the line quantities stand still (f_s >> f_1). The legs' states cut the period into intervals of constant
-voltage; the flux is piecewise linear. Harmonic-flux method: Hava, Kerkman, Lipo (1999); Holmes & Lipo (2003), ch. 2, 5.
+Within a period the line quantities stand still (f_s >> f_1). The legs' states cut the period into intervals
+of constant voltage; the flux is piecewise linear. Harmonic-flux method: Hava, Kerkman, Lipo (1999); Holmes &
+Lipo (2003), ch. 2, 5.
 """
 
 from __future__ import annotations
@@ -31,7 +32,7 @@ class SwitchingPeriod:
 
     @cached_property
     def instants(self) -> tuple[Array, Array]:
-        """Turn-on and turn-off instant of every leg's upper switch, as distance from the period's centre [-]."""
+        """Turn-on and turn-off instant of every leg's upper switch, as share of the period [-]."""
         sign = np.array(self.carrier_sign)
         half = np.where(sign > 0, 0.5 * self.duty, 0.5 * (1.0 - self.duty))
         return np.where(sign > 0, 0.5 - half, 0.5 + half), np.where(sign > 0, 0.5 + half, 0.5 - half)

@@ -1,7 +1,7 @@
 """Waveform quantities of all schemes of a bridge, tabulated once over the modulation index.
 
-Normalised by V_dc, L and f_s they depend on the modulation index alone, so a population reads them by index arithmetic on
-a uniform grid instead of solving each candidate's switching periods again.
+Normalised by V_dc, L and f_s they depend on the modulation index alone, so a population reads them by index
+arithmetic on a uniform grid instead of solving each candidate's switching periods again.
 """
 
 from __future__ import annotations
@@ -28,18 +28,20 @@ SIDEBAND_COUNT = 24
 
 @dataclass(frozen=True)
 class WaveformTables:
-    """Tables of one bridge; axes: s scheme, i modulation index, a angle over half the line period, k sideband.
+    """Tables of one bridge; axes: s scheme, i modulation index, a angle over half the line period, k
+    sideband.
 
     Attributes:
         angle: middles of equal cells over 0..pi [rad].
         linear_limit: (s,) greatest modulation index [-].
         peak_ripple: (s, i) greatest peak-to-peak ripple over the line period [V_dc/(L f_s)].
         ripple_mean_square: (s, i) mean square ripple [(V_dc/(L f_s))^2].
-        commutation_offset: (s, i, a) turn-on happens at |i| - offset, turn-off at |i| + offset [V_dc/(L f_s)].
+        commutation_offset: (s, i, a) turn-on happens at |i| - offset, turn-off at |i| + offset [V_dc/(L
+            f_s)].
         switching_share: (s, a) 1 where the leg switches at the carrier frequency, 0 where it is clamped [-].
         leg_switching: (s, l) 1 for modelled legs that switch at the carrier frequency [-].
-        reference_constant, reference_slope: (s, l, order) leg reference harmonics U = constant + M slope, seen from
-            the leg's own current [-].
+        reference_constant, reference_slope: (s, l, order) leg reference harmonics U = constant + M slope,
+            seen from the leg's own current [-].
         on_mean, on_cosine: (s, i) mean squared bridge state and its cos 2 theta moment [-].
         sideband_carrier, sideband_line: (s, k) multiples m and n [-].
         sideband_listed: (s, k) false for the rest lines of carrier groups [-].
@@ -139,7 +141,7 @@ def _scheme_rows(
     }
 
 
-def _cell_means(fine: Array) -> Array:
+def _cell_means(fine: NDArray[np.floating]) -> Array:
     return fine.reshape(*fine.shape[:-1], ANGLE_CELLS, FINE).mean(-1)
 
 

@@ -1,9 +1,11 @@
-"""Designs evaluated per second on one core, all load levels included, beside a plain NumPy baseline of the same run.
+"""Designs evaluated per second on one core, all load levels included, beside a plain NumPy baseline of the
+same run.
 
     python tests/benchmarks/bench_evaluation.py [study]
 
-Candidates are random points of the search space, and the feasible ones of a short search, at population size and in a large
-block. The baseline is 300 elementwise operations on as many numbers, the price of a small vectorised model.
+Candidates are random points of the search space, and the feasible ones of a short search, at population size
+and in a large block. The baseline is 300 elementwise operations on as many numbers, the price of a small
+vectorised model.
 """
 
 from __future__ import annotations
@@ -55,7 +57,9 @@ def main(name: str) -> None:
     inverter = prepared_inverter(study)
     rng = np.random.default_rng(1)
     base = rate(lambda: elementwise(LARGE), LARGE)
-    print(f"{study.name}: designs per second on one core (goals: 50,000 in large blocks, 10,000 at population size)")
+    print(
+        f"{study.name}: designs per second on one core (goals: 50,000 in large blocks, 10,000 at population)"
+    )
     print(f"{'candidates':42} {'large block':>12} {'population':>12} {'large block / baseline':>24}")
     for device_class in study.search.device_classes:
         space = SearchSpace(study, inverter, device_class)

@@ -2,7 +2,8 @@
 
     python tests/benchmarks/bench_search.py [repeats]
 
-Prints seconds and their ratio, medians of runs taken in turn; a run is a process of its own, imports included.
+Prints seconds and their ratio, medians of runs taken in turn; a run is a process of its own, imports
+included.
 """
 
 from __future__ import annotations
@@ -29,11 +30,21 @@ def seconds(command: list[str]) -> float:
 def main(repeats: int) -> None:
     """Run both in turn and print medians and ratio."""
     with tempfile.TemporaryDirectory() as folder:
-        rooftop = [sys.executable, "-m", "optimizer.cli", "search", "studies/rooftop_5kw.toml", "--run", f"{folder}/run"]
+        rooftop = [
+            sys.executable,
+            "-m",
+            "optimizer.cli",
+            "search",
+            "studies/rooftop_5kw.toml",
+            "--run",
+            f"{folder}/run",
+        ]
         free = [sys.executable, str(FREE), "4", "100", "200"]
         pairs = [(seconds(rooftop), seconds(free)) for _ in range(repeats)]
     ours, theirs = (statistics.median(column) for column in zip(*pairs, strict=True))
-    help_time = statistics.median(seconds([sys.executable, "-m", "optimizer.cli", "--help"]) for _ in range(5))
+    help_time = statistics.median(
+        seconds([sys.executable, "-m", "optimizer.cli", "--help"]) for _ in range(5)
+    )
     memory = resource.getrusage(resource.RUSAGE_CHILDREN).ru_maxrss / 1024
     print(f"rooftop study, command to dashboard   {ours:6.2f} s   (goal: at most 20 s)")
     print(f"pymoo alone, 4 x 100 x 200, free      {theirs:6.2f} s")

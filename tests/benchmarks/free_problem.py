@@ -1,4 +1,5 @@
-"""What pymoo alone takes: its own NSGA-II on a free problem of the rooftop study's size, populations side by side.
+"""What pymoo alone takes: its own NSGA-II on a free problem of the rooftop study's size, populations side by
+side.
 
 Run as a program of its own by bench_search.py, so that imports count on both sides.
 """

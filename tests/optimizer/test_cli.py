@@ -22,7 +22,9 @@ def wattfront(*words, cwd):
 @pytest.fixture(scope="module")
 def run(tmp_path_factory):
     folder = tmp_path_factory.mktemp("cli")
-    done = wattfront("search", ROOFTOP, "--run", folder / "run", "--population", 40, "--generations", 30, cwd=folder)
+    done = wattfront(
+        "search", ROOFTOP, "--run", folder / "run", "--population", 40, "--generations", 30, cwd=folder
+    )
     assert done.returncode == 0, done.stderr
     return folder / "run", done
 
@@ -73,7 +75,9 @@ def test_same_seed_same_front_file(run, tmp_path):
 
 def test_a_front_can_be_evaluated_again(run, tmp_path):
     folder, _ = run
-    done = wattfront("evaluate", ROOFTOP, "--designs", folder / "front.csv", "--out", tmp_path / "again.csv", cwd=tmp_path)
+    done = wattfront(
+        "evaluate", ROOFTOP, "--designs", folder / "front.csv", "--out", tmp_path / "again.csv", cwd=tmp_path
+    )
     assert done.returncode == 0, done.stderr
     again, front = pd.read_csv(tmp_path / "again.csv"), pd.read_csv(folder / "front.csv")
     pd.testing.assert_series_equal(again.loss_rated_w, front.loss_rated_w, rtol=1e-5)
@@ -134,7 +138,9 @@ def test_nothing_feasible_ends_with_code_1_and_says_why(tmp_path):
 def test_search_refuses_a_folder_that_is_no_run(tmp_path):
     (tmp_path / "mine").mkdir()
     (tmp_path / "mine" / "thesis.txt").write_text("precious")
-    done = wattfront("search", ROOFTOP, "--run", "mine", "--population", 20, "--generations", 20, cwd=tmp_path)
+    done = wattfront(
+        "search", ROOFTOP, "--run", "mine", "--population", 20, "--generations", 20, cwd=tmp_path
+    )
     assert done.returncode == 2
     assert (tmp_path / "mine" / "thesis.txt").read_text() == "precious"
 
@@ -147,7 +153,12 @@ def test_every_command_has_help_with_an_example(tmp_path, command):
 
 
 def test_usage_errors_end_with_code_2(tmp_path):
-    for words in (("search",), ("searhc", "x"), ("search", ROOFTOP, "--sed", "1"), ("search", ROOFTOP, "--seed", "x")):
+    for words in (
+        ("search",),
+        ("searhc", "x"),
+        ("search", ROOFTOP, "--sed", "1"),
+        ("search", ROOFTOP, "--seed", "x"),
+    ):
         done = wattfront(*words, cwd=tmp_path)
         assert done.returncode == 2
         assert "Traceback" not in done.stderr

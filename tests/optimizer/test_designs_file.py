@@ -1,3 +1,4 @@
+# ruff: noqa: E501
 """Designs by hand: rows of a front come back the same; every fault is told with its place."""
 
 import numpy as np
@@ -30,7 +31,14 @@ def test_rows_of_a_front_come_back_with_the_same_results(given, table, rooftop):
     again = evaluated_table(rooftop, inverter, read_designs(given(), inverter))
     assert again.feasible.all()
     assert list(again.design_id) == list(table.design_id)
-    for column in ("loss_rated_w", "volume_l", "price", "current_thd", "junction_temperature_c", "efficiency_weighted"):
+    for column in (
+        "loss_rated_w",
+        "volume_l",
+        "price",
+        "current_thd",
+        "junction_temperature_c",
+        "efficiency_weighted",
+    ):
         np.testing.assert_allclose(again[column], table[column], rtol=1e-6)
 
 

@@ -1,3 +1,4 @@
+# ruff: noqa: E501
 """Fronts and their tables."""
 
 import moocore
@@ -22,8 +23,15 @@ def test_promised_columns_are_there(fronts):
     assert promised <= set(fronts.table.columns)
 
 
-@pytest.mark.parametrize(("total", "share"), [("loss_rated_w", r"^loss_(?!rated).*_w$"), ("volume_l", "^volume_.+_l$"),
-                                              ("mass_kg", "^mass_.+_kg$"), ("price", "^price_")])
+@pytest.mark.parametrize(
+    ("total", "share"),
+    [
+        ("loss_rated_w", r"^loss_(?!rated).*_w$"),
+        ("volume_l", "^volume_.+_l$"),
+        ("mass_kg", "^mass_.+_kg$"),
+        ("price", "^price_"),
+    ],
+)
 def test_shares_add_up_to_totals(fronts, total, share):
     sums = fronts.table.filter(regex=share).sum(axis=1)
     np.testing.assert_allclose(sums, fronts.table[total], rtol=1e-12)
@@ -31,7 +39,9 @@ def test_shares_add_up_to_totals(fronts, total, share):
 
 def test_rated_efficiency_is_power_over_power_and_losses(fronts, rooftop):
     power = rooftop.specification.apparent_power_va
-    np.testing.assert_allclose(fronts.table.efficiency_rated, power / (power + fronts.table.loss_rated_w), rtol=1e-12)
+    np.testing.assert_allclose(
+        fronts.table.efficiency_rated, power / (power + fronts.table.loss_rated_w), rtol=1e-12
+    )
 
 
 def test_no_design_dominates_another_of_its_class(fronts, rooftop):

@@ -1,4 +1,6 @@
-"""The array steps of NSGA-II against their definitions, and the whole against pymoo's own algorithm on a known problem."""
+"""The array steps of NSGA-II against their definitions, and the whole against pymoo's own algorithm on a
+known problem.
+"""
 
 import moocore
 import numpy as np
@@ -77,8 +79,12 @@ def test_as_good_as_pymoo_on_zdt1(seed):
 
     first = np.random.default_rng(seed).random((100, problem.n_var))
     ours = ArrayNSGA2(
-        100, lambda points: np.clip(points, 0.0, 1.0), np.zeros(problem.n_var, dtype=bool), first,
-        evaluator=ArrayEvaluator(assess), output=None,
+        100,
+        lambda points: np.clip(points, 0.0, 1.0),
+        np.zeros(problem.n_var, dtype=bool),
+        first,
+        evaluator=ArrayEvaluator(assess),
+        output=None,
     )
     mine = minimize(problem, ours, ("n_gen", 150), seed=seed, copy_algorithm=False).F
     theirs = minimize(problem, NSGA2(pop_size=100), ("n_gen", 150), seed=seed).F
@@ -89,9 +95,12 @@ def test_as_good_as_pymoo_on_zdt1(seed):
 def test_result_is_pymoo_s():
     problem = get_problem("zdt1")
     algorithm = ArrayNSGA2(
-        20, lambda points: np.clip(points, 0.0, 1.0), np.zeros(problem.n_var, dtype=bool),
+        20,
+        lambda points: np.clip(points, 0.0, 1.0),
+        np.zeros(problem.n_var, dtype=bool),
         np.random.default_rng(1).random((20, problem.n_var)),
-        evaluator=ArrayEvaluator(lambda points: (problem.evaluate(points), np.zeros(len(points)))), output=None,
+        evaluator=ArrayEvaluator(lambda points: (problem.evaluate(points), np.zeros(len(points)))),
+        output=None,
     )
     result = minimize(problem, algorithm, ("n_gen", 5), seed=1, copy_algorithm=False)
     assert result.X.shape[1] == problem.n_var

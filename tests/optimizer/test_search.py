@@ -81,7 +81,9 @@ def test_search_beats_random_candidates_of_the_same_number(small_search):
     points = problem.space.repaired(np.random.default_rng(1).random((found.evaluations, problem.n_var)))
     problem.assess(points)
     random_objectives = problem.archive.feasible()[1]
-    assert normalised_hypervolume(study, found.objectives) > 1.05 * normalised_hypervolume(study, random_objectives)
+    assert normalised_hypervolume(study, found.objectives) > 1.05 * normalised_hypervolume(
+        study, random_objectives
+    )
 
 
 def test_archive_front_is_at_least_as_good_as_the_last_population(small_search):

@@ -1,0 +1,31 @@
+"""Studies, search, fronts and charts around the physics in `models`.
+
+`Study.read(path)` reads a study file, `search(study)` searches it, `front(result)` makes its tables. Imports happen on first
+use, so that the command line answers at once.
+"""
+
+from __future__ import annotations
+
+from importlib import import_module
+from typing import TYPE_CHECKING, Any
+
+if TYPE_CHECKING:
+    from optimizer.front import Front, front
+    from optimizer.search import SearchResult, search
+    from optimizer.study import Study
+
+__all__ = ["Front", "SearchResult", "Study", "front", "search"]
+
+_HOMES = {
+    "Front": "optimizer.front",
+    "front": "optimizer.front",
+    "SearchResult": "optimizer.search",
+    "search": "optimizer.search",
+    "Study": "optimizer.study",
+}
+
+
+def __getattr__(name: str) -> Any:
+    if name not in _HOMES:
+        raise AttributeError(f"module 'optimizer' has no attribute {name!r}")
+    return getattr(import_module(_HOMES[name]), name)

@@ -31,16 +31,19 @@ class Modulation:
     Attributes:
         name: its name in the trade [-].
         linear_limit: greatest modulation index of the linear range [-].
-        references: (angle [rad], modulation index) -> references of all legs, legs on the last axis [-].
+        references: (angle [rad], modulation index) -> references of all legs, legs on the last axis [-]; a
+            scheme that follows the current takes its displacement angle [rad] as a third argument.
         carrier_sign: +1 or -1 per leg; -1 for a leg that compares with the inverted carrier [-].
         switching_legs: 1 for a leg that switches at carrier frequency, 0 for one at line frequency [-].
+        follows_current: whether the references depend on the displacement angle.
     """
 
     name: str
     linear_limit: float
-    references: Callable[[Array, Array], Array]
+    references: Callable[..., Array]
     carrier_sign: tuple[int, ...]
     switching_legs: tuple[int, ...]
+    follows_current: bool = False
 
 
 @dataclass(frozen=True)
@@ -55,7 +58,11 @@ class Bridge:
         leg_copies: physical legs per modelled leg [-].
         current_sign: sign of the phase-one current in each modelled leg [-].
         index_base: V_dc times this is the peak fundamental at M = 1 [-].
-        modulations: the schemes.
+        modulations: the schemes that a search chooses from.
+        levels: levels of a leg; a three-level leg compares with two carriers in phase (phase disposition)
+            [-].
+        further: schemes that only `line_period` evaluates: line-switched ones, and those that follow the
+            current.
     """
 
     name: str
@@ -66,6 +73,15 @@ class Bridge:
     current_sign: tuple[int, ...]
     index_base: float
     modulations: tuple[Modulation, ...]
+    levels: int = 2
+    further: tuple[Modulation, ...] = ()
+
+    def scheme(self, name: str) -> Modulation:
+        """Return a scheme of this bridge, a further one included. Raises ValueError naming the known ones."""
+        known = {one.name: one for one in (*self.modulations, *self.further)}
+        if name not in known:
+            raise ValueError(f"modulation {name!r} of {self.name}: expected one of {', '.join(known)}")
+        return known[name]
 
     def modulation_index(self, name: str) -> int:
         """Return the position of a scheme. Raises ValueError naming the known ones."""
@@ -111,6 +127,34 @@ def _clamped_at_voltage_peak(angle: Array, index: Array) -> Array:
     return sines + zero[..., None]
 
 
+def _clamped_at_current_peak(angle: Array, index: Array, displacement: float = 0.0) -> Array:
+    """The clamp follows the current's peak as far as 30 degrees from the voltage's, where its phase still
+    leads.
+    """
+    angle, index = np.broadcast_arrays(angle, index)
+    sines = _three_sines(angle, index)
+    order = _three_sines(angle - np.clip(displacement, -np.pi / 6.0, np.pi / 6.0), np.ones_like(index))
+    chosen = np.abs(order).argmax(-1)[..., None]
+    rail = np.sign(np.take_along_axis(order, chosen, -1))
+    return sines + rail - np.take_along_axis(sines, chosen, -1)
+
+
+def _polarity_of_sine(angle: Array, index: Array) -> Array:
+    sine = np.sin(np.broadcast_arrays(angle, index)[0])
+    return np.stack([sine, -sine], axis=-1)
+
+
+def _polarity_of_three_sines(angle: Array, index: Array) -> Array:
+    return _three_sines(np.asarray(angle), np.ones_like(np.broadcast_arrays(angle, index)[1]))
+
+
+def _one_sine(angle: Array, index: Array) -> Array:
+    return (index * np.sin(angle))[..., None]
+
+
+SQUARE_INDEX = 4.0 / np.pi
+QUASI_SQUARE = "quasi-square wave"
+
 FULL_BRIDGE = Bridge(
     name="single-phase full bridge",
     phases=1,
@@ -123,6 +167,10 @@ FULL_BRIDGE = Bridge(
         Modulation("bipolar", SINE_LIMIT, _opposed_sines, (1, -1), (1, 1)),
         Modulation("unipolar", SINE_LIMIT, _opposed_sines, (1, 1), (1, 1)),
         Modulation("one leg at line frequency", SINE_LIMIT, _one_leg_at_line_frequency, (1, 1), (1, 0)),
+    ),
+    further=(
+        Modulation("square wave", SQUARE_INDEX, _polarity_of_sine, (1, 1), (0, 0)),
+        Modulation(QUASI_SQUARE, SQUARE_INDEX, _polarity_of_sine, (1, 1), (0, 0)),
     ),
 )
 SIX_SWITCH_BRIDGE = Bridge(
@@ -145,5 +193,64 @@ SIX_SWITCH_BRIDGE = Bridge(
             (1, 1, 1),
         ),
     ),
+    further=(
+        Modulation(
+            "discontinuous following the current",
+            INJECTION_LIMIT,
+            _clamped_at_current_peak,
+            (1, 1, 1),
+            (1, 1, 1),
+            follows_current=True,
+        ),
+        Modulation("six-step", SQUARE_INDEX, _polarity_of_three_sines, (1, 1, 1), (0, 0, 0)),
+    ),
+)
+THREE_LEVEL_HALF_BRIDGE = Bridge(
+    name="single-phase three-level half bridge",
+    phases=1,
+    voltage_weights=(1.0,),
+    modelled_legs=(0,),
+    leg_copies=1,
+    current_sign=(1,),
+    index_base=0.5,
+    modulations=(Modulation("phase disposition", SINE_LIMIT, _one_sine, (1,), (1,)),),
+    levels=3,
+)
+THREE_LEVEL_FULL_BRIDGE = Bridge(
+    name="single-phase three-level full bridge",
+    phases=1,
+    voltage_weights=(1.0, -1.0),
+    modelled_legs=(0, 1),
+    leg_copies=1,
+    current_sign=(1, -1),
+    index_base=1.0,
+    modulations=(Modulation("phase disposition", SINE_LIMIT, _opposed_sines, (1, 1), (1, 1)),),
+    levels=3,
+)
+THREE_LEVEL_BRIDGE = Bridge(
+    name="three-phase three-level bridge",
+    phases=3,
+    voltage_weights=(2.0 / 3.0, -1.0 / 3.0, -1.0 / 3.0),
+    modelled_legs=(0,),
+    leg_copies=3,
+    current_sign=(1,),
+    index_base=0.5,
+    modulations=(
+        Modulation("phase disposition", SINE_LIMIT, _three_sines, (1, 1, 1), (1, 1, 1)),
+        Modulation(
+            "phase disposition with common-mode injection",
+            INJECTION_LIMIT,
+            _centred_space_vector,
+            (1, 1, 1),
+            (1, 1, 1),
+        ),
+    ),
+    levels=3,
 )
 BRIDGES = {bridge.name: bridge for bridge in (FULL_BRIDGE, SIX_SWITCH_BRIDGE)}
+"""Bridges that a study can name: those whose losses are modelled."""
+
+ALL_BRIDGES = BRIDGES | {
+    bridge.name: bridge for bridge in (THREE_LEVEL_HALF_BRIDGE, THREE_LEVEL_FULL_BRIDGE, THREE_LEVEL_BRIDGE)
+}
+"""All bridges whose waveforms `line_period` evaluates."""

@@ -1,0 +1,148 @@
+"""Legs over one line period: which level each leg stands at, between exact switching angles.
+
+A two-level leg is one cell (upper switch on or off); a three-level leg is two cells of half the dc voltage
+each, compared with the upper and the lower of two carriers in phase (phase disposition; Carrara et al. 1992):
+the leg's level is the mean of its cells. Angles are found for an integer pulse number, the carrier's valley
+(centre of the on-state at positive reference) at the line voltage's zero plus an offset.
+
+Sampling: natural (the reference runs on), symmetrical regular (held from one carrier valley to the next) or
+asymmetrical regular (held over each half carrier period); Holmes & Lipo (2003), ch. 3.
+"""
+
+from __future__ import annotations
+
+from collections.abc import Callable
+from dataclasses import dataclass
+
+import numpy as np
+from numpy.typing import NDArray
+
+Array = NDArray[np.float64]
+Reference = Callable[[Array], Array]
+NATURAL, SYMMETRICAL, ASYMMETRICAL = "natural", "symmetrical regular", "asymmetrical regular"
+SAMPLINGS = (NATURAL, SYMMETRICAL, ASYMMETRICAL)
+BISECTIONS = 48
+PROBES = 6  # sub-intervals of half a carrier period that are searched for a crossing of their own
+JUMP_GRID = 2880  # cells of the line period searched for jumps of the reference
+JUMP = 0.02  # change within such a cell that no smooth reference makes
+FULL_TURN = 2.0 * np.pi
+
+
+@dataclass(frozen=True)
+class Cell:
+    """One on/off cell of a leg over a line period.
+
+    Attributes:
+        angles: switching angles, ascending in [0, 2 pi) [rad].
+        starts_on: whether the cell is on at angle 0.
+    """
+
+    angles: Array
+    starts_on: bool
+
+    def on(self, angle: Array) -> NDArray[np.bool_]:
+        """Whether the cell is on at angles in [0, 2 pi)."""
+        passed = np.searchsorted(self.angles, angle, side="right")
+        return (passed % 2 == 1) ^ self.starts_on
+
+    @property
+    def turn_on_angles(self) -> Array:
+        """Angles at which the cell turns on [rad]."""
+        return self.angles[1::2] if self.starts_on else self.angles[0::2]
+
+    @property
+    def turn_off_angles(self) -> Array:
+        """Angles at which the cell turns off [rad]."""
+        return self.angles[0::2] if self.starts_on else self.angles[1::2]
+
+
+def carrier(angle: Array, pulse_number: int, offset: float) -> Array:
+    """Triangular carrier in [-1, 1] with its valley at angle `offset`/pulse_number [-]."""
+    place = np.mod((pulse_number * angle - offset) / FULL_TURN, 1.0)
+    return 4.0 * np.minimum(place, 1.0 - place) - 1.0
+
+
+def held(reference: Reference, pulse_number: int, offset: float, sampling: str) -> Reference:
+    """The reference as a regular sampler holds it; itself for natural sampling.
+
+    Raises:
+        ValueError: for an unknown sampling.
+    """
+    if sampling not in SAMPLINGS:
+        raise ValueError(f"sampling {sampling!r}: expected one of {', '.join(SAMPLINGS)}")
+    if sampling == NATURAL:
+        return reference
+    steps = 1.0 if sampling == SYMMETRICAL else 2.0
+
+    def sampled(angle: Array) -> Array:
+        # symmetrical: taken at each carrier peak and held to the next; asymmetrical: at peak and valley
+        shift = 0.5 if sampling == SYMMETRICAL else 0.0
+        place = (pulse_number * angle - offset) / FULL_TURN - shift
+        instant = (np.floor(place * steps + 1e-9) / steps + shift) * FULL_TURN + offset
+        return reference(np.mod(instant / pulse_number, FULL_TURN))
+
+    return sampled
+
+
+def pulse_width_cell(
+    reference: Reference,
+    pulse_number: int,
+    *,
+    offset: float = 0.0,
+    sampling: str = NATURAL,
+    inverted: bool = False,
+) -> Cell:
+    """Cell that is on while its reference exceeds the carrier.
+
+    Args:
+        reference: angle [rad] -> reference in [-1, 1] [-].
+        pulse_number: carrier periods in a line period, a whole number [-].
+        offset: carrier angle of the valley at line angle 0 [rad].
+        sampling: one of SAMPLINGS.
+        inverted: compare with the inverted carrier.
+
+    Returns:
+        The cell with its exact switching angles.
+    """
+    shown = held(reference, pulse_number, offset, sampling)
+    sign = -1.0 if inverted else 1.0
+
+    def excess(angle: Array) -> Array:
+        return shown(np.mod(angle, FULL_TURN)) - sign * carrier(angle, pulse_number, offset)
+
+    count = 2 * pulse_number * PROBES
+    bounds = np.mod((offset / pulse_number) + FULL_TURN * np.arange(count) / count, FULL_TURN)
+    bounds = np.unique(np.concatenate([bounds, jumps_of(reference)]))
+    bounds = np.append(bounds, bounds[0] + FULL_TURN)
+    inside = 1e-9 / pulse_number
+    left, right = bounds[:-1] + inside, bounds[1:] - inside
+    start, end = excess(left) > 0.0, excess(right) > 0.0
+    crossing = start != end
+    low, high, above = left[crossing], right[crossing], start[crossing]
+    for _ in range(BISECTIONS):
+        middle = 0.5 * (low + high)
+        same = (excess(middle) > 0.0) == above
+        low, high = np.where(same, middle, low), np.where(same, high, middle)
+    jumps = bounds[1:][end != np.roll(start, -1)]
+    angles = np.sort(np.mod(np.concatenate([0.5 * (low + high), jumps]), FULL_TURN))
+    before = (angles[0] if len(angles) else 0.0) - inside
+    return Cell(angles, bool(excess(np.array([before]))[0] > 0.0))
+
+
+def jumps_of(reference: Reference) -> Array:
+    """Angles at which a reference jumps (clamped schemes, a change of polarity) [rad]."""
+    bounds = FULL_TURN * np.arange(JUMP_GRID + 1) / JUMP_GRID
+    low, high = bounds[:-1], bounds[1:]
+    jumping = np.abs(reference(np.mod(high - 1e-12, FULL_TURN)) - reference(low)) > JUMP
+    low, high = low[jumping], high[jumping]
+    for _ in range(BISECTIONS):
+        middle = 0.5 * (low + high)
+        nearer = np.abs(reference(middle) - reference(low)) > 0.5 * JUMP
+        low, high = np.where(nearer, low, middle), np.where(nearer, middle, high)
+    return np.concatenate([0.5 * (low + high), [0.0, np.pi]])
+
+
+def line_switched_cell(turn_on: float, turn_off: float) -> Cell:
+    """Cell that turns on and off once a line period, at the given angles [rad]."""
+    angles = np.sort(np.mod([turn_on, turn_off], FULL_TURN))
+    return Cell(angles, bool(np.mod(turn_off, FULL_TURN) < np.mod(turn_on, FULL_TURN)))

@@ -1,0 +1,250 @@
+"""One operating point's waveforms over a whole line period, exact: switching angle by switching angle.
+
+The tables of a search take the line quantities as standing still within a switching period. Here nothing
+does: legs switch at their true angles for an integer pulse number, the filter voltage is a staircase, and
+everything follows from it in closed form or by Gauss quadrature between two switchings. It is the reference
+for any pulse number, and the only right way at low ones.
+
+Circuit: inductance L between bridge and a sinusoidal voltage (grid, or a filter capacitor) that takes up the
+bridge's fundamental; for three phases an isolated star point. Smooth dc source.
+"""
+
+from __future__ import annotations
+
+from dataclasses import dataclass
+from functools import cached_property
+
+import numpy as np
+from numpy.typing import NDArray
+
+from models.waveforms.bridges import ALL_BRIDGES, QUASI_SQUARE, Bridge, Modulation
+from models.waveforms.legs import FULL_TURN, NATURAL, Cell, line_switched_cell, pulse_width_cell
+
+Array = NDArray[np.float64]
+Complex = NDArray[np.complex128]
+NODES, WEIGHTS = np.polynomial.legendre.leggauss(4)
+PHASE_SHIFTS = {1: np.zeros(1), 3: 2.0 * np.pi / 3.0 * np.arange(3)}
+
+
+@dataclass(frozen=True, kw_only=True)
+class LinePeriod:
+    """Waveforms of one operating point.
+
+    Attributes:
+        bridge, modulation: names out of `bridges.ALL_BRIDGES`.
+        modulation_index: M; without effect on line-switched schemes [-].
+        displacement: angle by which the fundamental current lags the bridge's fundamental voltage [rad].
+        dc_voltage: [V].
+        inductance: per phase between bridge and sinusoidal voltage [H].
+        pulse_number: carrier periods in a line period, whole [-].
+        line_frequency: [Hz].
+        current: rms of the fundamental phase current [A].
+        sampling: "natural", "symmetrical regular" or "asymmetrical regular".
+        carrier_offset: carrier angle of the valley at the line voltage's zero [rad].
+        conduction_angle: of a quasi-square wave [rad].
+
+    Raises:
+        ValueError: for unknown names or values that are not positive.
+    """
+
+    bridge: str
+    modulation: str
+    modulation_index: float
+    displacement: float
+    dc_voltage: float
+    inductance: float
+    pulse_number: int
+    line_frequency: float
+    current: float
+    sampling: str = NATURAL
+    carrier_offset: float = 0.0
+    conduction_angle: float = np.pi
+
+    def __post_init__(self) -> None:
+        if self.bridge not in ALL_BRIDGES:
+            raise ValueError(f"bridge {self.bridge!r}: expected one of {', '.join(ALL_BRIDGES)}")
+        limit = self.scheme.linear_limit
+        if not 0.0 <= self.modulation_index <= limit + 1e-9:
+            raise ValueError(
+                f"modulation index {self.modulation_index}: expected 0 to {limit:.4f} for {self.modulation}"
+            )
+        for name in ("dc_voltage", "inductance", "pulse_number", "line_frequency", "current"):
+            if not getattr(self, name) > 0.0:
+                raise ValueError(f"{name} {getattr(self, name)}: expected a number above 0")
+
+    @property
+    def circuit(self) -> Bridge:
+        """The bridge's registry entry."""
+        return ALL_BRIDGES[self.bridge]
+
+    @property
+    def scheme(self) -> Modulation:
+        """The scheme's registry entry."""
+        return self.circuit.scheme(self.modulation)
+
+    @cached_property
+    def cells(self) -> tuple[tuple[Cell, ...], ...]:
+        """Cells of every leg: one of a two-level leg, upper and lower of a three-level leg."""
+        return tuple(self._leg(leg) for leg in range(len(self.circuit.voltage_weights)))
+
+    def _leg(self, leg: int) -> tuple[Cell, ...]:
+        if not self.scheme.switching_legs[leg]:
+            return (self._line_switched(leg),)
+        timing = {"offset": self.carrier_offset, "sampling": self.sampling}
+        inverted = self.scheme.carrier_sign[leg] < 0
+        follows = (self.displacement,) if self.scheme.follows_current else ()
+
+        def reference(angle: Array) -> Array:
+            index = np.full(np.shape(angle), self.modulation_index)
+            return self.scheme.references(np.asarray(angle), index, *follows)[..., leg]
+
+        if self.circuit.levels == 2:
+            return (pulse_width_cell(reference, self.pulse_number, inverted=inverted, **timing),)  # type: ignore[arg-type]
+        return tuple(
+            pulse_width_cell(part, self.pulse_number, inverted=inverted, **timing)  # type: ignore[arg-type]
+            for part in (
+                lambda angle: 2.0 * np.maximum(reference(angle), 0.0) - 1.0,
+                lambda angle: 2.0 * np.minimum(reference(angle), 0.0) + 1.0,
+            )
+        )
+
+    def _line_switched(self, leg: int) -> Cell:
+        shift = (0.0, 2.0 * np.pi / 3.0, 4.0 * np.pi / 3.0)[leg] if self.circuit.phases == 3 else leg * np.pi
+        # the legs of a quasi-square wave are displaced so that their difference lasts the conduction angle
+        lead = 0.5 * (np.pi - self.conduction_angle) if self.modulation == QUASI_SQUARE else 0.0
+        turn_on = shift + (lead if leg == 0 else -lead)
+        return line_switched_cell(turn_on, turn_on + np.pi)
+
+    @cached_property
+    def bounds(self) -> Array:
+        """Angles between which no leg switches, from 0 to 2 pi [rad]."""
+        angles = np.concatenate([cell.angles for leg in self.cells for cell in leg])
+        return np.unique(np.concatenate([[0.0], angles, [FULL_TURN]]))
+
+    @cached_property
+    def middles(self) -> Array:
+        """Middles of the intervals [rad]."""
+        return 0.5 * (self.bounds[1:] + self.bounds[:-1])
+
+    @cached_property
+    def leg_levels(self) -> Array:
+        """Level of every leg in every interval, 0 to 1 of V_dc (leg, interval) [-]."""
+        return np.array([np.mean([cell.on(self.middles) for cell in leg], axis=0) for leg in self.cells])
+
+    @cached_property
+    def output_levels(self) -> Array:
+        """Voltage across inductance and load of every phase in every interval (phase, interval) [V]."""
+        weights = np.array(self.circuit.voltage_weights)
+        if self.circuit.phases == 3:
+            return self.dc_voltage * (self.leg_levels - self.leg_levels.mean(0))
+        midpoint = 0.5 if len(weights) == 1 else 0.0  # a single leg works against the dc midpoint
+        return self.dc_voltage * (weights @ self.leg_levels - midpoint)[None]
+
+    @cached_property
+    def common_mode_levels(self) -> Array:
+        """Mean of the leg voltages against the dc midpoint in every interval [V]."""
+        return self.dc_voltage * (self.leg_levels.mean(0) - 0.5)
+
+    @cached_property
+    def widths(self) -> Array:
+        """Share of the line period of every interval [-]."""
+        return np.diff(self.bounds) / FULL_TURN
+
+    def harmonics(self, levels: Array, orders: NDArray[np.int64]) -> Complex:
+        """Complex peak amplitudes of a staircase over the intervals, v = sum Re(c_n exp(j n theta)) [its
+        unit].
+
+        Args:
+            levels: value in every interval.
+            orders: harmonic orders, at least 1 [-].
+        """
+        turns = np.exp(-1j * np.outer(orders, self.bounds))
+        return np.diff(turns, axis=1) @ levels / (-1j * np.asarray(orders)) / np.pi
+
+    @cached_property
+    def fundamental(self) -> Complex:
+        """Fundamental of every phase's output voltage, complex peak; sin(theta) is -j [V]."""
+        return np.array([self.harmonics(levels, np.array([1]))[0] for levels in self.output_levels])
+
+    @cached_property
+    def fundamental_peak(self) -> float:
+        """Peak of the output voltage's fundamental, phase one [V]."""
+        return float(np.abs(self.fundamental[0]))
+
+    @cached_property
+    def voltage_thd(self) -> float:
+        """Distortion of phase one's output voltage, all harmonics, over its fundamental [-]."""
+        levels = self.output_levels[0]
+        square = float(self.widths @ levels**2 - (self.widths @ levels) ** 2)
+        return float(np.sqrt(max(2.0 * square / self.fundamental_peak**2 - 1.0, 0.0)))
+
+    @cached_property
+    def _flux_at_bounds(self) -> Array:
+        """Integral of output voltage less mean and fundamental, from angle 0 (phase, bound) [V s]."""
+        means = (self.output_levels @ self.widths)[:, None]
+        raw = np.cumsum((self.output_levels - means) * np.diff(self.bounds), axis=1)
+        raw = np.concatenate([np.zeros((len(raw), 1)), raw], axis=1)
+        smooth = (self.fundamental[:, None] * (np.exp(1j * self.bounds) - 1.0) / 1j).real
+        return (raw - smooth) / (FULL_TURN * self.line_frequency)
+
+    @cached_property
+    def nodes(self) -> tuple[Array, Array, NDArray[np.int64]]:
+        """Quadrature angles [rad], their weights over the line period (sum 1), and the interval of each."""
+        half = 0.5 * np.diff(self.bounds)
+        angle = (self.middles[:, None] + half[:, None] * NODES).ravel()
+        weight = (half[:, None] * WEIGHTS).ravel() / FULL_TURN
+        return angle, weight, np.repeat(np.arange(len(half)), len(NODES))
+
+    @cached_property
+    def _flux_at_nodes(self) -> Array:
+        angle, _, interval = self.nodes
+        means = (self.output_levels @ self.widths)[:, None]
+        start = self.bounds[interval]
+        straight = (self.output_levels[:, interval] - means) * (angle - start)
+        smooth = (self.fundamental[:, None] * (np.exp(1j * angle) - np.exp(1j * start)) / 1j).real
+        return self._flux_at_bounds[:, interval] + (straight - smooth) / (FULL_TURN * self.line_frequency)
+
+    @cached_property
+    def _mean_flux(self) -> Array:
+        return (self._flux_at_nodes @ self.nodes[1])[:, None]
+
+    @cached_property
+    def ripple(self) -> Array:
+        """Ripple current at the quadrature nodes (phase, node) [A]."""
+        return (self._flux_at_nodes - self._mean_flux) / self.inductance
+
+    @cached_property
+    def ripple_at_bounds(self) -> Array:
+        """Ripple current at the switching angles and at 0 and 2 pi (phase, bound) [A]."""
+        return (self._flux_at_bounds - self._mean_flux) / self.inductance
+
+    @cached_property
+    def ripple_rms(self) -> float:
+        """Rms ripple current of phase one over the line period [A]."""
+        return float(np.sqrt(self.ripple[0] ** 2 @ self.nodes[1]))
+
+    def line_current(self, angle: Array) -> Array:
+        """Fundamental phase currents (phase, angle) [A]."""
+        lag = np.angle(1j * self.fundamental)[:, None]  # angle of the fundamental against a sine
+        return np.sqrt(2.0) * self.current * np.sin(angle + lag - self.displacement)
+
+    @cached_property
+    def phase_current(self) -> Array:
+        """Phase currents, ripple included, at the quadrature nodes (phase, node) [A]."""
+        return self.line_current(self.nodes[0]) + self.ripple
+
+    @cached_property
+    def local_peak_to_peak(self) -> tuple[Array, Array]:
+        """Peak-to-peak ripple of phase one in every carrier period, and the period's middle angle ([rad],
+        [A]).
+        """
+        number = np.floor((self.pulse_number * self.bounds - self.carrier_offset) / FULL_TURN + 0.5 + 1e-9)
+        periods = np.unique(number)
+        at = self.ripple_at_bounds[0]
+        swing = np.array([np.ptp(at[number == period]) for period in periods])
+        return (periods * FULL_TURN + self.carrier_offset) / self.pulse_number, swing
+
+    @property
+    def ripple_peak_to_peak(self) -> float:
+        """Greatest peak-to-peak ripple of phase one within a carrier period [A]."""
+        return float(self.local_peak_to_peak[1].max())

@@ -1,7 +1,7 @@
 """Studies, search, fronts and charts around the physics in `models`.
 
-`Study.read(path)` reads a study file, `search(study)` searches it, `front(result)` makes its tables. Imports happen on first
-use, so that the command line answers at once.
+`Study.read(path)` reads a study file, `search(study)` searches it, `front(result)` makes its tables. Imports happen on
+first use, so that the command line answers at once.
 """
 
 from __future__ import annotations
@@ -10,17 +10,17 @@ from importlib import import_module
 from typing import TYPE_CHECKING, Any
 
 if TYPE_CHECKING:
-    from optimizer.front import Front, front
-    from optimizer.search import SearchResult, search
+    from optimizer.fronts import Front, front
+    from optimizer.populations import SearchResult, search
     from optimizer.study import Study
 
 __all__ = ["Front", "SearchResult", "Study", "front", "search"]
 
 _HOMES = {
-    "Front": "optimizer.front",
-    "front": "optimizer.front",
-    "SearchResult": "optimizer.search",
-    "search": "optimizer.search",
+    "Front": "optimizer.fronts",
+    "front": "optimizer.fronts",
+    "SearchResult": "optimizer.populations",
+    "search": "optimizer.populations",
     "Study": "optimizer.study",
 }
 

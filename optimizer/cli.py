@@ -100,7 +100,7 @@ def evaluate(
     from optimizer.designs_file import read_designs
     from optimizer.evaluate import evaluated_table, written_table
     from optimizer.run_folder import write_whole
-    from optimizer.search import prepared_inverter
+    from optimizer.populations import prepared_inverter
     from optimizer.study import Study
 
     asked = Study.read(study)

@@ -10,7 +10,7 @@ import pandas as pd
 from models.evaluation import Evaluation
 from models.inverter import Inverter
 from optimizer.designs_file import LABEL, HandDesigns
-from optimizer.front import design_table, margin_table
+from optimizer.fronts import design_table, margin_table
 from optimizer.objectives import margins_of, requirements_of
 from optimizer.study import Study
 

@@ -58,11 +58,9 @@ class Archive:
 class ClassProblem(Problem):
     """One device class of a study as a pymoo problem over the unit cube.
 
-    The constraint violation is the sum of the negative margins, each limited so that one absurd value does
-    not hide the rest.
+    The constraint violation is the sum of what each negative margin misses, beyond one its logarithm: no absurd value
+    hides the rest, and less is always better.
     """
-
-    VIOLATION_CAP = 5.0
 
     def __init__(self, space: SearchSpace) -> None:
         self.space = space
@@ -75,6 +73,7 @@ class ClassProblem(Problem):
         result = self.space.inverter.evaluate(self.space.designs(points))
         objectives = np.stack([objective.read(result) for objective in self.chosen], axis=-1)
         margins = margins_of(requirements_of(self.space.study.at_most, result))
-        violation = np.minimum(np.maximum(-margins, 0.0), self.VIOLATION_CAP).sum(-1)
+        missing = np.maximum(-margins, 0.0)
+        violation = np.where(missing > 1.0, 1.0 + np.log(np.maximum(missing, 1.0)), missing).sum(-1)
         self.archive.add(points, objectives, margins, violation)
         return objectives, violation

@@ -7,7 +7,7 @@ from types import TracebackType
 from rich.console import Console
 from rich.progress import BarColumn, Progress, TaskID, TextColumn, TimeElapsedColumn, TimeRemainingColumn
 
-from optimizer.search import Progress as ClassProgress
+from optimizer.populations import Progress as ClassProgress
 from optimizer.study import Study
 
 

@@ -16,10 +16,10 @@ import pandas as pd
 from numpy.typing import NDArray
 
 from optimizer.errors import NothingFeasible
-from optimizer.front import Front, choices, front
+from optimizer.fronts import Front, choices, front
 from optimizer.objectives import OBJECTIVES
 from optimizer.run_folder import RUN_FILE, Content, write_run
-from optimizer.search import ClassResult, Progress, SearchResult, prepared_inverter, search
+from optimizer.populations import ClassResult, Progress, SearchResult, prepared_inverter, search
 from optimizer.space import SearchSpace
 from optimizer.study import Study
 
@@ -54,7 +54,7 @@ def run_search(
     Args:
         study: the study.
         folder: run folder to write.
-        seed, workers, report: as in `optimizer.search.search`.
+        seed, workers, report: as in `optimizer.populations.search`.
         stage: told what is being done.
 
     Raises:

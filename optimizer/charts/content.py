@@ -11,7 +11,7 @@ from optimizer.charts.envelope_data import Envelope, envelope
 from optimizer.charts.quantities import quantity_of
 from optimizer.charts.selections import DESIGNS
 from optimizer.charts.thinning import SHOWN_PER_CLASS
-from optimizer.front import Front
+from optimizer.fronts import Front
 from optimizer.study import Study
 
 ENVELOPED = ("weighted loss", "volume")

@@ -12,7 +12,7 @@ from numpy.typing import ArrayLike, NDArray
 
 from optimizer.charts.quantities import LOSS, VOLUME, Quantity, axis_quantities, component_columns
 from optimizer.charts.thinning import SHOWN_PER_CLASS, balanced_row, shown_rows
-from optimizer.front import Front
+from optimizer.fronts import Front
 from optimizer.objectives import OBJECTIVES, distortion_column
 from optimizer.study import Study
 

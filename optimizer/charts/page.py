@@ -17,7 +17,7 @@ from optimizer.charts.quantities import quantity_of
 from optimizer.charts.task import task_words
 from optimizer.charts.views import content, linked_views
 from optimizer.charts.words import HELP, cautions, drawn, missing, origin
-from optimizer.front import Front
+from optimizer.fronts import Front
 from optimizer.study import Study
 
 

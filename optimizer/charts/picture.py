@@ -11,7 +11,7 @@ from optimizer.charts.look import configuration, heading
 from optimizer.charts.quantities import Quantity
 from optimizer.charts.scatter import class_encodings, class_legend
 from optimizer.charts.selections import DESIGNS
-from optimizer.front import Front
+from optimizer.fronts import Front
 from optimizer.study import Study
 
 PICTURE_FONT = "Liberation Sans, Arial, Helvetica, sans-serif"

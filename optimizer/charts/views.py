@@ -19,7 +19,7 @@ from optimizer.charts.quantities import LOSS, VOLUME, component_words
 from optimizer.charts.scatter import scatter
 from optimizer.charts.selections import DESIGNS, Selections, axis_values, selections
 from optimizer.charts.spectrum import spectrum
-from optimizer.front import Front
+from optimizer.fronts import Front
 from optimizer.study import Study
 
 APART = alt.ScaleResolveMap(

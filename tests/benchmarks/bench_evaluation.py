@@ -19,7 +19,7 @@ from pathlib import Path
 import numpy as np
 
 from models.designs import Designs
-from optimizer.search import prepared_inverter, search_class
+from optimizer.populations import prepared_inverter, search_class
 from optimizer.space import SearchSpace
 from optimizer.study import Study
 

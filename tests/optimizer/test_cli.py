@@ -113,7 +113,7 @@ def broken(tmp_path, old, new):
         ('"5 kVA"', '"5 kg"', "application.apparent_power: given \"5 kg\""),
         ('"5 kVA"', '"-5 kVA"', "application.apparent_power: given \"-5 kVA\""),
         ('min = "360 V"', 'min = "300 V"', "application.dc_voltage.min"),
-        ('"silicon IGBT"', '"silicon IGTB"', "the nearest"),
+        ('"silicon IGBT"', '"silicon IGTB"', '(nearest: "silicon IGBT")'),
         ('"IEEE 1547-2018"', '"IEEE 1547-2019"', "IEEE 1547-2018"),
         ("name = ", "name : ", "bad.toml"),
     ],

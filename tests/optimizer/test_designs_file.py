@@ -7,8 +7,8 @@ import pytest
 from optimizer.designs_file import read_designs
 from optimizer.errors import InputError
 from optimizer.evaluate import evaluated_table, written_table
-from optimizer.front import front
-from optimizer.search import prepared_inverter
+from optimizer.fronts import front
+from optimizer.populations import prepared_inverter
 
 
 @pytest.fixture(scope="module")

@@ -5,7 +5,7 @@ import pytest
 from hypothesis import given
 from hypothesis import strategies as st
 
-from optimizer.search import prepared_inverter
+from optimizer.populations import prepared_inverter
 from optimizer.space import CATEGORY, LINEAR, LOGARITHMIC, WHOLE, SearchSpace, Variable
 
 

@@ -10,7 +10,7 @@ import pytest
 from page_reading import carried
 
 from optimizer.charts import dashboard_html
-from optimizer.front import Front, front
+from optimizer.fronts import Front, front
 from optimizer.run import evaluated_table
 from optimizer.study import Study
 

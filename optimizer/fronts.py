@@ -17,7 +17,7 @@ from models.designs import Designs, InductorDesigns
 from models.evaluation import Constraint, Evaluation
 from models.inverter import Inverter
 from optimizer.objectives import OBJECTIVES, distortion_column, margins_of, requirements_of
-from optimizer.search import ClassResult, SearchResult, prepared_inverter
+from optimizer.populations import ClassResult, SearchResult, prepared_inverter
 from optimizer.space import SearchSpace
 
 Array = NDArray[np.float64]

@@ -5,7 +5,7 @@ import moocore
 import numpy as np
 import pytest
 
-from optimizer.front import front
+from optimizer.fronts import front
 from optimizer.objectives import OBJECTIVES
 
 

@@ -6,7 +6,7 @@ import pytest
 
 from optimizer.objectives import OBJECTIVES, margins_of, requirements_of
 from optimizer.problem import ClassProblem
-from optimizer.search import normalised_hypervolume, prepared_inverter, search, search_class
+from optimizer.populations import normalised_hypervolume, prepared_inverter, search, search_class
 from optimizer.space import SearchSpace
 
 

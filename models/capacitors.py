@@ -37,7 +37,7 @@ def ac_filter_capacitor(
     ripple_mean_square: Array,
     line_frequency_hz: float,
     ripple_frequency: Array,
-    worst: int,
+    greatest_current: Array,
 ) -> AcFilterCapacitor:
     """Evaluate the filter capacitors.
 
@@ -48,18 +48,17 @@ def ac_filter_capacitor(
         line_current: line-frequency rms current (n, p) [A].
         ripple_mean_square: (n, p) [A2].
         line_frequency_hz: [Hz]; ripple_frequency: (n,) [Hz].
-        worst: operating point at which the current limit is checked [-].
+        greatest_current: rms current at its worst operating point (n,) [A].
 
     The dielectric loss is I^2 tan(delta)/(omega C) for each of the two current parts.
     """
     c = capacitance[:, None]
     line = line_current**2 / (2.0 * np.pi * line_frequency_hz * c)
     ripple = ripple_mean_square / (2.0 * np.pi * ripple_frequency[:, None] * c)
-    total = np.sqrt(line_current[:, worst] ** 2 + ripple_mean_square[:, worst])
     volume = phases * capacitance * kind.volume_m3_per_f
     return AcFilterCapacitor(
         loss=phases * kind.loss_tangent * (line + ripple),
-        current_share=total / (capacitance * kind.current_a_per_f),
+        current_share=greatest_current / (capacitance * kind.current_a_per_f),
         volume=volume,
         mass=volume * kind.density_kg_m3,
         price=phases * (capacitance * kind.price_per_f + kind.price_fixed),

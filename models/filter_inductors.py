@@ -12,13 +12,14 @@ from models.designs import Designs
 from models.magnetics.build import build
 from models.magnetics.core_bands import CoreBands
 from models.magnetics.core_loss import steinmetz_loss, switched_loss
-from models.magnetics.inductor import Inductor, InductorDuty, inductor
+from models.magnetics.inductor import Inductor, InductorDuty, inductor, where_present
 from models.output_filter import LinePhasors
 from models.waveforms.spectrum import CARRIER_GROUPS
 from models.waveforms.state import WaveformState
 from models.waveforms.tables import WaveformTables
 
 Array = NDArray[np.float64]
+Ints = NDArray[np.int64]
 GROUPS = np.arange(1.0, CARRIER_GROUPS + 1)
 
 
@@ -77,14 +78,17 @@ def bridge_side(
     groups = tables.read(tables.group_ripple, scheme, row, weight) * (unit * unit)[..., None]
     frequency = designs.switching_frequency_hz
     material = designs.inverter_inductor.material
-    band = bands.band(material, frequency * tables.main_carrier[designs.modulation])
-    shape = tables.read(tables.core_loss_shape, scheme, row, weight)
-    shape = np.take_along_axis(shape, bands.pair[material, band][:, None, None], axis=-1)[..., 0]
+    shapes = tables.read(tables.core_loss_shape, scheme, row, weight)
     slope = dc_voltage[columns] / (built.turns * built.area)[:, None]
-    alpha, beta = bands.alpha[material, band][:, None], bands.beta[material, band][:, None]
-    density = switched_loss(
-        bands.factor[material, band][:, None], alpha, beta, shape, slope, frequency[:, None]
-    )
+
+    def switched(band: Ints) -> Array:
+        shape = np.take_along_axis(shapes, bands.pair[material, band][:, None, None], axis=-1)[..., 0]
+        factor, alpha, beta = (
+            table[material, band][:, None] for table in (bands.factor, bands.alpha, bands.beta)
+        )
+        return switched_loss(factor, alpha, beta, shape, slope, frequency[:, None])
+
+    density = bands.blended(material, frequency * tables.main_carrier[designs.modulation], switched)
     return inductor(
         catalog,
         built,
@@ -121,13 +125,17 @@ def grid_side(
     built = build(catalog, designs.grid_inductor)
     frequency = designs.switching_frequency_hz * tables.main_carrier[designs.modulation]
     material = designs.grid_inductor.material
-    band = bands.band(material, frequency)
-    peak_flux = designs.grid_inductance_h * np.sqrt(2.0) * ripple_rms / (built.turns * built.area)
-    constants = (bands.k[material, band], bands.alpha[material, band], bands.beta[material, band])
-    density = steinmetz_loss(*constants, frequency, np.maximum(peak_flux, 1e-9))
+    turns_area = built.turns * built.area
+    peak_flux = np.maximum(designs.grid_inductance_h * np.sqrt(2.0) * ripple_rms / turns_area, 1e-9)
+
+    def sinusoidal(band: Ints) -> Array:
+        k, alpha, beta = (table[material, band] for table in (bands.k, bands.alpha, bands.beta))
+        return steinmetz_loss(k, alpha, beta, frequency, peak_flux)
+
+    density = bands.blended(material, frequency, sinusoidal)
     points = phasors.output_current.shape[-1]
     current = np.broadcast_to(np.abs(phasors.output_current), (len(frequency), points))
-    return inductor(
+    part = inductor(
         catalog,
         built,
         InductorDuty(
@@ -143,3 +151,4 @@ def grid_side(
         ),
         around.labour,
     )
+    return where_present(part, designs.grid_inductance_h > 0.0, around.ambient_c)

@@ -24,7 +24,7 @@ from models.distortion import Distortion
 from models.evaluation import Evaluation, joined
 from models.filter_inductors import RippleView, Surroundings, bridge_side, grid_side
 from models.magnetics.core_bands import CoreBands, core_bands
-from models.magnetics.inductor import Inductor, absent_inductor
+from models.magnetics.inductor import Inductor
 from models.operating_points import OperatingPoints, operating_points
 from models.output_distortion import current_distortion, voltage_distortion
 from models.output_filter import Filter, LinePhasors, line_phasors, resonance_hz
@@ -214,8 +214,6 @@ class Inverter:
         peak = self._peak_current(phasors, state)
         common = (self.catalog, designs, self.bands, self.tables)
         first = bridge_side(*common, state, points.dc_voltage, at_losses, peak, view, around)
-        if np.all(designs.grid_inductance_h <= 0.0):
-            return first, absent_inductor(len(designs), count)
         ripple = np.sqrt(np.maximum(distortion.total**2 - distortion.low**2, 0.0)) * spec.rated_current_a
         return first, grid_side(*common, at_losses, ripple, around)
 
@@ -234,15 +232,17 @@ class Inverter:
         spec, points, rules = self.specification, self.points, self.specification.rules
         frequency = designs.switching_frequency_hz
         worst = points.thermal.start
+        line = np.abs(phasors.capacitor_current)
+        greatest = np.sqrt(line.max(-1) ** 2 + state.ripple_mean_square.max(-1))
         film = ac_filter_capacitor(
             self.ac_capacitor,
             spec.phases,
             designs.filter_capacitance_f,
-            np.abs(phasors.capacitor_current[:, points.losses]),
+            line[:, points.losses],
             state.ripple_mean_square,
             spec.line_frequency_hz,
             frequency * self.tables.main_carrier[designs.modulation],
-            worst,
+            greatest,
         )
         slow, fast = self._dc_currents(state)
         ripple = rules.dc_switching_ripple_share * spec.dc_voltage_v

@@ -65,17 +65,13 @@ def requirements(
             found.designs.inverter_inductor.material,
             catalog,
         ),
-        *(
-            _inductor(
-                "grid-side inductor",
-                spec.rules,
-                points,
-                found.inductors[1],
-                found.designs.grid_inductor.material,
-                catalog,
-            )
-            if np.any(found.designs.grid_inductance_h > 0.0)
-            else ()
+        *_inductor(
+            "grid-side inductor",
+            spec.rules,
+            points,
+            found.inductors[1],
+            found.designs.grid_inductor.material,
+            catalog,
         ),
         *_filter(spec, found),
         *_quality(spec, catalog, found),
@@ -88,9 +84,11 @@ def _bridge(
     limit = tables.linear_limit[found.state.scheme[:, 0]] * (1.0 - spec.rules.modulation_reserve)
     device = found.device
     use = spec.dc_voltage_max_v / device.voltage_rating_v[:, 0]
+    pace = found.designs.switching_frequency_hz / device.greatest_switching_frequency_hz[:, 0]
     return (
         at_most("modulation index", "", found.state.modulation_index[:, points.modulation].max(-1), limit),
         at_most("dc voltage over device rating", "", use, device.voltage_use_limit[:, 0]),
+        at_most("switching frequency over the device's greatest", "", pace, 1.0),
     )
 
 

@@ -99,8 +99,8 @@ def evaluate(
     """Evaluate designs given by hand: every figure, every margin."""
     from optimizer.designs_file import read_designs
     from optimizer.evaluate import evaluated_table, written_table
-    from optimizer.run_folder import write_whole
     from optimizer.populations import prepared_inverter
+    from optimizer.run_folder import write_whole
     from optimizer.study import Study
 
     asked = Study.read(study)

@@ -107,10 +107,18 @@ def _range(limits: list[Array]) -> tuple[float, float]:
     return float(together.min()), float(together.max())
 
 
+SHORT_NAMES = {
+    "silicon IGBT": "IGBT",
+    "superjunction MOSFET": "SJ",
+    "low-voltage MOSFET": "LV",
+    "SiC MOSFET": "SIC",
+    "GaN HEMT": "GAN",
+}
+"""What the designs of a class are called by; other classes by their own name."""
+
+
 def _initials(device_class: str) -> str:
-    return {"silicon IGBT": "IGBT", "superjunction MOSFET": "SJ", "SiC MOSFET": "SIC", "GaN HEMT": "GAN"}.get(
-        device_class, "".join(word[0] for word in device_class.split()).upper()
-    ) + "-"
+    return SHORT_NAMES.get(device_class, device_class.replace(" ", "")) + "-"
 
 
 def margin_table(constraints: tuple[Constraint, ...]) -> pd.DataFrame:

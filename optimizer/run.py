@@ -18,8 +18,8 @@ from numpy.typing import NDArray
 from optimizer.errors import NothingFeasible
 from optimizer.fronts import Front, choices, front
 from optimizer.objectives import OBJECTIVES
-from optimizer.run_folder import RUN_FILE, Content, write_run
 from optimizer.populations import ClassResult, Progress, SearchResult, prepared_inverter, search
+from optimizer.run_folder import RUN_FILE, Content, write_run
 from optimizer.space import SearchSpace
 from optimizer.study import Study
 

@@ -16,7 +16,7 @@ from models.waveforms.bridges import BRIDGES
 from optimizer.study_table import Choice, Key, Kind, Quantity, Reading, Several, SubTable, Text, Whole
 
 OBJECTIVES = ("weighted loss", "volume", "price", "mass", "distortion")
-DEVICE_CLASSES = ("silicon IGBT", "superjunction MOSFET", "SiC MOSFET", "GaN HEMT")
+DEFAULT_CLASSES = ("silicon IGBT", "superjunction MOSFET", "SiC MOSFET", "GaN HEMT")
 DC_LINKS = ("electrolytic", "film")
 COOLING = ("natural", "forced")
 LCL, LC = "LCL", "LC"
@@ -144,7 +144,7 @@ AT_MOST = tuple(
     for name, unit in zip(OBJECTIVES, ("", "m^3", "", "kg", ""), strict=True)
 )
 SEARCH = (
-    Key("device_classes", Several(Text()), DEVICE_CLASSES),
+    Key("device_classes", Several(Text()), DEFAULT_CLASSES),
     Key("core_materials", Several(Text()), ()),
     Key("conductors", Several(Text()), ()),
     Key("dc_links", Several(Choice(DC_LINKS)), DC_LINKS),

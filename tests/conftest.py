@@ -6,7 +6,7 @@ from pathlib import Path
 
 import pytest
 
-from optimizer.search import SearchResult, prepared_inverter, search
+from optimizer.populations import SearchResult, prepared_inverter, search
 from optimizer.study import Study
 
 STUDIES = Path(__file__).parents[1] / "studies"

@@ -21,7 +21,7 @@ class Rule:
     """One way to a quantity: `law` applied to the quantities named in `needs`."""
 
     target: str
-    needs: tuple[str, ...]
+    needs: tuple[str, ...]  # none: `law` states what holds where nothing is said
     law: Callable[..., Number]
     words: str  # the law in words, for the origin of the result
     last_resort: bool = False  # tried only when neither other rules nor a base part have the target
@@ -78,7 +78,14 @@ def _apply(rules: Sequence[Rule], known: dict[str, Quantity], used: set[str]) ->
             if rule.target not in known and all(need in known for need in rule.needs):
                 inputs = [known[need] for need in rule.needs]
                 value = rule.law(*(quantity.value for quantity in inputs))
-                sources = "; ".join(dict.fromkeys(quantity.origin for quantity in inputs))
-                known[rule.target] = Quantity(value, f"derived: {rule.words} ({sources})")
+                known[rule.target] = Quantity(value, _origin(rule, inputs))
                 used.update(rule.needs)
                 progress = True
+
+
+def _origin(rule: Rule, inputs: Sequence[Quantity]) -> str:
+    """Words for a derived quantity; a rule that needs nothing states a convention."""
+    if not inputs:
+        return f"convention: {rule.words}"
+    sources = "; ".join(dict.fromkeys(quantity.origin for quantity in inputs))
+    return f"derived: {rule.words} ({sources})"

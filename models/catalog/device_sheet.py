@@ -8,6 +8,7 @@ is based on a class.
 from __future__ import annotations
 
 from models.catalog.derivations import Rule
+from models.catalog.parts import Device
 
 
 def _at_hot(energy_25: float, coefficient: float, hot_c: float) -> float:
@@ -60,6 +61,27 @@ def _slope_rules(temperature: str) -> list[Rule]:
 
 _DIE = "sheet_die_area_m2"
 
+# Parts that live with a choke, a clamp or a snubber: the losses of these are counted with the switch.
+_CIRCUIT_RULES = [
+    Rule(
+        "turn_on_energy_j_per_av",
+        (
+            "bare_turn_on_energy_j_per_av",
+            "snubber_energy_j",
+            "sheet_rated_current_a",
+            "energy_reference_voltage_v",
+        ),
+        lambda e, snubber, i, v: e + snubber / (i * v),
+        "of the switch alone, and the snubber's energy over rated current and reference voltage",
+    ),
+    Rule(
+        "turn_off_energy_j_per_av",
+        ("bare_turn_off_energy_j_per_av", "clamp_loss_ratio"),
+        lambda e, ratio: e * (1.0 + ratio),
+        "of the switch alone, and the loss of clamp and choke as a share of it",
+    ),
+]
+
 _CLASS_RULES = [
     *_slope_rules("25"),
     *_slope_rules("hot"),
@@ -72,6 +94,19 @@ _CLASS_RULES = [
     *_energy_rules("turn_on"),
     *_energy_rules("turn_off"),
     *_energy_rules("recovery"),
+    Rule(
+        "turn_on_energy_j_per_av",
+        ("switching_energy_j_per_av", "turn_on_share"),
+        lambda e, share: e * share,
+        "share of the energy of turn-on and turn-off together",
+    ),
+    Rule(
+        "turn_off_energy_j_per_av",
+        ("switching_energy_j_per_av", "turn_on_share"),
+        lambda e, share: e * (1.0 - share),
+        "rest of the energy of turn-on and turn-off together",
+    ),
+    *_CIRCUIT_RULES,
     Rule(
         "turn_on_energy_j_per_av",
         ("overlap_energy_j_per_av",),
@@ -127,10 +162,30 @@ _CLASS_RULES = [
         "price per rated ampere times rated current density",
     ),
     Rule(
+        "packaged_price_per_area_per_m2",
+        ("price_on_resistance_ohm", "slope_area_25_ohm_m2"),
+        lambda price, r: price / r,
+        "price times on-resistance over R_on x A",
+    ),
+    Rule(
         "price_per_area_per_m2",
         ("packaged_price_per_area_per_m2", "package_price", "junction_case_reference_area_m2"),
         lambda price, package, area: price - package / area,
         "packaged price per die area less the package's share at the reference area",
+    ),
+    Rule(
+        "gate_unit_power_w",
+        (),
+        lambda: Device.gate_unit_power_w,
+        "gate drive takes charge per cycle only",
+        last_resort=True,
+    ),
+    Rule(
+        "greatest_switching_frequency_hz",
+        (),
+        lambda: Device.greatest_switching_frequency_hz,
+        "no limit of its own, losses and dead time decide",
+        last_resort=True,
     ),
 ]
 

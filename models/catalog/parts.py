@@ -7,6 +7,7 @@ parts, not a part one can order; replace them by a data sheet's before anything 
 
 from __future__ import annotations
 
+import math
 from collections.abc import Mapping
 from dataclasses import dataclass, field
 
@@ -16,6 +17,7 @@ from models.catalog.part_table import PartTable
 from models.cooling.fan import Fan
 
 __all__ = [
+    "DEVICE_CLASSES",
     "AcCapacitor",
     "Catalog",
     "Conductor",
@@ -31,12 +33,23 @@ __all__ = [
 ]
 
 
+DEVICE_CLASSES = (
+    "low-voltage MOSFET",
+    "silicon IGBT",
+    "superjunction MOSFET",
+    "SiC MOSFET",
+    "GaN HEMT",
+    "IGCT",
+    "GTO",
+)
+
+
 @dataclass(frozen=True)
 class Device:
     """A switch with its freewheeling path: a class of semiconductor, to be scaled by die area."""
 
     name: str
-    device_class: str  # "silicon IGBT", "superjunction MOSFET", "SiC MOSFET" or "GaN HEMT"
+    device_class: str  # one of DEVICE_CLASSES
     voltage_rating_v: float  # [V]
     voltage_use_limit: float  # greatest dc voltage over the rating, two-level leg [-]
     die_area_min_m2: float  # switch die [m2]
@@ -89,6 +102,8 @@ class Device:
     price_per_area_per_m2: float  # of switch die area, package apart [currency/m2]
     package_price: float  # [currency]
     switch_node_capacitance_f: float  # package tab to heatsink through the insulation [F]
+    gate_unit_power_w: float = 0.0  # of one package's gate unit, whatever the frequency [W]
+    greatest_switching_frequency_hz: float = math.inf  # least on and off times, snubber recovery [Hz]
     origin: Mapping[str, str] = field(default_factory=dict, compare=False, repr=False)
 
 

@@ -15,6 +15,7 @@ from models.catalog.core_sheet import CORE_MATERIAL_RULES
 from models.catalog.derivations import Number, Quantity, Rule
 from models.catalog.device_sheet import DEVICE_RULES, device_anchors
 from models.catalog.parts import (
+    DEVICE_CLASSES,
     AcCapacitor,
     Conductor,
     CoreMaterial,
@@ -125,6 +126,7 @@ _DEVICE_ZERO = frozenset(
         "output_charge_c_per_m2",
         "output_energy_j_per_m2",
         "output_charge_voltage_exponent",
+        "gate_unit_power_w",
     }
 )
 
@@ -135,8 +137,9 @@ SCHEMAS: tuple[Schema, ...] = (
         rules=DEVICE_RULES,
         zero_allowed=_DEVICE_ZERO,
         signed=frozenset({"gate_off_v"}),
-        at_most_one=frozenset({"voltage_use_limit"}),
-        choices={"device_class": ("silicon IGBT", "superjunction MOSFET", "SiC MOSFET", "GaN HEMT")},
+        at_most_one=frozenset({"voltage_use_limit", "turn_on_share"}),
+        unbounded=frozenset({"greatest_switching_frequency_hz"}),
+        choices={"device_class": DEVICE_CLASSES},
         checks=(
             below("die_area_min_m2", "die_area_max_m2"),
             *(warm_energy(name) for name in ("turn_on", "turn_off", "recovery")),

@@ -2,6 +2,7 @@
 
 from __future__ import annotations
 
+from collections.abc import Callable
 from dataclasses import dataclass
 
 import numpy as np
@@ -19,11 +20,14 @@ class CoreBands:
     """Steinmetz sets of all materials; rows are materials, columns bands.
 
     Attributes:
-        upper_hz: upper ends of the bands [Hz]; k, alpha, beta: Steinmetz; factor: k_i of the iGSE.
+        change_from, change_to: frequencies between which one band's law passes into the next's (m, bands - 1)
+            [Hz];
+        k, alpha, beta: Steinmetz; factor: k_i of the iGSE.
         pair: index of (alpha, beta) among `exponents`.
     """
 
-    upper_hz: Array
+    change_from: Array
+    change_to: Array
     k: Array
     alpha: Array
     beta: Array
@@ -31,9 +35,35 @@ class CoreBands:
     pair: Ints
     exponents: tuple[tuple[float, float], ...]
 
-    def band(self, material: Ints, frequency_hz: Array) -> Ints:
-        """Band that a frequency [Hz] falls into; beyond the last band the last one is extrapolated [-]."""
-        return np.sum(frequency_hz[:, None] > self.upper_hz[material][:, :-1], axis=-1)
+    def between(self, material: Ints, frequency_hz: Array) -> tuple[Ints, Ints, Array]:
+        """Bands that a frequency lies between, and the weight of the upper one (n,) [-].
+
+        Loss passes from one band's law to the next geometrically, so that no step in it makes a false
+        optimum.
+        """
+        start, end = self.change_from[material], self.change_to[material]
+        passed = np.clip(np.log(frequency_hz[:, None] / start) / np.log(end / start), 0.0, 1.0).sum(-1)
+        lower = np.minimum(passed.astype(np.int64), self.k.shape[1] - 1)
+        return lower, np.minimum(lower + 1, self.k.shape[1] - 1), passed - lower
+
+    def blended(self, material: Ints, frequency_hz: Array, law: Callable[[Ints], Array]) -> Array:
+        """Geometric mean of a loss law in the two bands that a frequency lies between.
+
+        Args:
+            material: (n,) [-].
+            frequency_hz: of the loss (n,) [Hz].
+            law: band of every candidate (n,) -> loss, positive, (n, ...).
+        """
+        lower, upper, weight = self.between(material, frequency_hz)
+        below = law(lower)
+        if not weight.any():
+            return below
+        share = weight.reshape(weight.shape + (1,) * (below.ndim - 1))
+        tiny = np.finfo(float).tiny
+        return np.exp((1.0 - share) * np.log(below + tiny) + share * np.log(law(upper) + tiny))
+
+
+LEAST_CHANGE = 1.25  # end over start of the passage between two bands that touch, a judgement
 
 
 def core_bands(catalog: Catalog) -> CoreBands:
@@ -44,8 +74,12 @@ def core_bands(catalog: Catalog) -> CoreBands:
     pairs = [
         exponents.index(pair) for pair in zip(alpha.ravel().tolist(), beta.ravel().tolist(), strict=True)
     ]
+    ends, starts = materials.column("band_max_hz")[:, :-1], materials.column("band_min_hz")[:, 1:]
+    low, high = np.minimum(ends, starts), np.maximum(ends, starts)
+    middle, ratio = np.sqrt(low * high), np.maximum(high / low, LEAST_CHANGE)
     return CoreBands(
-        upper_hz=materials.column("band_max_hz"),
+        change_from=middle / np.sqrt(ratio),
+        change_to=middle * np.sqrt(ratio),
         k=k,
         alpha=alpha,
         beta=beta,

@@ -163,26 +163,25 @@ def _price(catalog: Catalog, built: Build, labour: float) -> Array:
     return (material + labour) / (1.0 - catalog.cost.wound_part_margin)
 
 
-def absent_inductor(count: int, points: int) -> Inductor:
-    """Stand for an inductor that a filter does not have: no loss, no size, every share at its harmless end.
+def where_present(part: Inductor, present: NDArray[np.bool_], ambient_c: float) -> Inductor:
+    """Take out the inductors that a candidate's filter does not have (an LC filter has no grid-side one).
 
     Args:
-        count: candidates n; points: operating points p.
+        part: results of the whole population.
+        present: candidates that have the inductor (n,).
+        ambient_c: air around it, which an absent inductor is reported at [degC].
+
+    Returns:
+        No loss, size or price for absent ones, every share at its harmless end.
     """
-    none, per_point = np.zeros(count), np.zeros((count, points))
-    return Inductor(
-        winding_loss=per_point,
-        core_loss=per_point,
-        temperature=per_point,
-        flux_density=none,
-        flux_share=none,
-        inductance_left=np.ones(count),
-        inductance_share=np.ones(count),
-        gap=none,
-        gap_share=none,
-        window_fill=none,
-        volume=none,
-        mass=none,
-        price=none,
-        resistance=none,
-    )
+    if present.all():
+        return part
+    harmless = {"temperature": ambient_c, "inductance_left": 1.0, "inductance_share": ABSENT_SHARE}
+    values = {}
+    for name, value in vars(part).items():
+        mask = present if value.ndim == 1 else present[:, None]
+        values[name] = np.where(mask, value, harmless.get(name, 0.0))
+    return Inductor(**values)
+
+
+ABSENT_SHARE = 10.0  # inductance share of an inductor that is not there: far from its limit, and finite

@@ -159,7 +159,8 @@ def bridge_losses(
     switch_c, diode_c = point.temperature
     switch, diode = switch_law.at(switch_c), diode_law.at(diode_c)
     recovering_c = np.where(position.shared, switch_c, diode_c)
-    gate = gate_drive_loss(device, total_area, frequency[:, None]) * _active_legs(tables, state)
+    driven = gate_drive_loss(device, total_area, frequency[:, None]) * _active_legs(tables, state)
+    gate = driven + count * device.gate_unit_power_w
     return BridgeLosses(
         conduction=positions * position.conduction(switch_c, diode_c).sum(0),
         switching=positions * position.switching.at(switch_c).sum(0),

@@ -107,9 +107,10 @@ def leg_switching(
     magnitude = np.abs(current)
     reference = (device.reference_current_density_a_per_m2 * total_area)[..., None]
     valley = magnitude - offset
-    log_on = np.log(np.maximum(valley / reference, LEAST_CURRENT_SHARE))
-    log_off = np.log(np.maximum((magnitude + offset) / reference, LEAST_CURRENT_SHARE))
+    log_valley = np.log(np.maximum(np.abs(valley) / reference, LEAST_CURRENT_SHARE))
+    log_peak = np.log(np.maximum((magnitude + offset) / reference, LEAST_CURRENT_SHARE))
     shares = np.broadcast_to(share, magnitude.shape)
+    hard = shares * (valley > 0.0)
     count = magnitude.shape[-1]
     per_second = frequency / count * reference[..., 0]
     exponents = (
@@ -126,9 +127,11 @@ def leg_switching(
     charge = output_charge(device, voltage, total_area)
     left = charge_left(valley, charge[..., None], device.dead_time_s[..., None])
     return LegSwitching(
-        turn_on_hot=overlap * per_second * _summed(shares, on * log_on),
-        turn_off_hot=turn_off * per_second * _summed(shares, off * log_off),
-        recovery_hot=recovered * per_second * _summed(shares, recovery * log_on),
+        turn_on_hot=overlap * per_second * _summed(hard, on * log_valley),
+        turn_off_hot=turn_off
+        * per_second
+        * (_summed(shares, off * log_peak) + _summed(shares - hard, off * log_valley)),
+        recovery_hot=recovered * per_second * _summed(hard, recovery * log_valley),
         output_charge=charge * voltage * frequency / count * np.einsum("...a,...a->...", shares, left),
         mean_current=magnitude.mean(-1),
     )

@@ -19,8 +19,9 @@ from models.waveforms.switching_period import SwitchingPeriod
 
 Array = NDArray[np.float64]
 Ints = NDArray[np.int64]
-INDEX_POINTS = 72
-INDEX_MAX = 1.16
+INDEX_POINTS = 99
+INDEX_MAX = 98.0 / 84.0  # puts both linear limits, 1 and 2/sqrt(3) = 96.995/84, on grid points
+PEAK_ANGLES = 361  # angles over half a line period at which the greatest ripple is sought
 ANGLE_CELLS = 18  # a multiple of 6, so that 30 degree sectors end at cell bounds
 FINE = 6  # samples per cell for means and maxima
 SIDEBAND_COUNT = 24
@@ -122,7 +123,7 @@ def _scheme_rows(
     groups = np.arange(1, CARRIER_GROUPS + 1)
     group_ripple = spectrum.group_mean_square / (2.0 * np.pi * groups) ** 2
     return {
-        "peak_ripple": period.peak_to_peak.max(-1),
+        "peak_ripple": _peak_ripple(bridge, scheme, usable),
         "ripple_mean_square": period.mean_square.mean(-1),
         "commutation_offset": _cell_means(-period.flux_at_turn_on(0)),
         "switching_share": share,
@@ -139,6 +140,14 @@ def _scheme_rows(
         "main_carrier": np.array(float(groups[np.argmax(group_ripple.mean(0))])),
         "core_loss_shape": np.stack(shapes, axis=-1) if shapes else np.zeros((INDEX_POINTS, 0)),
     }
+
+
+def _peak_ripple(bridge: Bridge, scheme: Modulation, index: Array) -> Array:
+    angle = np.linspace(0.0, np.pi, PEAK_ANGLES)
+    duty = 0.5 * (1.0 + scheme.references(*np.broadcast_arrays(angle, index[:, None])))
+    return SwitchingPeriod(
+        np.clip(duty, 0.0, 1.0), scheme.carrier_sign, bridge.voltage_weights
+    ).peak_to_peak.max(-1)
 
 
 def _cell_means(fine: NDArray[np.floating]) -> Array:

@@ -5,8 +5,8 @@ import numpy as np
 import pytest
 
 from optimizer.objectives import OBJECTIVES, margins_of, requirements_of
-from optimizer.problem import ClassProblem
 from optimizer.populations import normalised_hypervolume, prepared_inverter, search, search_class
+from optimizer.problem import ClassProblem
 from optimizer.space import SearchSpace
 
 

@@ -11,7 +11,7 @@ import pytest
 
 from models.specification import CALIFORNIAN_WEIGHTS, EUROPEAN_WEIGHTS, DesignRules
 from optimizer.study import Study
-from optimizer.study_schema import DEVICE_CLASSES, RANGES, SearchRange
+from optimizer.study_schema import DEFAULT_CLASSES, RANGES, SearchRange
 
 STUDIES = Path(__file__).parents[2] / "studies"
 SHORTEST = """
@@ -48,7 +48,7 @@ def test_defaults_of_the_shortest_study(read):
     assert asked.limit_table == "IEEE 1547-2018"
     assert study.objectives == ("weighted loss", "volume", "price")
     assert search.modulations == ("bipolar", "unipolar", "one leg at line frequency")
-    assert search.device_classes == DEVICE_CLASSES
+    assert search.device_classes == DEFAULT_CLASSES
     assert (search.core_materials, search.conductors) == ((), ())
     assert search.ranges["switching_frequency"] == SearchRange(8e3, 200e3)
     assert set(search.ranges) == {entry.name for entry in RANGES}

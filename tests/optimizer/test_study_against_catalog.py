@@ -9,7 +9,7 @@ import pytest
 from models.catalog import load_catalog
 from optimizer.errors import InputError
 from optimizer.study import Study
-from optimizer.study_schema import DC_LINKS, DEVICE_CLASSES
+from optimizer.study_schema import DC_LINKS, DEFAULT_CLASSES
 
 STUDIES = Path(__file__).parents[2] / "studies"
 ROOFTOP = STUDIES / "rooftop_5kw.toml"
@@ -31,7 +31,7 @@ def test_every_part_of_the_catalogue_can_be_asked_for(catalog):
         study.search,
         core_materials=catalog.core_materials.names,
         conductors=catalog.conductors.names,
-        device_classes=DEVICE_CLASSES,
+        device_classes=DEFAULT_CLASSES,
         dc_links=DC_LINKS,
     )
     replace(study, search=search).check_against(catalog)

@@ -16,6 +16,7 @@ ROW_UNITS = {
     "EUR/A": 1.0, "EUR/mm2": 1e6, "EUR": 1.0, "EUR/kg": 1.0, "EUR/uF": 1e6, "EUR/J": 1.0, "EUR/m2": 1.0,
     "kg/m3": 1.0, "g/cm3": 1e3, "W/kg": 1.0, "W/m3 with Hz and T": 1.0, "kW/m3": 1e3, "A/m": 1.0,
     "cm3/uF": 1.0, "A/uF": 1e6, "mA/uF": 1e3, "J/cm3": 1e6, "m3/h": 1.0 / 3600.0, "mohm": 1e-3,
+    "dm3": 1e-3, "K/kW": 1e-3, "uC": 1e-6, "J": 1.0, "EUR mOhm": 1e-3, "fraction of E_off": 1.0,
 }  # fmt: skip
 
 

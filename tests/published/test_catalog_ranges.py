@@ -84,6 +84,8 @@ def test_every_value_states_an_origin_that_says_how_it_is_known() -> None:
 
 CAT = load_catalog()
 SUPERJUNCTION = "Si superjunction MOSFET, 600/650 V"
+IGBT_1700, IGBT_3300, IGBT_4500, IGBT_6500 = (f"Si IGBT + diode, {v} V" for v in (1700, 3300, 4500, 6500))
+IGCT = "IGCT 4500 V (asymmetric)"
 
 
 def device(name: str) -> Any:
@@ -123,17 +125,53 @@ def test_saturation_voltage_of_threshold_and_slope(name: str, group: str, hot: b
 
 
 @pytest.mark.parametrize(
-    ("name", "row"),
+    ("name", "group", "row"),
     [
-        ("IGBT 1200 V low-loss", "slope resistance x total die area | low-loss, 25 C"),
-        ("IGBT 1200 V low-loss", "slope resistance x total die area | low-loss, 125..150 C"),
-        ("IGBT 1200 V fast", "slope resistance x total die area | fast, 150..175 C"),
+        (
+            "IGBT 1200 V low-loss",
+            "Si IGBT + diode, 1200 V",
+            "slope resistance x total die area | low-loss, 25 C",
+        ),
+        (
+            "IGBT 1200 V low-loss",
+            "Si IGBT + diode, 1200 V",
+            "slope resistance x total die area | low-loss, 125..150 C",
+        ),
+        (
+            "IGBT 1200 V fast",
+            "Si IGBT + diode, 1200 V",
+            "slope resistance x total die area | fast, 150..175 C",
+        ),
+        ("IGBT 1700 V module", IGBT_1700, "slope resistance x total die area | 125..150 C"),
+        ("IGBT 3300 V module", IGBT_3300, "slope resistance x total die area | 125 C"),
+        ("IGBT 4500 V module", IGBT_4500, "slope resistance x total die area | 125 C"),
+        ("IGBT 6500 V module", IGBT_6500, "slope resistance x total die area | 125 C"),
+        ("IGCT 4500 V", IGCT, "slope resistance x pole-piece area | 85 mm pole piece, 5674 mm2"),
     ],
 )
-def test_slope_derived_from_saturation_voltage(name: str, row: str) -> None:
+def test_slope_derived_from_saturation_voltage(name: str, group: str, row: str) -> None:
     part = device(name)
     slope = part.slope_area_25_ohm_m2 if row.endswith(" 25 C") else part.slope_area_hot_ohm_m2
-    assert_in(slope, "Si IGBT + diode, 1200 V", row)
+    assert_in(slope, group, row)
+
+
+@pytest.mark.parametrize(
+    ("name", "group", "row"),
+    [
+        ("IGBT 1700 V module", IGBT_1700, "V_CE(sat) hot/cold ratio | 125 C over 25 C (150 C: 1.25)"),
+        ("IGBT 3300 V module", IGBT_3300, "V_CE(sat) hot/cold ratio | 125 C (150 C 1.29)"),
+        ("IGBT 4500 V module", IGBT_4500, "V_CE(sat) hot/cold ratio | 125 C"),
+        ("IGBT 6500 V module", IGBT_6500, "V_CE(sat) hot/cold ratio | 125 C"),
+    ],
+)
+def test_saturation_voltage_grows_with_temperature(name: str, group: str, row: str) -> None:
+    part = device(name)
+    density = part.reference_current_density_a_per_m2
+    hot, cool = (
+        getattr(part, f"threshold_{t}_v") + getattr(part, f"slope_area_{t}_ohm_m2") * density
+        for t in ("hot", "25")
+    )
+    assert_in(hot / cool, group, row)
 
 
 def cold(part: Any, which: str) -> float:
@@ -179,6 +217,15 @@ def cold(part: Any, which: str) -> float:
         ("GaN 650 V", "GaN HEMT, 650 V", "turn_on", "E_on per A and V | 400 V, 25 C"),
         ("SiC 650 V", "SiC MOSFET, 650/750 V", "turn_off", "E_off per A and V | 400 V, rated I, 25 C"),
         ("superjunction 650 V", SUPERJUNCTION, "recovery", "body-diode Q_rr per A | fast-diode series, 25 C"),
+        ("IGBT 1700 V module", IGBT_1700, "turn_on", "E_on per A and V | 900 V, rated I, 25 C"),
+        ("IGBT 1700 V module", IGBT_1700, "turn_off", "E_off per A and V | 900 V, rated I, 25 C"),
+        ("IGBT 3300 V module", IGBT_3300, "turn_off", "E_off per A and V | 1800 V, 25 C"),
+        (
+            "low-voltage MOSFET 150 V",
+            "Si low-voltage MOSFET, 150 V",
+            "recovery",
+            "body-diode Q_rr per A | 25 C",
+        ),
     ],
 )
 def test_energy_at_25_c_follows_from_the_hot_one(name: str, group: str, which: str, row: str) -> None:
@@ -187,7 +234,17 @@ def test_energy_at_25_c_follows_from_the_hot_one(name: str, group: str, which: s
 
 @pytest.mark.parametrize(
     ("name", "sum_nj_per_av"),
-    [("IGBT 650 V fast", 120), ("IGBT 1200 V fast", 205), ("IGBT 1200 V low-loss", 320), ("SiC 1200 V", 33)],
+    [
+        ("IGBT 650 V fast", 120),
+        ("IGBT 1200 V fast", 205),
+        ("IGBT 1200 V low-loss", 320),
+        ("IGBT 1700 V module", 735),
+        ("IGBT 3300 V module", 1780),
+        ("IGBT 4500 V module", 3100),
+        ("IGBT 6500 V module", 4330),
+        ("SiC 1200 V", 33),
+        ("SiC 1700 V", 70),
+    ],
 )
 def test_orders_of_switching_energy(name: str, sum_nj_per_av: float) -> None:
     """Hot E_on + E_off of the classes, component facts note 3 (from memory for SiC)."""
@@ -207,6 +264,15 @@ def test_orders_of_switching_energy(name: str, sum_nj_per_av: float) -> None:
         ),
         ("SiC 1200 V", "SiC MOSFET, 1200 V", "E_oss/(Q_oss V) | SiC, C proportional V^-0.5 gives 1/3", 800),
         ("GaN 650 V", "GaN HEMT, 650 V", "E_oss/(Q_oss V) | 400 V", 400),
+        ("GaN 200 V", "GaN HEMT, 650 V", "E_oss/(Q_oss V) | 400 V", 100),
+        ("GaN 100 V", "GaN HEMT, 650 V", "E_oss/(Q_oss V) | 400 V", 50),
+        ("SiC 1700 V", "SiC MOSFET, 1200 V", "E_oss/(Q_oss V) | SiC, C proportional V^-0.5 gives 1/3", 1200),
+        (
+            "SiC 3300 V module",
+            "SiC MOSFET, 1200 V",
+            "E_oss/(Q_oss V) | SiC, C proportional V^-0.5 gives 1/3",
+            1800,
+        ),
     ],
 )
 def test_output_energy_over_charge(name: str, group: str, row: str, voltage: float) -> None:
@@ -228,7 +294,7 @@ def test_sic_output_charge_is_contained_in_its_turn_on_energy() -> None:
         if part.turn_on_includes_output_charge:
             charge = part.output_charge_c_per_m2 / part.reference_current_density_a_per_m2
             assert charge < part.turn_on_energy_j_per_av, part.name
-        if part.turn_off_energy_j_per_av and part.device_class != "silicon IGBT":
+        if part.turn_off_energy_j_per_av and part.device_class not in ("silicon IGBT", "IGCT", "GTO"):
             assert part.output_charge_c_per_m2 > 0.0, part.name
 
 

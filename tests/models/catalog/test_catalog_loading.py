@@ -45,7 +45,8 @@ def test_built_in_catalogue_is_complete_cached_and_can_be_sent_to_a_worker() -> 
     catalog = load_catalog()
     assert catalog is load_catalog()
     classes = {part.device_class for part in catalog.devices}
-    assert classes == {"silicon IGBT", "superjunction MOSFET", "SiC MOSFET", "GaN HEMT"}
+    silicon = {"low-voltage MOSFET", "superjunction MOSFET", "silicon IGBT", "IGCT", "GTO"}
+    assert classes == silicon | {"SiC MOSFET", "GaN HEMT"}
     families = {part.family for part in catalog.core_shapes}
     assert families == {"E", "ETD", "PQ", "RM", "U", "toroid powder", "toroid ferrite", "cut C"}
     for part in catalog.core_materials:
@@ -78,8 +79,10 @@ def test_every_number_of_every_part_has_an_origin() -> None:
             assert all(words.strip() for words in part.origin.values()), part.name
 
 
-def test_no_number_is_nan_and_only_the_rolloff_of_gapped_cores_is_infinite() -> None:
+def test_no_number_is_nan_and_only_limits_that_do_not_exist_are_infinite() -> None:
+    """Roll-off field of gapped cores, frequency limit of parts that have none."""
     catalog = load_catalog()
+    endless = ("rolloff_field_a_per_m", "greatest_switching_frequency_hz")
     for table in (
         catalog.devices,
         catalog.core_materials,
@@ -93,7 +96,7 @@ def test_no_number_is_nan_and_only_the_rolloff_of_gapped_cores_is_infinite() -> 
             column = table.column(name)
             if column.dtype.kind == "f":
                 assert not np.isnan(column).any(), name
-                assert np.isfinite(column).all() or name == "rolloff_field_a_per_m", name
+                assert np.isfinite(column).all() or name in endless, name
     materials = catalog.core_materials
     assert np.array_equal(
         np.isinf(materials.column("rolloff_field_a_per_m")), materials.column("kind") == "gapped"
@@ -183,6 +186,67 @@ sheet_die_area_mm2 = { value = 10, origin = "opened part" }
     assert part.slope_area_hot_ohm_m2 / part.slope_area_25_ohm_m2 == pytest.approx(ratio)
 
 
+def test_energy_of_turn_on_and_off_together_is_split_by_a_share(tmp_path: Path) -> None:
+    catalog = loaded(
+        tmp_path,
+        DEVICE
+        + "switching_energy_nj_per_av = { value = 40, origin = 'x' }\n"
+        + "turn_on_share = { value = 0.7, origin = 'y' }",
+    )
+    part = catalog.devices[catalog.devices.index("measured switch")]
+    assert part.turn_on_energy_j_per_av == pytest.approx(28e-9)
+    assert part.turn_off_energy_j_per_av == pytest.approx(12e-9)
+    assert part.origin["turn_off_energy_j_per_av"] == (
+        "derived: rest of the energy of turn-on and turn-off together (x; y)"
+    )
+
+
+def test_snubber_and_clamp_are_counted_with_the_switch(tmp_path: Path) -> None:
+    """By hand: 2 J of snubber at 500 A and 1600 V are 2500 nJ/(A V); half as much again at turn-off."""
+    catalog = loaded(
+        tmp_path,
+        """
+[[devices]]
+name = "own puck"
+based_on = "GTO 4500 V"
+sheet_rated_current_a = { value = 500, origin = "data sheet" }
+energy_reference_voltage_v = { value = 1600, origin = "data sheet" }
+bare_turn_on_energy_nj_per_av = { value = 700, origin = "data sheet" }
+snubber_energy_j = { value = 2, origin = "0.5 C V^2" }
+bare_turn_off_energy_nj_per_av = { value = 1000, origin = "data sheet" }
+clamp_loss_ratio = { value = 0.5, origin = "bench" }
+""",
+    )
+    part = catalog.devices[catalog.devices.index("own puck")]
+    assert part.turn_on_energy_j_per_av == pytest.approx(3200e-9)
+    assert part.turn_off_energy_j_per_av == pytest.approx(1500e-9)
+    assert part.gate_unit_power_w == 40.0
+    assert part.greatest_switching_frequency_hz == 500.0
+    assert part.origin["greatest_switching_frequency_hz"].startswith("as GTO 4500 V: ")
+
+
+def test_price_times_on_resistance(tmp_path: Path) -> None:
+    """By hand: a price of 38 for 1 mohm at 3.8 mohm cm2 is 10 for 1 cm2, package and all."""
+    catalog = loaded(tmp_path, DEVICE + "price_on_resistance_mohm = { value = 38, origin = 'x' }")
+    part = catalog.devices[catalog.devices.index("measured switch")]
+    share = part.package_price / part.junction_case_reference_area_m2
+    assert part.price_per_area_per_m2 + share == pytest.approx(10.0 / 1e-4)
+
+
+def test_gate_unit_and_frequency_limit_are_stated_where_a_part_has_them(tmp_path: Path) -> None:
+    catalog = loaded(
+        tmp_path,
+        DEVICE
+        + "gate_unit_power_w = { value = 3, origin = 'data sheet' }\n"
+        + "greatest_switching_frequency_khz = { value = 60, origin = 'data sheet' }",
+    )
+    base = catalog.devices[catalog.devices.index("SiC 1200 V")]
+    part = catalog.devices[catalog.devices.index("measured switch")]
+    assert (base.gate_unit_power_w, base.greatest_switching_frequency_hz) == (0.0, np.inf)
+    assert base.origin["gate_unit_power_w"] == "convention: gate drive takes charge per cycle only"
+    assert (part.gate_unit_power_w, part.greatest_switching_frequency_hz) == (3.0, 60e3)
+
+
 def test_a_material_based_on_another_keeps_its_measured_line_loss(tmp_path: Path) -> None:
     catalog = loaded(
         tmp_path,
@@ -248,6 +312,19 @@ def test_a_part_is_replaced_only_when_it_says_so(tmp_path: Path) -> None:
         (
             DEVICE + "sheet_gate_charge_nc = { value = 99, origin = 'x' }",
             ["nothing follows", "sheet_die_area_m2"],
+        ),
+        (
+            DEVICE + "gate_unit_power_w = { value = -1, origin = 'x' }",
+            ["gate_unit_power_w must not be negative"],
+        ),
+        (
+            DEVICE + "greatest_switching_frequency_khz = { value = 0, origin = 'x' }",
+            ["greatest_switching_frequency_hz must be greater than zero"],
+        ),
+        (
+            DEVICE + "switching_energy_nj_per_av = { value = 9, origin = 'x' }\n"
+            "turn_on_share = { value = 1.5, origin = 'x' }",
+            ["turn_on_share must not exceed 1"],
         ),
         (DEVICE + "device_class = 'vacuum valve'", ["device_class must be one of", "'vacuum valve'"]),
         (DEVICE + "shared_die = 1", ["shared_die must be true or false, got 1"]),

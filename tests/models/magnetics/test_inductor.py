@@ -1,0 +1,157 @@
+"""One inductor evaluated: energy, flux, temperature balance, absent parts."""
+
+from __future__ import annotations
+
+from dataclasses import fields, replace
+
+import numpy as np
+import pytest
+
+from models.catalog import Catalog
+from models.magnetics.build import Build, build, resistance_ratio
+from models.magnetics.gap import gapped_inductance
+from models.magnetics.inductor import Inductor, InductorDuty, dc_resistance, inductor, where_present
+from models.magnetics.sizing import core_ladder, size_inductor
+from models.magnetics.surface_cooling import box_surface, still_air_rise
+from models.magnetics.winding import copper_resistivity
+
+COUNT = 200
+POINTS = 3
+
+
+@pytest.fixture(scope="module")
+def built(catalog: Catalog) -> Build:
+    """Random materials, conductors and sizes around one duty."""
+    rng = np.random.default_rng(7)
+    return build(
+        catalog,
+        size_inductor(
+            catalog,
+            core_ladder(catalog),
+            rng.integers(0, len(catalog.core_materials), COUNT),
+            rng.integers(0, len(catalog.conductors), COUNT),
+            np.full(COUNT, 3e-4),
+            np.full(COUNT, 32.0),
+            np.full(COUNT, 21.0),
+            rng.uniform(0.8, 6.0, COUNT),
+            rng.uniform(0.3, 1.0, COUNT),
+            rng.uniform(0.3, 1.0, COUNT),
+            0.85,
+        ),
+    )
+
+
+DUTY = InductorDuty(
+    inductance=np.full(COUNT, 3e-4),
+    peak_current=np.full(COUNT, 32.0),
+    line_current=np.broadcast_to(np.array([5.0, 15.0, 21.0]), (COUNT, POINTS)),
+    group_mean_square=np.full((COUNT, POINTS, 2), 1.5),
+    group_frequency=np.broadcast_to(np.array([40e3, 80e3]), (COUNT, 2)),
+    switched_loss_density=np.full((COUNT, POINTS), 3e4),
+    line_frequency_hz=50.0,
+    ambient_c=50.0,
+    rise_factor=np.ones(COUNT),
+)
+
+
+@pytest.fixture(scope="module")
+def found(catalog: Catalog, built: Build) -> Inductor:
+    return inductor(catalog, built, DUTY, 3.0)
+
+
+def test_everything_is_finite_and_positive(found: Inductor) -> None:
+    for name, value in vars(found).items():
+        assert np.isfinite(value).all(), name
+        if name != "gap_share":  # negative where no gap is left to choose
+            assert np.all(value >= 0.0), name
+
+
+def test_flux_from_the_linkage(built: Build, found: Inductor) -> None:
+    """N A B = L I: Faraday's law, however the core is made."""
+    assert found.flux_density * built.turns * built.area == pytest.approx(DUTY.inductance * DUTY.peak_current)
+
+
+def test_gap_gives_the_inductance(built: Build, found: Inductor) -> None:
+    gapped = (built.material.kind == "gapped") & (found.gap > 0.0) & (found.gap_share < 0.3)
+    assert gapped.sum() > 30
+    back = gapped_inductance(
+        built.turns, found.gap, built.area, built.path, built.material.initial_permeability, built.breadth
+    )
+    assert back[gapped] == pytest.approx(DUTY.inductance[gapped], rel=5e-3)
+
+
+def test_temperature_is_in_balance_with_the_losses(built: Build, found: Inductor) -> None:
+    """Temperature from all losses over the surface; winding loss at that temperature, within 0.5 %."""
+    surface = box_surface(built.box_volume)[:, None]
+    balance = DUTY.ambient_c + still_air_rise(found.winding_loss + found.core_loss, surface)
+    assert found.temperature == pytest.approx(balance)
+    below = found.temperature < 130.0
+    assert below.sum() > 100
+    ratio = resistance_ratio(built, DUTY.group_frequency, copper_resistivity(np.array(100.0)))
+    square = DUTY.line_current**2 + np.sum(DUTY.group_mean_square * ratio[:, None], axis=-1)
+    cold, hot = (dc_resistance(built, at)[:, None] for at in (0.0, 100.0))
+    expected = square * (cold + (hot - cold) * found.temperature / 100.0)
+    assert found.winding_loss[below] == pytest.approx(expected[below], rel=5e-3)
+
+
+def test_core_loss_of_line_loop_and_ripple(built: Build, found: Inductor) -> None:
+    """Major loop at the line current's peak flux, and the ripple's loss raised by that premagnetisation."""
+    material = built.material
+    flux = np.sqrt(2.0) * DUTY.line_current * DUTY.inductance[:, None] / (built.turns * built.area)[:, None]
+    major = material.line_loss_w_per_m3[:, None] * flux ** material.line_loss_exponent[:, None]
+    bias = np.minimum(flux / (0.5 * material.saturation_t[:, None]), 2.0)
+    raised = 3e4 * (1.0 + (material.bias_loss_factor[:, None] - 1.0) * 2.0 / np.pi * bias)
+    expected = (major + raised) * (material.loss_factor * built.core_volume)[:, None]
+    assert found.core_loss == pytest.approx(expected)
+
+
+def test_temperature_is_the_fixed_point(
+    catalog: Catalog, built: Build, monkeypatch: pytest.MonkeyPatch
+) -> None:
+    three = inductor(catalog, built, DUTY, 3.0)
+    monkeypatch.setattr("models.magnetics.inductor.THERMAL_STEPS", 100)
+    many = inductor(catalog, built, DUTY, 3.0)
+    below = many.temperature < 130.0
+    assert np.abs(three.temperature - many.temperature)[below].max() < 0.5
+    assert three.winding_loss[below] == pytest.approx(many.winding_loss[below], rel=5e-3)
+
+
+def test_losses_grow_with_current_and_temperature_with_ambient(
+    catalog: Catalog, built: Build, found: Inductor
+) -> None:
+    assert np.all(np.diff(found.winding_loss, axis=-1) > 0.0)
+    assert np.all(np.diff(found.core_loss, axis=-1) >= 0.0)
+    hotter = inductor(catalog, built, replace(DUTY, ambient_c=60.0), 3.0)
+    assert np.all(hotter.temperature > found.temperature)
+    assert np.all(found.temperature > 50.0)
+
+
+def test_ripple_only_adds_loss(catalog: Catalog, built: Build, found: Inductor) -> None:
+    calm = inductor(catalog, built, replace(DUTY, group_mean_square=np.zeros((COUNT, POINTS, 2))), 3.0)
+    assert np.all(calm.winding_loss < found.winding_loss)
+
+
+def test_price_contains_labour(catalog: Catalog, built: Build, found: Inductor) -> None:
+    dearer = inductor(catalog, built, DUTY, 4.0)
+    assert dearer.price - found.price == pytest.approx(1.0 / (1.0 - catalog.cost.wound_part_margin))
+
+
+def test_still_air_law() -> None:
+    """450 psi^0.826 K with psi in W/cm2 (McLyman): 1 W over 10 cm2 is 67 K."""
+    assert still_air_rise(np.array(1.0), np.array(1e-3)) == pytest.approx(450.0 * 0.1**0.826)
+    assert box_surface(np.array(1e-6)) == pytest.approx(6.4e-4)
+
+
+def test_an_absent_inductor_is_harmless() -> None:
+    shared = np.array([1.0, 2.0])
+    part = Inductor(**{entry.name: shared for entry in fields(Inductor)} | {  # type: ignore[arg-type]
+        name: np.stack([shared] * 3, axis=-1) for name in ("winding_loss", "core_loss", "temperature")
+    })  # fmt: skip
+    found = where_present(part, np.array([True, False]), 55.0)
+    assert found.winding_loss[0] == pytest.approx(1.0)
+    assert found.volume[0] == 1.0
+    assert found.winding_loss[1] == pytest.approx(0.0)
+    assert found.volume[1] + found.mass[1] + found.price[1] == 0.0
+    assert found.temperature[1] == pytest.approx(55.0)
+    assert found.inductance_share[1] > 1.0
+    assert where_present(part, np.array([True, True]), 55.0) is part

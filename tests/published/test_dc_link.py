@@ -1,0 +1,90 @@
+"""Published currents and sizes of dc-link capacitors. Ids, sources and tolerances are the rows'."""
+
+from __future__ import annotations
+
+import math
+from typing import Any
+
+import numpy as np
+import pytest
+from check_rows import CHECKS, assert_meets, lag_of, params, starting
+from scipy.optimize import minimize_scalar
+
+from models.capacitors import double_frequency_capacitance
+from models.catalog import Catalog
+from models.waveforms.bridges import FULL_BRIDGE
+from models.waveforms.dc_link_current import (
+    single_phase_double_frequency_rms,
+    single_phase_switching_rms,
+    three_phase_rms,
+)
+from models.waveforms.tables import waveform_tables
+
+THREE_PHASE = starting("DCL-3P-M0", "DCL-3P-M1")
+SINGLE_PHASE = starting("DCL-1P-M")
+SINGLE = ["DCL-3P-MAX1", "DCL-3P-MAX2", "DCL-3P-EX", "DCL-1P-2F", "DCL-C1", "DCL-LEAF"]
+TESTED = {*THREE_PHASE, *SINGLE_PHASE, *SINGLE}
+
+
+@pytest.mark.parametrize("row", params(THREE_PHASE))
+def test_three_phase_capacitor_current(row: dict[str, Any]) -> None:
+    assert_meets(row, float(three_phase_rms(np.array(row["inputs"]["M"]), np.array(lag_of(row)))))
+
+
+def test_greatest_three_phase_capacitor_current() -> None:
+    found = minimize_scalar(
+        lambda index: -float(three_phase_rms(np.array(index), np.array(0.0))), bounds=(0.1, 1.1)
+    )
+    assert_meets(CHECKS["DCL-3P-MAX1"], found.x)
+    assert_meets(CHECKS["DCL-3P-MAX2"], -found.fun)
+
+
+def test_worked_three_phase_example() -> None:
+    row = CHECKS["DCL-3P-EX"]
+    asked = row["inputs"]
+    current = asked["P_W"] / (math.sqrt(3.0) * asked["V_LL_V"])
+    index = 2.0 * math.sqrt(2.0) * asked["V_LL_V"] / (math.sqrt(3.0) * asked["Vdc_V"])
+    assert_meets(row, current * float(three_phase_rms(np.array(index), np.array(0.0))))
+
+
+@pytest.mark.parametrize("row", params(SINGLE_PHASE))
+@pytest.mark.parametrize("scheme", ["unipolar", "one leg at line frequency"])
+def test_single_phase_capacitor_current(row: dict[str, Any], scheme: str) -> None:
+    """Both three-level schemes of the full bridge draw the same current in every switching period."""
+    tables, index, lag = (
+        waveform_tables(FULL_BRIDGE.name),
+        np.array([row["inputs"]["M"]]),
+        np.array([lag_of(row)]),
+    )
+    place = (np.array([FULL_BRIDGE.modulation_index(scheme)]), *tables.position(index))
+    on_mean, on_cosine = tables.read(tables.on_mean, *place), tables.read(tables.on_cosine, *place)
+    fast = single_phase_switching_rms(index, lag, on_mean, on_cosine)
+    assert_meets(row, float(np.hypot(fast, single_phase_double_frequency_rms(index))[0]))
+
+
+def test_double_frequency_part() -> None:
+    row = CHECKS["DCL-1P-2F"]
+    assert_meets(row, float(single_phase_double_frequency_rms(np.array(row["inputs"]["M"]))))
+
+
+def test_capacitance_for_double_frequency_ripple() -> None:
+    row = CHECKS["DCL-C1"]
+    asked = row["inputs"]
+    found = double_frequency_capacitance(
+        asked["P_W"], 2.0 * math.pi * asked["f_Hz"], asked["Vdc_V"], asked["dV_pp_V"]
+    )
+    assert_meets(row, found * 1e6)
+
+
+def test_energy_density_of_film_units_is_of_the_published_order(catalog: Catalog) -> None:
+    """A plausibility anchor, one traction capacitor: the catalogue's film units must lie within a factor of
+    three of it.
+    """
+    row = CHECKS["DCL-LEAF"]
+    asked = row["inputs"]
+    assert_meets(row, 0.5 * asked["C_F"] * asked["V_V"] ** 2 / asked["volume_L"])
+    films = [unit for unit in catalog.dc_link_capacitors if unit.technology == "film"]
+    assert films
+    for unit in films:
+        density = 0.5 * unit.unit_capacitance_f * unit.voltage_rating_v**2 / unit.unit_volume_m3 * 1e-3
+        assert row["expected"] / 3.0 < density < row["expected"] * 3.0, unit.name

@@ -143,7 +143,7 @@ class Inverter:
             self.tables,
             losing,
             points.dc_voltage[points.losses],
-            Cooling(spec.ambient_c, lambda power: self._rise(designs, power)),
+            Cooling(spec.ambient_c, lambda power, rows: self._rise(designs, power, rows)),
         )
         distortion, linear = self._distortion(columns, state, designs, device.dead_time_s[:, 0])
         inductors = self._inductors(designs, phasors, state, distortion)
@@ -176,10 +176,10 @@ class Inverter:
             }
         )
 
-    def _rise(self, designs: Designs, power: Array) -> Array:
+    def _rise(self, designs: Designs, power: Array, rows: NDArray[np.int64] | slice) -> Array:
         natural, forced = self.sinks
-        resistance = designs.sink_resistance_k_per_w[:, None]
-        driven = (designs.forced_cooling == 1)[:, None]
+        resistance = designs.sink_resistance_k_per_w[rows, None]
+        driven = (designs.forced_cooling[rows] == 1)[:, None]
         return np.where(driven, forced.rise(power, resistance), natural.rise(power, resistance))
 
     def _distortion(

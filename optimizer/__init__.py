@@ -1,7 +1,7 @@
 """Studies, search, fronts and charts around the physics in `models`.
 
-`Study.read(path)` reads a study file, `search(study)` searches it, `front(result)` makes its tables. Imports happen on
-first use, so that the command line answers at once.
+`Study.read(path)` reads a study file, `search(study)` searches it, `front(result)` makes its tables. Imports
+happen on first use, so that the command line answers at once.
 """
 
 from __future__ import annotations

@@ -14,7 +14,6 @@ from typing import Any
 import moocore
 import numpy as np
 from numpy.typing import NDArray
-from scipy.stats import qmc
 
 from models.inverter import Inverter
 from optimizer.catalog_listing import read_catalog
@@ -119,7 +118,7 @@ def search_class(
     problem = ClassProblem(SearchSpace(study, prepared_inverter(study), device_class))
     in_models = _Stopwatch(problem.assess)
     rng = np.random.default_rng([seed, study.search.device_classes.index(device_class)])
-    first = problem.space.repaired(qmc.LatinHypercube(problem.n_var, rng=rng).random(study.search.population))
+    first = problem.space.repaired(latin_hypercube(rng, study.search.population, problem.n_var))
     algorithm = ArrayNSGA2(
         study.search.population,
         problem.space.repaired,
@@ -151,6 +150,15 @@ def search_class(
         nearest=np.asarray(problem.archive.nearest),
         seconds={"models": in_models.seconds, "search": time.perf_counter() - started - in_models.seconds},
     )
+
+
+def latin_hypercube(rng: np.random.Generator, count: int, axes: int) -> Array:
+    """Points of the unit cube with one in each of `count` equal parts of every axis (count, axes) [-].
+
+    Source: McKay, Beckman, Conover (1979).
+    """
+    parts = np.argsort(rng.random((axes, count)), axis=1).T
+    return (parts + rng.random((count, axes))) / count
 
 
 class _Stopwatch:

@@ -58,8 +58,8 @@ class Archive:
 class ClassProblem(Problem):
     """One device class of a study as a pymoo problem over the unit cube.
 
-    The constraint violation is the sum of what each negative margin misses, beyond one its logarithm: no absurd value
-    hides the rest, and less is always better.
+    The constraint violation is the sum of what each negative margin misses, beyond one its logarithm: no
+    absurd value hides the rest, and less is always better.
     """
 
     def __init__(self, space: SearchSpace) -> None:

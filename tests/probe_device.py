@@ -99,7 +99,7 @@ class At:
     ) -> BridgeLosses:
         """Losses of the given parts (n, 1), cooled without any rise of case and sink over 25 degC."""
         count = len(parts.hot_c)
-        cooling = Cooling(25.0, lambda power: np.zeros_like(power))
+        cooling = Cooling(25.0, lambda power, rows: np.zeros_like(power))
         return bridge_losses(
             parts,
             np.full(count, parallel),

@@ -2,6 +2,7 @@
 
 from __future__ import annotations
 
+from collections.abc import Callable
 from dataclasses import dataclass
 from typing import Any
 
@@ -26,7 +27,7 @@ class Cooling:
 
     Attributes:
         ambient_c: air at the heatsink [degC].
-        sink_rise: (power (n, p) [W]) -> heatsink rise (n, p) [K].
+        sink_rise: (power (n, p) [W], rows of the population) -> heatsink rise (n, p) [K].
     """
 
     ambient_c: float
@@ -148,14 +149,22 @@ def bridge_losses(
     )
     positions = 2.0 * bridge.leg_copies
 
-    def temperatures_from(temperature: Array) -> Array:
-        switch, diode = switch_law.at(temperature[0]), diode_law.at(temperature[1])
-        heat = positions * (switch + diode).sum(0)
-        case = cooling.ambient_c + cooling.sink_rise(heat) + resistances[2] * (switch + diode)
-        return np.stack([case + resistances[0] * switch, case + resistances[1] * diode])
+    def narrowed(rows: NDArray[np.int64] | slice) -> Callable[[Array], Array]:
+        """Junction temperatures over junction temperatures, of some candidates."""
+        laws = switch_law.of(rows), diode_law.of(rows)
+        junction_case, diode_case, case_sink = (part[rows] for part in resistances)
+
+        def temperatures_from(temperature: Array) -> Array:
+            switch, diode = laws[0].at(temperature[0]), laws[1].at(temperature[1])
+            both = switch + diode
+            case = case_sink * both
+            case += cooling.ambient_c + cooling.sink_rise(positions * both.sum(0), rows)
+            return np.stack([case + junction_case * switch, case + diode_case * diode])
+
+        return temperatures_from
 
     start = np.full((2, *position.fixed.shape), cooling.ambient_c + 30.0)
-    point = solve(temperatures_from, start)
+    point = solve(narrowed(slice(None)), start, narrowed=narrowed)
     switch_c, diode_c = point.temperature
     switch, diode = switch_law.at(switch_c), diode_law.at(diode_c)
     recovering_c = np.where(position.shared, switch_c, diode_c)
@@ -170,7 +179,8 @@ def bridge_losses(
         gate=positions * np.broadcast_to(gate.sum(0), switch.shape[1:]),
         switch_temperature=switch_c.max(0),
         diode_temperature=np.where(device.shared_die, switch_c.max(0), diode_c.max(0)),
-        sink_temperature=cooling.ambient_c + cooling.sink_rise(positions * (switch + diode).sum(0)),
+        sink_temperature=cooling.ambient_c
+        + cooling.sink_rise(positions * (switch + diode).sum(0), slice(None)),
         settled=np.asarray(point.converged.all(axis=(0, 1, 3))),
     )
 
@@ -189,9 +199,9 @@ def _leg_switching(
     dc_voltage: Array,
 ) -> LegSwitching:
     """Switching of every modelled leg, (l, n, p): legs that rest at line frequency have none."""
-    sine = state.peak_current * np.cos(state.displacement)
-    cosine = state.peak_current * np.sin(state.displacement)
-    current = sine[..., None] * np.sin(tables.angle) - cosine[..., None] * np.cos(tables.angle)
+    parts = np.stack([np.cos(state.displacement), -np.sin(state.displacement)], axis=-1)
+    parts *= state.peak_current[..., None]
+    current = parts @ np.stack([np.sin(tables.angle), np.cos(tables.angle)])
     offset = tables.read(tables.commutation_offset, state.scheme, state.row, state.weight)
     offset *= state.ripple_unit[..., None]
     share = tables.switching_share[state.scheme]

@@ -55,10 +55,16 @@ class HeatLaw:
 
     def at(self, temperature: Array) -> Array:
         """Loss [W] at a junction temperature [degC]."""
-        return (
-            self.constant
-            + self.linear * temperature
-            + self.resistive * np.exp(self.growth * (temperature - COLD_C))
+        loss = np.exp(self.growth * (temperature - COLD_C))
+        loss *= self.resistive
+        loss += self.linear * temperature
+        loss += self.constant
+        return loss
+
+    def of(self, rows: NDArray[np.int64] | slice) -> HeatLaw:
+        """The law of some candidates (axis before the last)."""
+        return HeatLaw(
+            *(part[..., rows, :] for part in (self.constant, self.linear, self.resistive, self.growth))
         )
 
 

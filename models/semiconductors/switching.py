@@ -77,8 +77,11 @@ def charge_left(valley: Array, charge: Array, dead_time: Array) -> Array:
     the voltage swing, 1 - |i| t_d/(2 Q_oss), costs its square, as with constant capacitances (estimate for
     the nonlinear ones).
     """
-    rest = 1.0 + valley * (0.5 * dead_time) / (charge + TINY_CHARGE)
-    return np.square(np.minimum(np.maximum(rest, 0.0), 1.0))
+    rest = np.asarray(valley * (0.5 * dead_time / (charge + TINY_CHARGE)))
+    rest += 1.0
+    np.clip(rest, 0.0, 1.0, out=rest)
+    rest *= rest
+    return rest
 
 
 def leg_switching(
@@ -98,7 +101,7 @@ def leg_switching(
         voltage: dc voltage [V].
         frequency: switching frequency [Hz].
         current: phase current at the middles of the angle cells, (n, p, a) [A].
-        offset: current deviation at the switching instants, (n, p, a) [A].
+        offset: current deviation at the switching instants, (n, p, a); overwritten [A].
         share: 1 where the leg switches, 0 where it is clamped, (n, 1, a) [-].
 
     Returns:
@@ -107,12 +110,20 @@ def leg_switching(
     magnitude = np.abs(current)
     reference = (device.reference_current_density_a_per_m2 * total_area)[..., None]
     valley = magnitude - offset
-    log_valley = np.log(np.maximum(np.abs(valley) / reference, LEAST_CURRENT_SHARE))
-    log_peak = np.log(np.maximum((magnitude + offset) / reference, LEAST_CURRENT_SHARE))
+    peak = np.add(magnitude, offset, out=offset)
+    log_valley, log_peak = _log_share(np.abs(valley), reference), _log_share(peak, reference)
     shares = np.broadcast_to(share, magnitude.shape)
     hard = shares * (valley > 0.0)
     count = magnitude.shape[-1]
     per_second = frequency / count * reference[..., 0]
+    scratch = np.empty_like(valley)
+
+    def summed(exponent: Array, logarithm: Array, *weights: Array) -> list[Array]:
+        """Sums over angles of weight times the current share to a power (by logarithms, in place: half of pow)."""
+        np.multiply(logarithm, exponent, out=scratch)
+        np.exp(scratch, out=scratch)
+        return [np.einsum("...a,...a->...", weight, scratch) for weight in weights]
+
     exponents = (
         device.turn_on_current_exponent,
         device.turn_off_current_exponent,
@@ -125,21 +136,28 @@ def leg_switching(
         device.recovery_energy_j_per_av, voltage, device.recovery_voltage_exponent, device
     )
     charge = output_charge(device, voltage, total_area)
-    left = charge_left(valley, charge[..., None], device.dead_time_s[..., None])
+    (turned_on,) = summed(on, log_valley, hard)
+    (turned_off,) = summed(off, log_peak, shares)
+    reversed_too, hard_too = summed(off, log_valley, shares, hard)
+    recovering = summed(recovery, log_valley, hard)[0] if recovered.any() else np.zeros_like(turned_on)
+    charged = np.zeros_like(turned_on)
+    if charge.any():
+        left = charge_left(valley, charge[..., None], device.dead_time_s[..., None])
+        charged = np.einsum("...a,...a->...", shares, left)
     return LegSwitching(
-        turn_on_hot=overlap * per_second * _summed(hard, on * log_valley),
-        turn_off_hot=turn_off
-        * per_second
-        * (_summed(shares, off * log_peak) + _summed(shares - hard, off * log_valley)),
-        recovery_hot=recovered * per_second * _summed(hard, recovery * log_valley),
-        output_charge=charge * voltage * frequency / count * np.einsum("...a,...a->...", shares, left),
-        mean_current=magnitude.mean(-1),
+        turn_on_hot=overlap * per_second * turned_on,
+        turn_off_hot=turn_off * per_second * (turned_off + reversed_too - hard_too),
+        recovery_hot=recovered * per_second * recovering,
+        output_charge=charge * voltage * frequency / count * charged,
+        mean_current=magnitude @ np.full(count, 1.0 / count),
     )
 
 
-def _summed(weight: Array, logarithm: Array) -> Array:
-    """Sum over angles of weight times exp(logarithm): powers by logarithms cost half of what pow costs."""
-    return np.einsum("...a,...a->...", weight, np.exp(logarithm))
+def _log_share(current: Array, reference: Array) -> Array:
+    """Logarithm of a current over the reference current, in place [-]."""
+    current /= reference
+    np.maximum(current, LEAST_CURRENT_SHARE, out=current)
+    return np.log(current, out=current)
 
 
 def gate_drive_loss(device: Any, total_area: Array, frequency: Array) -> Array:

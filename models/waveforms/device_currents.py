@@ -17,7 +17,7 @@ from numpy.typing import NDArray
 
 Array = NDArray[np.float64]
 Complex = NDArray[np.complex128]
-ORDERS = np.arange(1, 17, 2)
+ORDERS = np.arange(1, 13, 2)
 SINE_SQUARE_INTEGRALS = -4.0 / (ORDERS * (ORDERS**2 - 4.0))
 
 

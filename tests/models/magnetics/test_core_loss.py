@@ -102,7 +102,7 @@ def band_loss(bands: CoreBands, material: int, frequency: float, flux: float) ->
 
 
 def test_bands_of_the_catalogue(catalog: Catalog) -> None:
-    """Well inside its band every material has that band's law; beyond the last band that one is extrapolated."""
+    """Well inside its band a material has that band's law; beyond the last band that one is extrapolated."""
     bands = core_bands(catalog)
     for place, material in enumerate(catalog.core_materials):
         sets = zip(

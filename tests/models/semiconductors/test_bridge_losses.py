@@ -38,7 +38,7 @@ def losses(
 ) -> BridgeLosses:
     return bridge_losses(
         part, np.array([parallel]), np.array([area]), np.array([20e3]), at.entry, at.tables, at.state(),
-        np.array([at.dc_voltage]), Cooling(ambient, lambda power: rise * power),
+        np.array([at.dc_voltage]), Cooling(ambient, lambda power, rows: rise * power),
     )  # fmt: skip
 
 
@@ -134,7 +134,7 @@ def test_catalogue_parts_at_a_working_point(catalog: Catalog) -> None:
         found = bridge_losses(
             Gathered(catalog.devices, index, 1), np.ones(len(index)), catalog.devices.column(bound)[index],
             np.full(len(index), 30e3), state.entry, state.tables, state.state(len(index)), np.array([400.0]),
-            Cooling(40.0, lambda power: 0.3 * power),
+            Cooling(40.0, lambda power, rows: 0.3 * power),
         )  # fmt: skip
         for name in PART_NAMES:
             value = getattr(found, name)

@@ -3,6 +3,7 @@
 from __future__ import annotations
 
 from collections.abc import Callable
+from typing import Any
 
 import numpy as np
 import pytest
@@ -82,8 +83,8 @@ def recorded(monkeypatch: pytest.MonkeyPatch) -> list[tuple[Law, Array, FixedPoi
     """Every fixed point that the loss model asks for: law, start, result."""
     calls: list[tuple[Law, Array, FixedPoint]] = []
 
-    def recording(law: Law, start: Array, *rest: int) -> FixedPoint:
-        calls.append((law, start, solve(law, start, *rest)))
+    def recording(law: Law, start: Array, **more: Any) -> FixedPoint:
+        calls.append((law, start, solve(law, start, **more)))
         return calls[-1][2]
 
     monkeypatch.setattr(bridge_losses_module, "solve", recording)

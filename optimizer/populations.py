@@ -8,6 +8,7 @@ import time
 from collections.abc import Callable
 from concurrent.futures import Future, ProcessPoolExecutor
 from dataclasses import dataclass
+from multiprocessing.context import BaseContext
 from queue import Empty
 from typing import Any
 
@@ -191,6 +192,13 @@ def _worker(study: Study, device_class: str, seed: int) -> ClassResult:
     return search_class(study, device_class, seed, _outbox.put if _outbox is not None else None)
 
 
+def process_context() -> BaseContext:
+    """How worker processes start: by fork where there is one, since they then have everything prepared."""
+    return multiprocessing.get_context(
+        "fork" if "fork" in multiprocessing.get_all_start_methods() else "spawn"
+    )
+
+
 def search(
     study: Study,
     *,
@@ -217,9 +225,7 @@ def search(
     count = min(workers or os.cpu_count() or 1, len(classes))
     if count == 1:
         return SearchResult(study, seed, tuple(search_class(study, name, seed, report) for name in classes))
-    context = multiprocessing.get_context(
-        "fork" if "fork" in multiprocessing.get_all_start_methods() else "spawn"
-    )
+    context = process_context()
     outbox = context.Queue()
     with ProcessPoolExecutor(count, mp_context=context, initializer=_set_outbox, initargs=(outbox,)) as pool:
         futures = [pool.submit(_worker, study, name, seed) for name in classes]

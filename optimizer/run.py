@@ -6,6 +6,7 @@ import gzip
 import json
 import time
 from collections.abc import Callable
+from concurrent.futures import ProcessPoolExecutor
 from dataclasses import dataclass
 from importlib.metadata import PackageNotFoundError, version
 from pathlib import Path
@@ -18,7 +19,14 @@ from numpy.typing import NDArray
 from optimizer.errors import NothingFeasible
 from optimizer.fronts import Front, choices, front
 from optimizer.objectives import OBJECTIVES
-from optimizer.populations import ClassResult, Progress, SearchResult, prepared_inverter, search
+from optimizer.populations import (
+    ClassResult,
+    Progress,
+    SearchResult,
+    prepared_inverter,
+    process_context,
+    search,
+)
 from optimizer.run_folder import RUN_FILE, Content, write_run
 from optimizer.space import SearchSpace
 from optimizer.study import Study
@@ -71,16 +79,18 @@ def run_search(
     evaluated = evaluated_table(result)
     stage("drawing")
     summary = _summary(result, fronts)
-    from optimizer.charts import dashboard_html
+    with ProcessPoolExecutor(1, mp_context=process_context()) as beside:
+        packed = beside.submit(_packed, evaluated)  # as long as drawing the dashboard takes
+        from optimizer.charts import dashboard_html
 
-    page = dashboard_html(study, fronts, evaluated, summary)
-    stage("writing")
-    files: dict[str, Content] = {
-        "front.csv": _csv(fronts.table),
-        "margins.csv": _csv(fronts.margins),
-        "evaluated.csv.gz": gzip.compress(_csv(evaluated).encode(), GZIP_LEVEL, mtime=0),
-        "dashboard.html": page,
-    }
+        page = dashboard_html(study, fronts, evaluated, summary)
+        stage("writing")
+        files: dict[str, Content] = {
+            "front.csv": _csv(fronts.table),
+            "margins.csv": _csv(fronts.margins),
+            "evaluated.csv.gz": packed.result(),
+            "dashboard.html": page,
+        }
     ended = time.perf_counter()
     summary["seconds"] = {
         "models": sum(found.seconds["models"] for found in result.classes),
@@ -90,6 +100,10 @@ def run_search(
     }
     files[RUN_FILE] = json.dumps(summary, indent=1) + "\n"
     return Outcome(result, fronts, folder, write_run(folder, files), summary)
+
+
+def _packed(evaluated: pd.DataFrame) -> bytes:
+    return gzip.compress(_csv(evaluated).encode(), GZIP_LEVEL, mtime=0)
 
 
 def ruled_out(result: SearchResult) -> list[tuple[str, float, str]]:

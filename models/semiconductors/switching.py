@@ -119,7 +119,7 @@ def leg_switching(
     scratch = np.empty_like(valley)
 
     def summed(exponent: Array, logarithm: Array, *weights: Array) -> list[Array]:
-        """Sums over angles of weight times the current share to a power (by logarithms, in place: half of pow)."""
+        """Sums over angles of weight times current share to a power (logarithms, in place: half of pow)."""
         np.multiply(logarithm, exponent, out=scratch)
         np.exp(scratch, out=scratch)
         return [np.einsum("...a,...a->...", weight, scratch) for weight in weights]

@@ -81,7 +81,8 @@ def test_a_front_can_be_evaluated_again(run, tmp_path):
     assert done.returncode == 0, done.stderr
     again, front = pd.read_csv(tmp_path / "again.csv"), pd.read_csv(folder / "front.csv")
     pd.testing.assert_series_equal(again.loss_rated_w, front.loss_rated_w, rtol=1e-5)
-    assert again.feasible.mean() > 0.99  # rounding of the file may push a binding margin below zero
+    # the file's seven digits may push a margin that binds below zero, by as little
+    assert again.tightest_margin.min() > -1e-5
 
 
 def test_new_then_search_works(tmp_path):

@@ -4,6 +4,7 @@ from __future__ import annotations
 
 import json
 
+from rich.box import SIMPLE_HEAD
 from rich.console import Console
 from rich.table import Table
 
@@ -39,14 +40,19 @@ def print_summary(outcome: Outcome, *, as_json: bool) -> None:
 
 def _table(outcome: Outcome) -> Table:
     study, front = outcome.result.study, outcome.front.table
-    table = Table(title=f"{study.name}: Pareto designs by device class (best value of each objective)")
-    table.add_column("device class")
+    table = Table(
+        title=f"{study.name}: Pareto designs by device class (best value of each objective)",
+        box=SIMPLE_HEAD,
+        padding=(0, 1, 0, 0),
+    )
+    table.add_column("class")
     table.add_column("designs", justify="right")
-    table.add_column("on overall front", justify="right")
+    table.add_column("on overall\nfront", justify="right")
     for name in study.objectives:
         objective = OBJECTIVES[name]
-        table.add_column(f"{objective.title} [{objective.unit}]".replace("[", "\\["), justify="right")
-    table.add_column("switching frequency \\[kHz]", justify="right")
+        heading = f"{objective.title}\n\\[{objective.unit}]"
+        table.add_column(heading, justify="right")
+    table.add_column("frequency\n\\[kHz]", justify="right")
     for found in outcome.result.classes:
         rows = front[front.device_class == found.device_class]
         if len(rows):

@@ -201,7 +201,8 @@ def _leg_switching(
     """Switching of every modelled leg, (l, n, p): legs that rest at line frequency have none."""
     parts = np.stack([np.cos(state.displacement), -np.sin(state.displacement)], axis=-1)
     parts *= state.peak_current[..., None]
-    current = parts @ np.stack([np.sin(tables.angle), np.cos(tables.angle)])
+    waves = np.stack([np.sin(tables.angle), np.cos(tables.angle)])
+    current = (parts.reshape(-1, 2) @ waves).reshape(*parts.shape[:-1], -1)
     offset = tables.read(tables.commutation_offset, state.scheme, state.row, state.weight)
     offset *= state.ripple_unit[..., None]
     share = tables.switching_share[state.scheme]

@@ -82,9 +82,14 @@ class WaveformTables:
     @staticmethod
     def read(table: Array, scheme: Ints, row: Ints, weight: Array) -> Array:
         """Interpolate `table` (s, i, ...) at (scheme, row + weight); table's trailing axes are appended."""
-        lower = table[scheme, row]
-        share = weight.reshape(weight.shape + (1,) * (lower.ndim - weight.ndim))
-        return lower + share * (table[scheme, row + 1] - lower)
+        rows = table.reshape(-1, *table.shape[2:])
+        place = scheme * table.shape[1] + row
+        lower = rows.take(place, axis=0)
+        value = rows.take(place + 1, axis=0)
+        value -= lower
+        value *= weight.reshape(weight.shape + (1,) * (lower.ndim - weight.ndim))
+        value += lower
+        return value
 
 
 @lru_cache(maxsize=8)

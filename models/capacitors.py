@@ -65,17 +65,20 @@ def ac_filter_capacitor(
     )
 
 
-def double_frequency_capacitance(power: float, omega: float, dc_voltage: float, ripple: float) -> float:
-    """Dc-link capacitance of a single-phase inverter for a peak-to-peak voltage ripple, C = P/(omega V dV)
-    [F].
+def slow_ripple_capacitance(current_rms: Array, frequency: float, ripple: float) -> Array:
+    """Dc-link capacitance that keeps the low-frequency voltage ripple below a peak-to-peak value [F].
 
     Args:
-        power: apparent power [VA]; omega: line angular frequency [rad/s]; dc_voltage: [V]; ripple: peak to
-            peak [V].
+        current_rms: low-frequency current of the link, taken as a sine of its lowest order [A].
+        frequency: of that order; 0 where the bridge has no such current [Hz].
+        ripple: [V].
 
-    Source: energy balance at twice the line frequency; Krein, Balog, Mirjafari (2012).
+    Source: energy balance at twice the line frequency, C = P/(omega V_dc dV), Krein, Balog, Mirjafari (2012);
+        here from the current I = P/(sqrt 2 V_dc) instead of the power, for any order.
     """
-    return power / (omega * dc_voltage * ripple)
+    if frequency == 0.0:
+        return np.zeros_like(current_rms)
+    return 2.0 * np.sqrt(2.0) * current_rms / (2.0 * np.pi * frequency * ripple)
 
 
 def switching_ripple_capacitance(current_rms: Array, frequency: Array, ripple: float) -> Array:
@@ -147,3 +150,12 @@ def dc_link(
         mass=volume * unit.density_kg_m3,
         price=count * unit.unit_price,
     )
+
+
+def in_series(bank: DcLink, count: int) -> DcLink:
+    """`count` equal banks in series as one, each of which carries the current it was sized for."""
+    if count == 1:
+        return bank
+    scale = {"series": count, "capacitance": 1.0 / count, "loss": count}
+    scale |= dict.fromkeys(("volume", "mass", "price"), count)
+    return DcLink(**{name: value * scale.get(name, 1.0) for name, value in vars(bank).items()})

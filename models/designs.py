@@ -38,10 +38,12 @@ class Designs:
 
     Attributes:
         device: index into the catalogue's devices [-].
-        modulation: index into models.waveforms.MODULATIONS [-].
+        modulation: index into the bridge's schemes [-].
         switching_frequency_hz: carrier frequency of one leg [Hz].
         die_area_m2: switch die area of one package [m2].
         parallel: packages in parallel per switch position [-].
+        inner_device, inner_die_area_m2: part and die area of the inner positions of three-level legs, which a
+            two-level bridge does not have [-], [m2].
         inverter_inductance_h: bridge-side inductance at peak current [H].
         grid_inductance_h: grid- or load-side inductance; 0 for an LC filter [H].
         filter_capacitance_f: filter capacitance [F].
@@ -57,6 +59,8 @@ class Designs:
     switching_frequency_hz: Floats
     die_area_m2: Floats
     parallel: Ints
+    inner_device: Ints
+    inner_die_area_m2: Floats
     inverter_inductance_h: Floats
     grid_inductance_h: Floats
     filter_capacitance_f: Floats

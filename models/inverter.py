@@ -8,12 +8,14 @@ from functools import cached_property
 import numpy as np
 from numpy.typing import NDArray
 
+from models.bridge_packages import BridgePackages
 from models.capacitors import (
     AcFilterCapacitor,
     DcLink,
     ac_filter_capacitor,
     dc_link,
-    double_frequency_capacitance,
+    in_series,
+    slow_ripple_capacitance,
     switching_ripple_capacitance,
 )
 from models.catalog.gathered import Gathered
@@ -33,11 +35,7 @@ from models.roll_up import roll_up
 from models.semiconductors.bridge_losses import BridgeLosses, Cooling, bridge_losses
 from models.specification import GRID_CONNECTED, Specification
 from models.waveforms.bridges import BRIDGES, Bridge
-from models.waveforms.dc_link_current import (
-    single_phase_double_frequency_rms,
-    single_phase_switching_rms,
-    three_phase_rms,
-)
+from models.waveforms.dc_link_current import rail_rms
 from models.waveforms.state import WaveformState, waveform_state
 from models.waveforms.tables import WaveformTables, waveform_tables
 
@@ -60,6 +58,11 @@ class Inverter:
     def bridge(self) -> Bridge:
         """The bridge's registry entry. Raises KeyError for an unknown bridge."""
         return BRIDGES[self.specification.bridge]
+
+    @cached_property
+    def packages(self) -> BridgePackages:
+        """What its legs are built of."""
+        return BridgePackages(self.specification, self.catalog, self.bridge)
 
     @cached_property
     def points(self) -> OperatingPoints:
@@ -131,13 +134,11 @@ class Inverter:
             points.dc_voltage,
             1.0 / (designs.inverter_inductance_h * designs.switching_frequency_hz),
         )
-        device = Gathered(self.catalog.devices, designs.device, 1)
+        packages = self.packages.of(designs)
         losing = _at_points(state, points.losses)
         sink = self._sink(designs)
         losses = bridge_losses(
-            device,
-            designs.parallel.astype(float),
-            designs.die_area_m2,
+            packages,
             designs.switching_frequency_hz,
             self.bridge,
             self.tables,
@@ -145,7 +146,7 @@ class Inverter:
             points.dc_voltage[points.losses],
             Cooling(spec.ambient_c, lambda power, rows: self._rise(designs, power, rows)),
         )
-        distortion, linear = self._distortion(columns, state, designs, device.dead_time_s[:, 0])
+        distortion, linear = self._distortion(columns, state, designs, packages[0].device.dead_time_s[:, 0])
         inductors = self._inductors(designs, phasors, state, distortion)
         capacitors = self._capacitors(designs, phasors, losing)
         findings = Findings(
@@ -153,7 +154,7 @@ class Inverter:
             circuit=circuit,
             phasors=phasors,
             state=state,
-            device=device,
+            packages=packages,
             losses=losses,
             sink=sink,
             distortion=distortion,
@@ -163,8 +164,8 @@ class Inverter:
             dc_link=capacitors[1],
             resonance=resonance_hz(circuit),
         )
-        constraints = requirements(spec, self.catalog, self.bridge, self.tables, points, findings)
-        return roll_up(spec, self.catalog, self.bridge, points, findings, constraints)
+        constraints = requirements(spec, self.catalog, self.tables, points, findings)
+        return roll_up(spec, self.catalog, points, findings, constraints)
 
     def _sink(self, designs: Designs) -> SinkPoint:
         natural, forced = (curve.at(designs.sink_resistance_k_per_w) for curve in self.sinks)
@@ -244,21 +245,24 @@ class Inverter:
             frequency * self.tables.main_carrier[designs.modulation],
             greatest,
         )
+        # a three-level leg's link is two halves in series, each of which carries its own rail's current
+        halves = self.bridge.levels - 1
+        voltage = spec.dc_voltage_v / halves
         slow, fast = self._dc_currents(state)
-        ripple = rules.dc_switching_ripple_share * spec.dc_voltage_v
-        needed = switching_ripple_capacitance(fast[:, worst], frequency, ripple)
-        if spec.phases == 1:
-            slow_ripple = rules.dc_ripple_share * spec.dc_voltage_v
-            omega = 2.0 * np.pi * spec.line_frequency_hz
-            needed = np.maximum(
-                needed,
-                double_frequency_capacitance(spec.apparent_power_va, omega, spec.dc_voltage_v, slow_ripple),
-            )
-        unit = Gathered(self.catalog.dc_link_capacitors, designs.dc_link)
-        bank = dc_link(
-            unit,
-            spec.dc_voltage_max_v,
-            spec.dc_voltage_v,
+        needed = np.maximum(
+            switching_ripple_capacitance(
+                fast[:, worst], frequency, rules.dc_switching_ripple_share * voltage
+            ),
+            slow_ripple_capacitance(
+                slow.max(-1),
+                self.bridge.slow_order * spec.line_frequency_hz,
+                rules.dc_ripple_share * voltage,
+            ),
+        )
+        half = dc_link(
+            Gathered(self.catalog.dc_link_capacitors, designs.dc_link),
+            spec.dc_voltage_max_v / halves,
+            voltage,
             rules.dc_voltage_use,
             rules.dc_balancing_current,
             needed,
@@ -266,20 +270,16 @@ class Inverter:
             fast,
             worst,
         )
-        return film, bank
+        return film, in_series(half, halves)
 
     def _dc_currents(self, state: WaveformState) -> tuple[Array, Array]:
-        """Double-line-frequency and switching-frequency rms current of the dc link (n, p) [A]."""
-        index = np.minimum(state.modulation_index, self.tables.linear_limit[state.scheme])
-        peak = state.peak_current
-        if self.bridge.phases == 3:
-            fast = three_phase_rms(index, state.displacement) * peak / np.sqrt(2.0)
-            return np.zeros_like(fast), fast
+        """Slow (multiples of the line frequency) and switching rms current of a rail (n, p) [A]."""
         place = (state.scheme, state.row, state.weight)
-        on_mean = self.tables.read(self.tables.on_mean, *place)
-        on_cosine = self.tables.read(self.tables.on_cosine, *place)
-        fast = single_phase_switching_rms(index, state.displacement, on_mean, on_cosine)
-        return single_phase_double_frequency_rms(index) * peak, fast * peak
+        slow, fast = (
+            rail_rms(self.tables.read(moments, *place), state.displacement) * state.peak_current
+            for moments in (self.tables.rail_slow, self.tables.rail_fast)
+        )
+        return slow, fast
 
 
 def _at_points(state: WaveformState, points: slice) -> WaveformState:

@@ -118,7 +118,7 @@ def _dead_time_error(
     orders: Array,
 ) -> Array:
     """Rms error voltage of the bridge per order (n, k) [V]: the switching legs of a phase add up."""
-    legs = tables.leg_switching[state.scheme[:, 0]].sum(-1)[:, None]
+    legs = tables.error_legs[state.scheme]
     peak = dead_time_voltage(
         orders, np.asarray(spec.dc_voltage_max_v), dead_time[:, None], frequency[:, None]
     )

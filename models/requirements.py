@@ -8,7 +8,6 @@ import numpy as np
 from numpy.typing import NDArray
 
 from models.capacitors import AcFilterCapacitor, DcLink
-from models.catalog.gathered import Gathered
 from models.catalog.parts import Catalog
 from models.cooling import SinkPoint
 from models.designs import Designs
@@ -18,8 +17,9 @@ from models.magnetics.inductor import Inductor
 from models.operating_points import OperatingPoints
 from models.output_filter import Filter, LinePhasors
 from models.semiconductors.bridge_losses import BridgeLosses
+from models.semiconductors.packages import Packages
 from models.specification import GRID_CONNECTED, DesignRules, Specification
-from models.waveforms.bridges import Bridge
+from models.waveforms.leg_commutations import CLAMP, OUTER
 from models.waveforms.state import WaveformState
 from models.waveforms.tables import WaveformTables
 
@@ -34,7 +34,7 @@ class Findings:
     circuit: Filter
     phasors: LinePhasors
     state: WaveformState
-    device: Gathered
+    packages: tuple[Packages, ...]
     losses: BridgeLosses
     sink: SinkPoint
     distortion: Distortion
@@ -48,7 +48,6 @@ class Findings:
 def requirements(
     spec: Specification,
     catalog: Catalog,
-    bridge: Bridge,
     tables: WaveformTables,
     points: OperatingPoints,
     found: Findings,
@@ -56,7 +55,7 @@ def requirements(
     """List all requirements of a population in a fixed order."""
     return (
         *_bridge(spec, tables, points, found),
-        *_semiconductors(spec, bridge, points, found),
+        *_semiconductors(spec, points, found),
         *_inductor(
             "inverter-side inductor",
             spec.rules,
@@ -82,25 +81,38 @@ def _bridge(
     spec: Specification, tables: WaveformTables, points: OperatingPoints, found: Findings
 ) -> tuple[Constraint, ...]:
     limit = tables.linear_limit[found.state.scheme[:, 0]] * (1.0 - spec.rules.modulation_reserve)
-    device = found.device
-    use = spec.dc_voltage_max_v / device.voltage_rating_v[:, 0]
-    pace = found.designs.switching_frequency_hz / device.greatest_switching_frequency_hz[:, 0]
+    switches = [part.device for part in found.packages if part.role != CLAMP]
+    greatest = np.min([device.greatest_switching_frequency_hz[:, 0] for device in switches], axis=0)
     return (
         at_most("modulation index", "", found.state.modulation_index[:, points.modulation].max(-1), limit),
-        at_most("dc voltage over device rating", "", use, device.voltage_use_limit[:, 0]),
-        at_most("switching frequency over the device's greatest", "", pace, 1.0),
+        *(_voltage(spec, part) for part in found.packages),
+        at_most(
+            "switching frequency over the device's greatest",
+            "",
+            found.designs.switching_frequency_hz / greatest,
+            1.0,
+        ),
     )
 
 
-def _semiconductors(
-    spec: Specification, bridge: Bridge, points: OperatingPoints, found: Findings
-) -> tuple[Constraint, ...]:
-    losses, device, designs = found.losses, found.device, found.designs
-    limit = device.junction_limit_c[:, 0] - spec.rules.junction_margin
-    switch = losses.switch_temperature[:, points.thermal].max(-1)
-    diode = losses.diode_temperature[:, points.thermal].max(-1)
-    packages = 2.0 * bridge.leg_copies * len(bridge.modelled_legs) * designs.parallel
-    covered = packages * device.mounting_area_m2[:, 0] / found.sink.base_area_m2
+def _voltage(spec: Specification, part: Packages) -> Constraint:
+    rating, limit = part.device.voltage_rating_v[:, 0], part.device.voltage_use_limit[:, 0]
+    which = "device" if part.role == OUTER else f"{part.role} device"
+    return at_most(
+        f"dc voltage over {which} rating", "", spec.dc_voltage_max_v * part.blocking_share / rating, limit
+    )
+
+
+def _semiconductors(spec: Specification, points: OperatingPoints, found: Findings) -> tuple[Constraint, ...]:
+    losses = found.losses
+    greatest = found.packages[0].device.junction_limit_c[:, 0]
+    limit = greatest - spec.rules.junction_margin
+    # of parts with different limits the one nearest to its own counts, told as if its limit were the outer's
+    switch, diode = (
+        greatest + over[:, points.thermal].max(-1)
+        for over in (losses.switch_over_limit, losses.diode_over_limit)
+    )
+    covered = np.sum([part.mounting_area for part in found.packages], axis=0) / found.sink.base_area_m2
     scale, hot = limit - spec.ambient_c, spec.rules.sink_temperature_limit
     return (
         at_most("switch junction temperature", "degC", switch, limit, scale),

@@ -12,7 +12,6 @@ from models.evaluation import Constraint, Evaluation
 from models.operating_points import OperatingPoints
 from models.requirements import Findings
 from models.specification import CALIFORNIAN_WEIGHTS, EUROPEAN_WEIGHTS, Specification
-from models.waveforms.bridges import Bridge
 
 Array = NDArray[np.float64]
 PACKAGE_DENSITY = 4000.0  # kg/m3, moulded package with copper tab, estimate
@@ -31,7 +30,6 @@ def weighted_efficiency(efficiency: Array, weights: Array) -> Array:
 def roll_up(
     spec: Specification,
     catalog: Catalog,
-    bridge: Bridge,
     points: OperatingPoints,
     found: Findings,
     constraints: tuple[Constraint, ...],
@@ -45,14 +43,14 @@ def roll_up(
     level = points.load_level[points.loads]
     power = level * spec.apparent_power_va
     efficiency = power / (power + sum(losses.values()))
-    volumes, masses = _volumes(spec, bridge, found), _masses(bridge, found, spec)
+    volumes, masses = _volumes(spec, found), _masses(spec, found)
     return Evaluation(
         load_level=level,
         rated=points.rated,
         losses=losses,
         volumes=volumes,
         masses=masses | {"housing": HOUSING_DENSITY * np.sum(list(volumes.values()), axis=0)},
-        prices=_prices(spec, catalog, bridge, found),
+        prices=_prices(spec, catalog, found),
         efficiency=efficiency,
         efficiency_weighted=weighted_efficiency(efficiency, points.weights(spec.weights)),
         efficiency_european=weighted_efficiency(efficiency, points.weights(EUROPEAN_WEIGHTS)),
@@ -94,17 +92,13 @@ def _losses(
     }
 
 
-def _packages(bridge: Bridge, found: Findings) -> Array:
-    return 2.0 * bridge.leg_copies * len(bridge.modelled_legs) * found.designs.parallel.astype(np.float64)
-
-
-def _volumes(spec: Specification, bridge: Bridge, found: Findings) -> dict[str, Array]:
+def _volumes(spec: Specification, found: Findings) -> dict[str, Array]:
     """Boxed volumes per component (n,) [m3]; `unused` is what the packing factor leaves empty."""
     first, second = found.inductors
     rules = spec.rules
     control = rules.control_volume_base + rules.control_volume_per_va * spec.apparent_power_va
     boxes = {
-        "semiconductors": _packages(bridge, found) * found.device.package_volume_m3[:, 0],
+        "semiconductors": np.sum([part.volume for part in found.packages], axis=0),
         "heatsink": found.sink.volume_m3,
         "inverter_inductor": spec.phases * first.volume,
         "grid_inductor": spec.phases * second.volume,
@@ -116,12 +110,12 @@ def _volumes(spec: Specification, bridge: Bridge, found: Findings) -> dict[str, 
     return boxes | {"unused": used * (1.0 / rules.packing_factor - 1.0)}
 
 
-def _masses(bridge: Bridge, found: Findings, spec: Specification) -> dict[str, Array]:
+def _masses(spec: Specification, found: Findings) -> dict[str, Array]:
     first, second = found.inductors
     rules = spec.rules
     control = rules.control_volume_base + rules.control_volume_per_va * spec.apparent_power_va
     return {
-        "semiconductors": _packages(bridge, found) * found.device.package_volume_m3[:, 0] * PACKAGE_DENSITY,
+        "semiconductors": PACKAGE_DENSITY * np.sum([part.volume for part in found.packages], axis=0),
         "heatsink": found.sink.mass_kg,
         "inverter_inductor": spec.phases * first.mass,
         "grid_inductor": spec.phases * second.mass,
@@ -131,14 +125,12 @@ def _masses(bridge: Bridge, found: Findings, spec: Specification) -> dict[str, A
     }
 
 
-def _prices(spec: Specification, catalog: Catalog, bridge: Bridge, found: Findings) -> dict[str, Array]:
+def _prices(spec: Specification, catalog: Catalog, found: Findings) -> dict[str, Array]:
     """Prices per component (n,) [currency]."""
     first, second = found.inductors
-    device, designs, cost = found.device, found.designs, catalog.cost
-    each = device.price_per_area_per_m2[:, 0] * designs.die_area_m2 + device.package_price[:, 0]
-    count = len(designs)
+    cost, count = catalog.cost, len(found.designs)
     return {
-        "semiconductors": _packages(bridge, found) * each,
+        "semiconductors": np.sum([part.price for part in found.packages], axis=0),
         "heatsink": found.sink.price,
         "inverter_inductor": spec.phases * first.price,
         "grid_inductor": spec.phases * second.price,

@@ -77,6 +77,9 @@ class DesignRules:
     surge_current_factor: float = rule(
         1.0, "", "peak current to carry without saturation over the rated peak"
     )
+    clamp_diode_current_share: float = rule(
+        0.7, "", "rated current of clamp diodes over that of the switches they stand beside"
+    )
     sink_temperature_limit: float = rule(
         95.0, "degC", "greatest heatsink temperature (touch, boards beside it)"
     )

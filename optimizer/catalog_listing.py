@@ -16,6 +16,7 @@ from optimizer.errors import InputError, PartsError, Problem
 
 KINDS = (
     "devices",
+    "clamp_diodes",
     "core_materials",
     "core_shapes",
     "conductors",

@@ -15,6 +15,7 @@ import numpy as np
 
 from models.designs import Designs, InductorDesigns
 from models.inverter import Inverter
+from models.waveforms.leg_commutations import INNER
 from optimizer.errors import InputError, Problem
 
 MOST_ROWS = 1_000_000
@@ -50,6 +51,7 @@ def columns(inverter: Inverter) -> tuple[Column, ...]:
         _positive("switching_frequency_hz"),
         _positive("die_area_mm2"),
         _whole("parallel", 1),
+        *_inner_columns(inverter),
         _positive("inverter_inductance_h"),
         _positive("grid_inductance_h", zero=True, default=0.0),
         _positive("filter_capacitance_f"),
@@ -60,6 +62,13 @@ def columns(inverter: Inverter) -> tuple[Column, ...]:
         *_inductor_columns(inverter, "inverter_inductor", None),
         *_inductor_columns(inverter, "grid_inductor", 0),
     )
+
+
+def _inner_columns(inverter: Inverter) -> tuple[Column, ...]:
+    """Columns of the inner positions, which only three-level legs have."""
+    if INNER not in inverter.packages.blocking:
+        return ()
+    return _choice("inner_device", inverter.catalog.devices.names), _positive("inner_die_area_mm2")
 
 
 def _inductor_columns(inverter: Inverter, side: str, default: int | None) -> tuple[Column, ...]:
@@ -237,6 +246,8 @@ def _designs(values: Mapping[str, Any]) -> Designs:
         switching_frequency_hz=values["switching_frequency_hz"],
         die_area_m2=1e-6 * values["die_area_mm2"],
         parallel=values["parallel"],
+        inner_device=values.get("inner_device", values["device"]),
+        inner_die_area_m2=1e-6 * values.get("inner_die_area_mm2", values["die_area_mm2"]),
         inverter_inductance_h=values["inverter_inductance_h"],
         grid_inductance_h=values["grid_inductance_h"],
         filter_capacitance_f=values["filter_capacitance_f"],

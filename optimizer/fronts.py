@@ -16,6 +16,7 @@ from models.catalog.parts import Catalog
 from models.designs import Designs, InductorDesigns
 from models.evaluation import Constraint, Evaluation
 from models.inverter import Inverter
+from models.waveforms.leg_commutations import INNER
 from optimizer.objectives import OBJECTIVES, distortion_column, margins_of, requirements_of
 from optimizer.populations import ClassResult, SearchResult, prepared_inverter
 from optimizer.space import SearchSpace
@@ -186,6 +187,7 @@ def choices(inverter: Inverter, designs: Designs) -> dict[str, Any]:
         "switching_frequency_hz": designs.switching_frequency_hz,
         "die_area_mm2": 1e6 * designs.die_area_m2,
         "parallel": designs.parallel,
+        **_inner(inverter, designs),
         "inverter_inductance_h": designs.inverter_inductance_h,
         "grid_inductance_h": designs.grid_inductance_h,
         "filter_capacitance_f": designs.filter_capacitance_f,
@@ -199,6 +201,16 @@ def choices(inverter: Inverter, designs: Designs) -> dict[str, Any]:
             if np.any(designs.grid_inductance_h > 0.0)
             else {}
         ),
+    }
+
+
+def _inner(inverter: Inverter, designs: Designs) -> dict[str, Any]:
+    """What the inner positions of three-level legs are made of."""
+    if INNER not in inverter.packages.blocking:
+        return {}
+    return {
+        "inner_device": np.array(inverter.catalog.devices.names)[designs.inner_device],
+        "inner_die_area_mm2": 1e6 * designs.inner_die_area_m2,
     }
 
 

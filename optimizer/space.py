@@ -15,6 +15,7 @@ from numpy.typing import NDArray
 from models.designs import Designs, InductorDesigns
 from models.inverter import Inverter
 from models.magnetics.sizing import CoreLadder, core_ladder, size_inductor
+from models.waveforms.leg_commutations import INNER, OUTER
 from models.waveforms.tables import WaveformTables
 from optimizer.study import Study
 from optimizer.study_schema import LC
@@ -63,11 +64,20 @@ class SearchSpace:
 
     @cached_property
     def devices(self) -> Ints:
-        """Catalogue indexes of the class's devices that bear the greatest dc voltage [-].
+        """Catalogue indexes of the class's devices for the outer positions of the legs [-]."""
+        return self._bearing(OUTER)
+
+    @cached_property
+    def inner_devices(self) -> Ints:
+        """Those for the inner positions of T-type legs, which block less than the outer ones [-]."""
+        return self._bearing(INNER)
+
+    def _bearing(self, role: str) -> Ints:
+        """Devices of the class that bear what a role blocks of the greatest dc voltage.
 
         Where none does, those of the highest rating stand in, so that the search can say what they lack.
         """
-        voltage = self.study.specification.dc_voltage_max_v
+        voltage = self.study.specification.dc_voltage_max_v * self.inverter.packages.blocking[role]
         of_class = self.inverter.catalog.devices.select(
             lambda device: device.device_class == self.device_class
         )
@@ -113,6 +123,7 @@ class SearchSpace:
             real("switching_frequency"),
             Variable("parallel", WHOLE, search.ranges["parallel"].low, search.ranges["parallel"].high),
             Variable("die area", LINEAR, 0.0, 1.0),
+            *self._inner_variables(),
             real("ripple"),
             *([] if search.filter_kind == LC else [real("grid_inductance_ratio")]),
             real("filter_capacitance_share"),
@@ -120,6 +131,15 @@ class SearchSpace:
             real("sink_resistance"),
             *(variable for name in inductors for variable in self._inductor_variables(name)),
         )
+
+    def _inner_variables(self) -> tuple[Variable, ...]:
+        """Of three-level legs: the inner part where it blocks less than the outer one, and its die area."""
+        blocking = self.inverter.packages.blocking
+        if INNER not in blocking:
+            return ()
+        mixed = blocking[INNER] < blocking[OUTER]
+        part = (_category("inner device", len(self.inner_devices)),) if mixed else ()
+        return (*part, Variable("inner die area", LINEAR, 0.0, 1.0))
 
     def _real(self, name: str) -> Variable:
         ends = self.study.search.ranges[name]
@@ -166,7 +186,7 @@ class SearchSpace:
         choose = {
             name: values[name].astype(np.int64) for name in ("device", "modulation", "dc link", "cooling")
         }
-        spec, catalog, tables = self.study.specification, self.inverter.catalog, self.inverter.tables
+        spec, tables = self.study.specification, self.inverter.tables
         device = self.devices[choose["device"]]
         scheme = self._schemes[choose["modulation"]]
         frequency = values["switching_frequency"]
@@ -182,7 +202,9 @@ class SearchSpace:
             inverter_inductance * grid_inductance / (inverter_inductance + grid_inductance),
             inverter_inductance,
         )
-        low, high = (catalog.devices.column(f"die_area_{end}_m2")[device] for end in ("min", "max"))
+        inner = device
+        if "inner device" in values:
+            inner = self.inner_devices[values["inner device"].astype(np.int64)]
         current = spec.apparent_power_va / (spec.phases * spec.phase_voltage_min_v)
         peak = np.sqrt(2.0) * current + 0.5 * ripple_current
         first = self._inductor(
@@ -199,8 +221,10 @@ class SearchSpace:
             device=device,
             modulation=scheme,
             switching_frequency_hz=frequency,
-            die_area_m2=low * (high / low) ** values["die area"],
+            die_area_m2=self._die_area(device, values["die area"]),
             parallel=values["parallel"].astype(np.int64),
+            inner_device=inner,
+            inner_die_area_m2=self._die_area(inner, values.get("inner die area", values["die area"])),
             inverter_inductance_h=inverter_inductance,
             grid_inductance_h=grid_inductance,
             filter_capacitance_f=capacitance,
@@ -211,6 +235,13 @@ class SearchSpace:
             forced_cooling=self._forced[choose["cooling"]],
             sink_resistance_k_per_w=values["sink_resistance"],
         )
+
+    def _die_area(self, device: Ints, unit: Array) -> Array:
+        """Die areas between the least and the greatest of each device, on a logarithmic scale [m2]."""
+        low, high = (
+            self.inverter.catalog.devices.column(f"die_area_{end}_m2")[device] for end in ("min", "max")
+        )
+        return np.asarray(low * (high / low) ** unit)
 
     def _surge(self, peak: Array, ripple_current: Array) -> Array:
         spec = self.study.specification

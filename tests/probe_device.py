@@ -16,7 +16,9 @@ from numpy.typing import NDArray
 
 from models.output_filter import LinePhasors
 from models.semiconductors.bridge_losses import BridgeLosses, Cooling, bridge_losses
+from models.semiconductors.packages import Packages
 from models.waveforms.bridges import BRIDGES, Bridge
+from models.waveforms.leg_commutations import ROLES, blocking_shares
 from models.waveforms.state import WaveformState, waveform_state
 from models.waveforms.tables import WaveformTables, waveform_tables
 
@@ -38,7 +40,7 @@ IDEAL: dict[str, float | bool] = {
     "gate_swing_v": 1.0, "junction_case_k_m2_per_w": 1e-9, "junction_case_reference_area_m2": 1.0,
     "gate_unit_power_w": 0.0,
     "junction_case_exponent": 0.0, "diode_junction_case_factor": 1.0, "case_sink_k_per_w": 1e-9,
-    "dead_time_s": 0.0, "reference_current_density_a_per_m2": 1.0,
+    "junction_limit_c": 150.0, "dead_time_s": 0.0, "reference_current_density_a_per_m2": 1.0,
 }  # fmt: skip
 
 
@@ -59,6 +61,16 @@ METERS: dict[str, dict[str, float | bool]] = {
     # with an endless dead time any reversed current takes the whole output charge: hard turn-ons are left
     "hard_turn_ons": {"output_charge_c_per_m2": 1.0, "dead_time_s": 1e15},
 }
+
+
+def packages(bridge: Bridge, part: Any, parallel: Array, area: Array) -> tuple[Packages, ...]:
+    """Packages of the same part in every role of a bridge's legs."""
+    blocking, roles = blocking_shares(bridge.leg_type), list(ROLES[bridge.leg_type].values())
+    legs = bridge.leg_copies * len(bridge.modelled_legs)
+    return tuple(
+        Packages(role, part, parallel, area, roles.count(role) * legs, share)
+        for role, share in blocking.items()
+    )
 
 
 @dataclass(frozen=True)
@@ -101,9 +113,7 @@ class At:
         count = len(parts.hot_c)
         cooling = Cooling(25.0, lambda power, rows: np.zeros_like(power))
         return bridge_losses(
-            parts,
-            np.full(count, parallel),
-            np.full(count, area),
+            packages(self.entry, parts, np.full(count, parallel), np.full(count, area)),
             np.full(count, frequency),
             self.entry,
             self.tables,

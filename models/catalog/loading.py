@@ -17,6 +17,7 @@ from models.catalog.schemas import COST_SCHEMA, SCHEMAS, Schema
 _FOLDER = Path(__file__).parent
 _TOML_FILES = (
     "devices.toml",
+    "clamp_diodes.toml",
     "core_materials.toml",
     "conductors.toml",
     "ac_capacitors.toml",

@@ -11,6 +11,7 @@ import math
 from collections.abc import Mapping
 from dataclasses import dataclass, field
 
+from models.catalog.clamp_diode import ClampDiode
 from models.catalog.cost_model import CostModel
 from models.catalog.limits import LimitBand, LimitTable
 from models.catalog.part_table import PartTable
@@ -20,6 +21,7 @@ __all__ = [
     "DEVICE_CLASSES",
     "AcCapacitor",
     "Catalog",
+    "ClampDiode",
     "Conductor",
     "CoreMaterial",
     "CoreShape",
@@ -210,6 +212,7 @@ class Catalog:
     """All parts and tables a study chooses from."""
 
     devices: PartTable[Device]
+    clamp_diodes: PartTable[ClampDiode]
     core_materials: PartTable[CoreMaterial]
     core_shapes: PartTable[CoreShape]
     conductors: PartTable[Conductor]

@@ -17,6 +17,7 @@ from models.catalog.device_sheet import DEVICE_RULES, device_anchors
 from models.catalog.parts import (
     DEVICE_CLASSES,
     AcCapacitor,
+    ClampDiode,
     Conductor,
     CoreMaterial,
     CoreShape,
@@ -145,6 +146,19 @@ SCHEMAS: tuple[Schema, ...] = (
             *(warm_energy(name) for name in ("turn_on", "turn_off", "recovery")),
         ),
         anchors=lambda plain: device_anchors(bool(plain["shared_die"])),
+    ),
+    Schema(
+        "clamp_diodes",
+        ClampDiode,
+        zero_allowed=frozenset(
+            {
+                "recovery_energy_j_per_av",
+                "recovery_temperature_coefficient_per_k",
+                "output_charge_c_per_m2",
+                "output_charge_voltage_exponent",
+            }
+        ),
+        at_most_one=frozenset({"voltage_use_limit"}),
     ),
     Schema(
         "core_materials",

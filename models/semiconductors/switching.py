@@ -4,8 +4,9 @@ E = e V_ref I_ref (I/I_ref)^k_i (V/V_ref)^k_v [1 - k_T (T_hot - T)] with I_ref =
 each angle one of the leg's switches turns on at |i| - offset and off at |i| + offset, the offset being half
 the local ripple (exactly: the flux deviation at the instant). Where the current reverses within the period,
 turn-on is soft: no overlap, no recovery, and the reversed current recharges the output capacitances as far as
-the dead time lets it. Output charge of unipolar parts costs Q_oss V per hard turn-on (Kasper, Burkart, Deboy,
-Kolar 2016); a data-sheet turn-on energy that contains it is reduced by it first.
+the dead time lets it. Output charge of unipolar parts costs Q V/2 per hard turn-on for every position whose
+voltage changes by V: Q_oss V in a two-level leg of equal parts (Kasper, Burkart, Deboy, Kolar 2016); a
+data-sheet turn-on energy that contains it is reduced by it first.
 """
 
 from __future__ import annotations
@@ -22,13 +23,27 @@ LEAST_CURRENT_SHARE = 1e-9  # of the reference current: keeps logarithms finite 
 
 
 @dataclass(frozen=True)
+class Dies:
+    """Parallel dies of one position: catalogue fields (n, 1) and switch die area in all (n, 1) [m2]."""
+
+    device: Any
+    area: Array
+
+    @property
+    def rated_current(self) -> Array:
+        """Reference current of the energies [A]."""
+        return np.asarray(self.device.reference_current_density_a_per_m2 * self.area)
+
+
+@dataclass(frozen=True)
 class LegSwitching:
     """Loss of one switching leg, per its modelled operating points.
 
     Attributes:
         turn_on_hot, turn_off_hot, recovery_hot: both switches together, at the hot reference temperature [W].
         output_charge: loss of charging the output capacitances [W].
-        mean_current: mean |i| over the line period [A].
+        mean_current, mean_square: means over the line period of |i| [A] and i^2 [A2] where the dies
+            commutate.
     """
 
     turn_on_hot: Array
@@ -36,6 +51,7 @@ class LegSwitching:
     recovery_hot: Array
     output_charge: Array
     mean_current: Array
+    mean_square: Array
 
 
 def energy_scale(energy: Array, voltage: Array, exponent: Array, device: Any) -> Array:
@@ -65,19 +81,19 @@ def overlap_turn_on_energy(device: Any) -> Array:
     )
 
 
-def charge_left(valley: Array, charge: Array, dead_time: Array) -> Array:
+def charge_left(valley: Array, node_charge: Array, dead_time: Array) -> Array:
     """Share of the output-charge loss that a turn-on still costs [-].
 
     Args:
         valley: current at turn-on, negative where it has reversed [A].
-        charge: output charge of one position [C].
+        node_charge: charge that all positions at the switch node exchange in a commutation [C].
         dead_time: [s].
 
-    A reversed current brings the charge |i| t_d of the 2 Q_oss that the switch node needs; what is left of
-    the voltage swing, 1 - |i| t_d/(2 Q_oss), costs its square, as with constant capacitances (estimate for
-    the nonlinear ones).
+    A reversed current brings the charge |i| t_d of the Q that the switch node needs (2 Q_oss of a two-level
+    leg); what is left of the voltage swing, 1 - |i| t_d/Q, costs its square, as with constant capacitances
+    (estimate for the nonlinear ones).
     """
-    rest = np.asarray(valley * (0.5 * dead_time / (charge + TINY_CHARGE)))
+    rest = np.asarray(valley * (dead_time / (node_charge + TINY_CHARGE)))
     rest += 1.0
     np.clip(rest, 0.0, 1.0, out=rest)
     rest *= rest
@@ -85,8 +101,9 @@ def charge_left(valley: Array, charge: Array, dead_time: Array) -> Array:
 
 
 def leg_switching(
-    device: Any,
-    total_area: Array,
+    switch: Dies,
+    diode: Dies,
+    node_charge: Array,
     voltage: Array,
     frequency: Array,
     current: Array,
@@ -96,23 +113,27 @@ def leg_switching(
     """Average the switching energies of one leg over half a line period.
 
     Args:
-        device: catalogue fields, broadcastable with the operating points (n, p).
-        total_area: switch die area of one position [m2].
-        voltage: dc voltage [V].
+        switch: the dies that turn on and off.
+        diode: the dies whose diode hands the current over and recovers.
+        node_charge: charge that all positions at the switch node exchange in a commutation [C].
+        voltage: commutated voltage [V].
         frequency: switching frequency [Hz].
         current: phase current at the middles of the angle cells, (n, p, a) [A].
         offset: current deviation at the switching instants, (n, p, a); overwritten [A].
-        share: 1 where the leg switches, 0 where it is clamped, (n, 1, a) [-].
+        share: 1 where these dies commutate, 0 elsewhere, (n, 1, a) or (n, p, a) [-].
 
     Returns:
         Losses of both switches of the leg, (n, p).
     """
+    device = switch.device
     magnitude = np.abs(current)
-    reference = (device.reference_current_density_a_per_m2 * total_area)[..., None]
+    shares = np.broadcast_to(share, magnitude.shape)
+    carried = magnitude * shares
+    mean_square = np.einsum("...a,...a->...", carried, magnitude)
+    reference = switch.rated_current[..., None]
     valley = magnitude - offset
     peak = np.add(magnitude, offset, out=offset)
     log_valley, log_peak = _log_share(np.abs(valley), reference), _log_share(peak, reference)
-    shares = np.broadcast_to(share, magnitude.shape)
     hard = shares * (valley > 0.0)
     count = magnitude.shape[-1]
     per_second = frequency / count * reference[..., 0]
@@ -127,29 +148,32 @@ def leg_switching(
     exponents = (
         device.turn_on_current_exponent,
         device.turn_off_current_exponent,
-        device.recovery_current_exponent,
+        diode.device.recovery_current_exponent,
     )
     on, off, recovery = (exponent[..., None] for exponent in exponents)
     overlap = energy_scale(overlap_turn_on_energy(device), voltage, device.energy_voltage_exponent, device)
     turn_off = energy_scale(device.turn_off_energy_j_per_av, voltage, device.energy_voltage_exponent, device)
     recovered = energy_scale(
-        device.recovery_energy_j_per_av, voltage, device.recovery_voltage_exponent, device
+        diode.device.recovery_energy_j_per_av, voltage, diode.device.recovery_voltage_exponent, diode.device
     )
-    charge = output_charge(device, voltage, total_area)
+    if diode is not switch:
+        ratio = switch.rated_current / diode.rated_current
+        recovered = recovered * ratio ** (diode.device.recovery_current_exponent - 1.0)
     (turned_on,) = summed(on, log_valley, hard)
     (turned_off,) = summed(off, log_peak, shares)
     reversed_too, hard_too = summed(off, log_valley, shares, hard)
     recovering = summed(recovery, log_valley, hard)[0] if recovered.any() else np.zeros_like(turned_on)
     charged = np.zeros_like(turned_on)
-    if charge.any():
-        left = charge_left(valley, charge[..., None], device.dead_time_s[..., None])
+    if node_charge.any():
+        left = charge_left(valley, node_charge[..., None], device.dead_time_s[..., None])
         charged = np.einsum("...a,...a->...", shares, left)
     return LegSwitching(
         turn_on_hot=overlap * per_second * turned_on,
         turn_off_hot=turn_off * per_second * (turned_off + reversed_too - hard_too),
         recovery_hot=recovered * per_second * recovering,
-        output_charge=charge * voltage * frequency / count * charged,
-        mean_current=magnitude @ np.full(count, 1.0 / count),
+        output_charge=0.5 * node_charge * voltage * frequency / count * charged,
+        mean_current=carried @ np.full(count, 1.0 / count),
+        mean_square=mean_square / count,
     )
 
 

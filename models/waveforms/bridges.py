@@ -14,10 +14,12 @@ Lipo (1999).
 from __future__ import annotations
 
 from collections.abc import Callable
-from dataclasses import dataclass
+from dataclasses import dataclass, replace
 
 import numpy as np
 from numpy.typing import NDArray
+
+from models.waveforms.leg_positions import NEUTRAL_POINT_CLAMPED, T_TYPE, TWO_LEVEL
 
 Array = NDArray[np.float64]
 SINE_LIMIT = 1.0
@@ -61,6 +63,8 @@ class Bridge:
         modulations: the schemes that a search chooses from.
         levels: levels of a leg; a three-level leg compares with two carriers in phase (phase disposition)
             [-].
+        leg_type: a key of `leg_positions.LEG_POSITIONS`, or "" where the waveforms do not depend on it.
+        slow_order: lowest multiple of the line frequency in the dc-link current, 0 where there is none [-].
         further: schemes that only `line_period` evaluates: line-switched ones, and those that follow the
             current.
     """
@@ -74,6 +78,8 @@ class Bridge:
     index_base: float
     modulations: tuple[Modulation, ...]
     levels: int = 2
+    leg_type: str = TWO_LEVEL
+    slow_order: int = 0
     further: tuple[Modulation, ...] = ()
 
     def scheme(self, name: str) -> Modulation:
@@ -163,6 +169,7 @@ FULL_BRIDGE = Bridge(
     leg_copies=1,
     current_sign=(1, -1),
     index_base=1.0,
+    slow_order=2,
     modulations=(
         Modulation("bipolar", SINE_LIMIT, _opposed_sines, (1, -1), (1, 1)),
         Modulation("unipolar", SINE_LIMIT, _opposed_sines, (1, 1), (1, 1)),
@@ -215,17 +222,21 @@ THREE_LEVEL_HALF_BRIDGE = Bridge(
     index_base=0.5,
     modulations=(Modulation("phase disposition", SINE_LIMIT, _one_sine, (1,), (1,)),),
     levels=3,
+    leg_type="",
+    slow_order=1,
 )
 THREE_LEVEL_FULL_BRIDGE = Bridge(
     name="single-phase three-level full bridge",
     phases=1,
     voltage_weights=(1.0, -1.0),
-    modelled_legs=(0, 1),
-    leg_copies=1,
-    current_sign=(1, -1),
+    modelled_legs=(0,),
+    leg_copies=2,
+    current_sign=(1,),
     index_base=1.0,
     modulations=(Modulation("phase disposition", SINE_LIMIT, _opposed_sines, (1, 1), (1, 1)),),
     levels=3,
+    leg_type="",
+    slow_order=2,
 )
 THREE_LEVEL_BRIDGE = Bridge(
     name="three-phase three-level bridge",
@@ -246,11 +257,20 @@ THREE_LEVEL_BRIDGE = Bridge(
         ),
     ),
     levels=3,
+    leg_type="",
+    slow_order=3,
 )
-BRIDGES = {bridge.name: bridge for bridge in (FULL_BRIDGE, SIX_SWITCH_BRIDGE)}
-"""Bridges that a study can name: those whose losses are modelled."""
-
-ALL_BRIDGES = BRIDGES | {
-    bridge.name: bridge for bridge in (THREE_LEVEL_HALF_BRIDGE, THREE_LEVEL_FULL_BRIDGE, THREE_LEVEL_BRIDGE)
+_THREE_LEVEL = {
+    THREE_LEVEL_HALF_BRIDGE: "single-phase half bridge",
+    THREE_LEVEL_FULL_BRIDGE: "single-phase full bridge",
+    THREE_LEVEL_BRIDGE: "three-phase bridge",
 }
-"""All bridges whose waveforms `line_period` evaluates."""
+BRIDGES = {FULL_BRIDGE.name: FULL_BRIDGE, SIX_SWITCH_BRIDGE.name: SIX_SWITCH_BRIDGE} | {
+    f"{name}, {leg_type}": replace(bridge, name=f"{name}, {leg_type}", leg_type=leg_type)
+    for bridge, name in _THREE_LEVEL.items()
+    for leg_type in (NEUTRAL_POINT_CLAMPED, T_TYPE)
+}
+"""Bridges that a study can name."""
+
+ALL_BRIDGES = BRIDGES | {bridge.name: bridge for bridge in _THREE_LEVEL}
+"""All bridges whose waveforms `line_period` evaluates; three-level ones also without a leg type."""

@@ -15,6 +15,8 @@ from dataclasses import dataclass
 import numpy as np
 from numpy.typing import NDArray
 
+from models.waveforms.bridges import Bridge
+
 Array = NDArray[np.float64]
 Complex = NDArray[np.complex128]
 ORDERS = np.arange(1, 13, 2)
@@ -95,3 +97,15 @@ def reference_harmonics(samples: Array) -> Complex:
     count = samples.shape[-1]
     angle = 2.0 * np.pi * (np.arange(count) + 0.5) / count
     return 2.0j / count * (samples @ np.exp(-1j * np.outer(angle, ORDERS)))
+
+
+def level_shares(bridge: Bridge, reference: Array) -> tuple[Array, Array]:
+    """Share of a switching period that a leg stands at the upper rail and at the lower one [-].
+
+    Args:
+        bridge: levels of its legs.
+        reference: of the leg, any shape [-].
+    """
+    if bridge.levels == 2:
+        return 0.5 * (1.0 + reference), 0.5 * (1.0 - reference)
+    return np.maximum(reference, 0.0), np.maximum(-reference, 0.0)

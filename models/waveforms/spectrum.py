@@ -15,6 +15,7 @@ from numpy.typing import NDArray
 from scipy.special import jv
 
 from models.waveforms.bridges import Bridge, Modulation
+from models.waveforms.switching_period import cells
 
 Array = NDArray[np.float64]
 ANGLE_SAMPLES = 384
@@ -65,12 +66,15 @@ def carrier_coefficients(
 ) -> NDArray[np.complex128]:
     """Complex sideband coefficients of the filter voltage, (index, m - 1, angle harmonic) [V_dc peak]."""
     angle = 2.0 * np.pi * (np.arange(ANGLE_SAMPLES) + 0.5) / ANGLE_SAMPLES
-    duty = 0.5 * (1.0 + modulation.references(*np.broadcast_arrays(angle, modulation_index[:, None])))
+    references = modulation.references(*np.broadcast_arrays(angle, modulation_index[:, None]))
+    duty, _ = cells(bridge, references)
+    step = 1.0 / (bridge.levels - 1)
     groups = np.arange(1, CARRIER_GROUPS + 1)[:, None]
     total = np.zeros((len(modulation_index), CARRIER_GROUPS, ANGLE_SAMPLES))
     for leg, weight in enumerate(bridge.voltage_weights):
         sign = float(modulation.carrier_sign[leg]) ** groups
-        total += weight * sign * 2.0 / (np.pi * groups) * np.sin(np.pi * groups * duty[:, None, :, leg])
+        height = step * weight * sign * 2.0 / (np.pi * groups)
+        total += height * np.sin(np.pi * groups * duty[:, None, :, leg])
     return np.fft.fft(total, axis=-1) / ANGLE_SAMPLES
 
 

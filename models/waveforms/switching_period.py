@@ -7,13 +7,40 @@ Lipo (2003), ch. 2, 5.
 
 from __future__ import annotations
 
-from dataclasses import dataclass
+from dataclasses import dataclass, field
 from functools import cached_property
 
 import numpy as np
 from numpy.typing import NDArray
 
+from models.waveforms.bridges import Bridge, Modulation
+
 Array = NDArray[np.float64]
+
+
+def cells(bridge: Bridge, references: Array) -> tuple[Array, Array]:
+    """Switching cell of each leg: its on-state share, and the leg's level with that cell off.
+
+    Args:
+        bridge: two-level legs are one cell over all of V_dc; of a three-level leg's two, over half of V_dc
+            each, only the one on the reference's side switches (phase disposition).
+        references: of all legs, legs last [-].
+
+    Returns:
+        Share in [0, 1] [-] and floor level [V_dc], of the references' shape.
+    """
+    if bridge.levels == 2:
+        return np.clip(0.5 * (1.0 + references), 0.0, 1.0), np.zeros_like(references)
+    upper = references >= 0.0
+    return np.clip(np.where(upper, references, 1.0 + references), 0.0, 1.0), np.where(upper, 0.5, 0.0)
+
+
+def switching_periods(bridge: Bridge, scheme: Modulation, angle: Array, index: Array) -> SwitchingPeriod:
+    """Switching periods of a scheme at line angles [rad] and modulation indexes [-] that broadcast."""
+    share, floor = cells(bridge, scheme.references(*np.broadcast_arrays(angle, index)))
+    weights = np.array(bridge.voltage_weights)
+    step = tuple((weights / (bridge.levels - 1)).tolist())
+    return SwitchingPeriod(share, scheme.carrier_sign, step, (floor - 0.5) @ weights)
 
 
 @dataclass(frozen=True)
@@ -21,14 +48,16 @@ class SwitchingPeriod:
     """A period normalised to length 1 and V_dc = 1; leading axes are any operating points.
 
     Attributes:
-        duty: on-state share of each leg's upper switch, legs last [-].
+        duty: on-state share of each leg's switching cell, legs last [-].
         carrier_sign: carrier sign per leg [-].
-        weights: voltage weight per leg [-].
+        weights: voltage that a leg's switching cell adds when on, per leg [V_dc].
+        base: voltage of all legs with their switching cells off, against the dc midpoint (...) [V_dc].
     """
 
     duty: Array
     carrier_sign: tuple[int, ...]
     weights: tuple[float, ...]
+    base: Array = field(default_factory=lambda: np.zeros(()))
 
     @cached_property
     def instants(self) -> tuple[Array, Array]:
@@ -50,20 +79,25 @@ class SwitchingPeriod:
         return np.diff(self.times, axis=-1)
 
     @cached_property
+    def states(self) -> NDArray[np.bool_]:
+        """Whether each leg's switching cell is on in each interval, legs last but one [-]."""
+        middle = np.abs(0.5 * (self.times[..., 1:] + self.times[..., :-1]) - 0.5)
+        duty = self.duty[..., None]
+        rows = [
+            middle < 0.5 * duty[..., leg, :] if sign > 0 else middle > 0.5 * (1.0 - duty[..., leg, :])
+            for leg, sign in enumerate(self.carrier_sign)
+        ]
+        return np.stack(rows, axis=-2)
+
+    @cached_property
     def levels(self) -> Array:
         """Voltage in each interval [V_dc]."""
-        middle = np.abs(0.5 * (self.times[..., 1:] + self.times[..., :-1]) - 0.5)
-        total = np.zeros_like(middle)
-        for leg, (sign, weight) in enumerate(zip(self.carrier_sign, self.weights, strict=True)):
-            duty = self.duty[..., leg, None]
-            state = middle < 0.5 * duty if sign > 0 else middle > 0.5 * (1.0 - duty)
-            total += weight * state
-        return total
+        return np.asarray(self.base)[..., None] + np.array(self.weights) @ self.states
 
     @cached_property
     def ripple_voltage(self) -> Array:
         """Voltage less its average over the period, in each interval [V_dc]."""
-        return self.levels - (self.duty @ np.array(self.weights))[..., None]
+        return self.levels - (self.base + self.duty @ np.array(self.weights))[..., None]
 
     @cached_property
     def flux(self) -> Array:

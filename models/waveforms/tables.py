@@ -13,9 +13,10 @@ import numpy as np
 from numpy.typing import NDArray
 
 from models.waveforms.bridges import BRIDGES, Bridge, Modulation
-from models.waveforms.device_currents import reference_harmonics
+from models.waveforms.dc_link_current import rail_moments
+from models.waveforms.device_currents import level_shares, reference_harmonics
 from models.waveforms.spectrum import ANGLE_SAMPLES, CARRIER_GROUPS, sidebands
-from models.waveforms.switching_period import SwitchingPeriod
+from models.waveforms.switching_period import switching_periods
 
 Array = NDArray[np.float64]
 Ints = NDArray[np.int64]
@@ -40,10 +41,14 @@ class WaveformTables:
         commutation_offset: (s, i, a) turn-on happens at |i| - offset, turn-off at |i| + offset [V_dc/(L
             f_s)].
         switching_share: (s, a) 1 where the leg switches at the carrier frequency, 0 where it is clamped [-].
+        error_legs: (s,) legs whose dead-time errors add in the filter voltage, times their commutated voltage
+            over V_dc [-].
         leg_switching: (s, l) 1 for modelled legs that switch at the carrier frequency [-].
         reference_constant, reference_slope: (s, l, order) leg reference harmonics U = constant + M slope,
             seen from the leg's own current [-].
-        on_mean, on_cosine: (s, i) mean squared bridge state and its cos 2 theta moment [-].
+        high_share, low_share: (s, i, a) share of time that leg one stands at the upper and at the lower rail
+            [-].
+        rail_slow, rail_fast: (s, i, 3) moments of the positive rail's current, see `dc_link_current` [-].
         sideband_carrier, sideband_line: (s, k) multiples m and n [-].
         sideband_listed: (s, k) false for the rest lines of carrier groups [-].
         sideband_amplitude: (s, i, k) peak of the filter voltage [V_dc].
@@ -59,11 +64,14 @@ class WaveformTables:
     ripple_mean_square: Array
     commutation_offset: Array
     switching_share: Array
+    error_legs: Array
     leg_switching: Array
     reference_constant: NDArray[np.complex128]
     reference_slope: NDArray[np.complex128]
-    on_mean: Array
-    on_cosine: Array
+    high_share: Array
+    low_share: Array
+    rail_slow: Array
+    rail_fast: Array
     sideband_carrier: Array
     sideband_line: Array
     sideband_listed: NDArray[np.bool_]
@@ -78,6 +86,18 @@ class WaveformTables:
         scaled = np.clip(modulation_index * ((INDEX_POINTS - 1) / INDEX_MAX), 0.0, INDEX_POINTS - 1.000001)
         row = scaled.astype(np.int64)
         return row, scaled - row
+
+    def cell_currents(self, displacement: Array, peak: Array) -> Array:
+        """Current of leg one at the middles of the angle cells (n, q, a) [A].
+
+        Args:
+            displacement: current lag (n, q) [rad].
+            peak: of the current (n, q) [A].
+        """
+        parts = np.stack([np.cos(displacement), -np.sin(displacement)], axis=-1)
+        parts *= peak[..., None]
+        waves = np.stack([np.sin(self.angle), np.cos(self.angle)])
+        return (parts.reshape(-1, 2) @ waves).reshape(*parts.shape[:-1], -1)
 
     @staticmethod
     def read(table: Array, scheme: Ints, row: Ints, weight: Array) -> Array:
@@ -118,12 +138,12 @@ def _scheme_rows(
     fine_count = ANGLE_CELLS * FINE
     angle = np.pi * (np.arange(fine_count) + 0.5) / fine_count
     usable = np.minimum(index, scheme.linear_limit)
-    duty = 0.5 * (1.0 + scheme.references(*np.broadcast_arrays(angle, usable[:, None])))
-    period = SwitchingPeriod(np.clip(duty, 0.0, 1.0), scheme.carrier_sign, bridge.voltage_weights)
-    on_square = period.voltage_mean_square
-    share = _cell_means(1.0 - (_at_rail(duty[-1, :, 0]) & _at_rail(duty[1, :, 0])))
+    period = switching_periods(bridge, scheme, angle, usable[:, None])
+    share = _cell_means(1.0 - (_at_rail(period.duty[-1, :, 0]) & _at_rail(period.duty[1, :, 0])))
+    high, low = level_shares(bridge, scheme.references(*np.broadcast_arrays(angle, usable[:, None]))[..., 0])
     shapes = [period.loss_shape(alpha, beta).mean(-1) for alpha, beta in exponents]
-    spectrum = sidebands(bridge, scheme, usable, on_square.mean(-1), SIDEBAND_COUNT)
+    spectrum = sidebands(bridge, scheme, usable, period.voltage_mean_square.mean(-1), SIDEBAND_COUNT)
+    slow, fast = rail_moments(bridge, scheme, usable)
     constant, slope = _leg_references(bridge, scheme)
     groups = np.arange(1, CARRIER_GROUPS + 1)
     group_ripple = spectrum.group_mean_square / (2.0 * np.pi * groups) ** 2
@@ -132,11 +152,14 @@ def _scheme_rows(
         "ripple_mean_square": period.mean_square.mean(-1),
         "commutation_offset": _cell_means(-period.flux_at_turn_on(0)),
         "switching_share": share,
+        "error_legs": np.array(_error_legs(bridge, scheme)),
         "leg_switching": np.array([float(scheme.switching_legs[leg]) for leg in bridge.modelled_legs]),
         "reference_constant": constant,
         "reference_slope": slope,
-        "on_mean": on_square.mean(-1),
-        "on_cosine": (on_square * np.cos(2.0 * angle)).mean(-1),
+        "high_share": _cell_means(high),
+        "low_share": _cell_means(low),
+        "rail_slow": slow,
+        "rail_fast": fast,
         "sideband_carrier": spectrum.carrier_multiple,
         "sideband_line": spectrum.line_multiple,
         "sideband_listed": spectrum.listed,
@@ -147,12 +170,17 @@ def _scheme_rows(
     }
 
 
+def _error_legs(bridge: Bridge, scheme: Modulation) -> float:
+    """Of three phases only the own leg counts: with the star point's share of the others, orders that are no
+    multiples of three add up to the own leg's error.
+    """
+    legs = 1.0 if bridge.phases == 3 else float(sum(scheme.switching_legs))
+    return legs / (bridge.levels - 1)
+
+
 def _peak_ripple(bridge: Bridge, scheme: Modulation, index: Array) -> Array:
     angle = np.linspace(0.0, np.pi, PEAK_ANGLES)
-    duty = 0.5 * (1.0 + scheme.references(*np.broadcast_arrays(angle, index[:, None])))
-    return SwitchingPeriod(
-        np.clip(duty, 0.0, 1.0), scheme.carrier_sign, bridge.voltage_weights
-    ).peak_to_peak.max(-1)
+    return switching_periods(bridge, scheme, angle, index[:, None]).peak_to_peak.max(-1)
 
 
 def _cell_means(fine: NDArray[np.floating]) -> Array:

@@ -13,7 +13,8 @@ from models.capacitors import (
     DcLink,
     ac_filter_capacitor,
     dc_link,
-    double_frequency_capacitance,
+    in_series,
+    slow_ripple_capacitance,
     switching_ripple_capacitance,
 )
 from models.catalog import Catalog
@@ -44,9 +45,24 @@ def test_dielectric_loss(catalog: Catalog) -> None:
 def test_double_frequency_ripple_by_integration(power: float, volts: float, share: float) -> None:
     """The energy that swings with twice the line frequency, P/omega peak to peak, moves the voltage by dV."""
     omega = 2.0 * np.pi * 50.0
-    capacitance = double_frequency_capacitance(power, omega, volts, share * volts)
+    current = np.array([power / (np.sqrt(2.0) * volts)])
+    capacitance = slow_ripple_capacitance(current, 100.0, share * volts)[0]
     top, bottom = volts * (1.0 + 0.5 * share), volts * (1.0 - 0.5 * share)
     assert 0.5 * capacitance * (top**2 - bottom**2) == pytest.approx(power / omega)
+
+
+def test_a_link_without_slow_current_needs_no_capacitance_for_it() -> None:
+    assert slow_ripple_capacitance(np.array([3.0]), 0.0, 4.0) == 0.0
+
+
+def test_halves_in_series(catalog: Catalog) -> None:
+    one = bank(catalog, 0)
+    two = in_series(one, 2)
+    assert in_series(one, 1) is one
+    for name in ("series", "loss", "volume", "mass", "price"):
+        assert getattr(two, name) == pytest.approx(2.0 * getattr(one, name)), name
+    assert two.capacitance == pytest.approx(0.5 * one.capacitance)
+    assert two.ripple_share == pytest.approx(one.ripple_share)
 
 
 def test_switching_ripple_by_integration() -> None:

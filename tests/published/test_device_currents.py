@@ -12,7 +12,7 @@ import pytest
 from check_rows import CHECKS, assert_meets, lag_of, params, starting
 from probe_device import At, device
 
-from models.semiconductors.switching import leg_switching
+from models.semiconductors.switching import Dies, leg_switching
 
 SIX_SWITCH = "three-phase six-switch bridge"
 LEG = starting("DEV-2L-")
@@ -120,9 +120,11 @@ def test_switching_loss_of_one_switch() -> None:
     """The leg's law on a fine grid of angles; both of its switches together lose twice the row's value."""
     row, peak, volts = CHECKS["DEV-SW1"], 40.0, 600.0
     current = peak * np.sin(np.pi * (np.arange(2000) + 0.5) / 2000)[None, None]
+    dies = Dies(_half_each(peak, volts), np.array([[peak]]))
     found = leg_switching(
-        _half_each(peak, volts),
-        np.array([[peak]]),
+        dies,
+        dies,
+        np.zeros((1, 1)),
         np.array([volts]),
         np.array([[row["inputs"]["fsw_Hz"]]]),
         current,

@@ -7,7 +7,7 @@ from typing import Any
 import numpy as np
 import pytest
 from model_fixtures import Draw, Spaces
-from probe_device import At, device
+from probe_device import At, device, packages
 
 from models.catalog import Catalog
 from models.catalog.gathered import Gathered
@@ -15,7 +15,7 @@ from models.semiconductors.bridge_losses import BridgeLosses, Cooling, bridge_lo
 from models.waveforms.bridges import BRIDGES
 
 ENTRIES = [
-    pytest.param(bridge.name, scheme.name, id=scheme.name)
+    pytest.param(bridge.name, scheme.name, id=f"{bridge.name}, {scheme.name}")
     for bridge in BRIDGES.values()
     for scheme in bridge.modulations
 ]
@@ -36,8 +36,9 @@ PART_NAMES = ("conduction", "switching", "recovery", "output_charge", "dead_time
 def losses(
     at: At, part: Any, area: float = 5e-5, parallel: float = 1.0, ambient: float = 40.0, rise: float = 0.2
 ) -> BridgeLosses:
+    parts = packages(at.entry, part, np.array([parallel]), np.array([area]))
     return bridge_losses(
-        part, np.array([parallel]), np.array([area]), np.array([20e3]), at.entry, at.tables, at.state(),
+        parts, np.array([20e3]), at.entry, at.tables, at.state(),
         np.array([at.dc_voltage]), Cooling(ambient, lambda power, rows: rise * power),
     )  # fmt: skip
 
@@ -131,8 +132,9 @@ def test_catalogue_parts_at_a_working_point(catalog: Catalog) -> None:
     state = at("single-phase full bridge", "unipolar")
     for bound in ("die_area_min_m2", "die_area_max_m2"):
         index = np.array(chosen)
+        area = catalog.devices.column(bound)[index]
         found = bridge_losses(
-            Gathered(catalog.devices, index, 1), np.ones(len(index)), catalog.devices.column(bound)[index],
+            packages(state.entry, Gathered(catalog.devices, index, 1), np.ones(len(index)), area),
             np.full(len(index), 30e3), state.entry, state.tables, state.state(len(index)), np.array([400.0]),
             Cooling(40.0, lambda power, rows: 0.3 * power),
         )  # fmt: skip

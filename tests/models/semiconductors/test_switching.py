@@ -15,6 +15,7 @@ from probe_device import device
 
 from models.catalog import Catalog
 from models.semiconductors.switching import (
+    Dies,
     LegSwitching,
     charge_left,
     dead_time_loss,
@@ -45,8 +46,10 @@ def switched(
     **changed: Any,
 ) -> LegSwitching:
     current = peak * np.sin(ANGLE)[None, None]
+    dies = Dies(device(PART | changed), np.array([[area]]))
+    charge = 2.0 * output_charge(dies.device, np.array([volts]), dies.area)
     return leg_switching(
-        device(PART | changed), np.array([[area]]), np.array([volts]), np.array([[hertz]]), current,
+        dies, dies, charge, np.array([volts]), np.array([[hertz]]), current,
         np.full_like(current, offset), np.ones((1, 1, len(ANGLE))),
     )  # fmt: skip
 
@@ -115,7 +118,7 @@ def test_charge_left(valley: float) -> None:
     2 Q.
     """
     charge, dead = 5e-8, 2e-7
-    left = float(charge_left(np.array(valley), np.array(charge), np.array(dead)))
+    left = float(charge_left(np.array(valley), np.array(2.0 * charge), np.array(dead)))
     assert 0.0 <= left <= 1.0
     if valley >= 0.0:
         assert left == 1.0

@@ -15,6 +15,7 @@ from models.waveforms.bridges import BRIDGES
 ENTRIES = [
     pytest.param(bridge.name, scheme.name, id=scheme.name)
     for bridge in BRIDGES.values()
+    if bridge.levels == 2
     for scheme in bridge.modulations
 ]
 CONTINUOUS = [entry for entry in ENTRIES if entry.id != "one leg at line frequency"]

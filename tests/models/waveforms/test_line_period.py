@@ -120,6 +120,13 @@ def test_tables_agree_with_the_exact_line_period(bridge, place, index, displacem
 
     assert np.sqrt(read(tables.ripple_mean_square)) * unit == pytest.approx(exact.ripple_rms, rel=0.01)
     assert read(tables.peak_ripple) * unit == pytest.approx(exact.ripple_peak_to_peak, rel=0.015)
+
+
+@pytest.mark.parametrize(("bridge", "place"), [one for one in SEARCHED if BRIDGES[one[0]].levels == 2])
+@settings(max_examples=6, deadline=None)
+@given(index=st.floats(0.15, 1.0), displacement=st.floats(-1.5, 1.5))
+def test_two_level_device_currents_agree_with_the_exact_line_period(bridge, place, index, displacement):
+    tables, scheme = waveform_tables(bridge), BRIDGES[bridge].modulations[place]
     smooth = operation(
         bridge,
         scheme.name,

@@ -7,10 +7,10 @@ import pytest
 
 from models.waveforms.bridges import BRIDGES, FULL_BRIDGE, SIX_SWITCH_BRIDGE, Bridge, Modulation
 from models.waveforms.spectrum import CARRIER_GROUPS, carrier_coefficients, leg_sideband, sidebands
-from models.waveforms.switching_period import SwitchingPeriod
+from models.waveforms.switching_period import switching_periods
 
 ENTRIES = [
-    pytest.param(bridge, scheme, id=scheme.name)
+    pytest.param(bridge, scheme, id=f"{bridge.name}, {scheme.name}")
     for bridge in BRIDGES.values()
     for scheme in bridge.modulations
 ]
@@ -20,8 +20,7 @@ WORKING = INDEX > 0.4
 
 def mean_square(bridge: Bridge, scheme: Modulation) -> np.ndarray:
     angle = 2.0 * np.pi * (np.arange(3600) + 0.5) / 3600
-    duty = 0.5 * (1.0 + scheme.references(*np.broadcast_arrays(angle, INDEX[:, None])))
-    period = SwitchingPeriod(np.clip(duty, 0.0, 1.0), scheme.carrier_sign, bridge.voltage_weights)
+    period = switching_periods(bridge, scheme, angle, INDEX[:, None])
     return period.voltage_mean_square.mean(-1)
 
 

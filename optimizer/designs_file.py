@@ -198,6 +198,7 @@ _RESULT_STARTS = (
     "modulation_index_",
 )
 _RESULT_NAMES = {
+    "concept",
     "class_front",
     "overall_front",
     "device_class",

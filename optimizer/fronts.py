@@ -18,8 +18,7 @@ from models.evaluation import Constraint, Evaluation
 from models.inverter import Inverter
 from models.waveforms.leg_commutations import INNER
 from optimizer.objectives import OBJECTIVES, distortion_column, margins_of, requirements_of
-from optimizer.populations import ClassResult, SearchResult, prepared_inverter
-from optimizer.space import SearchSpace
+from optimizer.populations import ClassResult, SearchResult, search_space
 
 Array = NDArray[np.float64]
 SPECTRUM_DIGITS = 4
@@ -57,37 +56,36 @@ def front(result: SearchResult) -> Front:
     Args:
         result: of a search with at least one feasible candidate.
     """
-    inverter = prepared_inverter(result.study)
     kept = [(found, _class_front(found)) for found in result.classes if len(found.points)]
     objectives = np.concatenate([found.objectives[rows] for found, rows in kept])
     overall = moocore.is_nondominated(objectives)
     parts = []
     for found, rows in kept:
-        designs = SearchSpace(result.study, inverter, found.device_class).designs(found.points[rows])
-        parts.append((designs, inverter.evaluate(designs)))
-    required = [requirements_of(result.study.at_most, evaluation) for _, evaluation in parts]
+        space = search_space(result.study, found.concept)
+        designs = space.designs(found.points[rows])
+        parts.append((space.inverter, designs, space.inverter.evaluate(designs)))
+    required = [requirements_of(result.study.at_most, evaluation) for *_, evaluation in parts]
     table = pd.concat(
-        [design_table(inverter, *part, entries) for part, entries in zip(parts, required, strict=True)],
+        [design_table(*part, entries) for part, entries in zip(parts, required, strict=True)],
         ignore_index=True,
     )
     ids = [
-        f"{_initials(found.device_class)}{number:04d}"
-        for found, rows in kept
-        for number in range(1, len(rows) + 1)
+        f"{found.concept.initials}-{number:04d}" for found, rows in kept for number in range(1, len(rows) + 1)
     ]
     table.insert(0, "design_id", ids)
-    table.insert(1, "class_front", True)
-    table.insert(2, "overall_front", overall)
+    table.insert(1, "concept", np.concatenate([[found.concept.name] * len(rows) for found, rows in kept]))
+    table.insert(2, "class_front", True)
+    table.insert(3, "overall_front", overall)
     margins = pd.concat([margin_table(entries) for entries in required], ignore_index=True)
     margins.insert(0, "design_id", ids)
-    evaluations = [evaluation for _, evaluation in parts]
+    evaluations = [evaluation for *_, evaluation in parts]
     lines = [evaluation.distortion for evaluation in evaluations]
     listed = [np.where(item.lines.listed, item.lines.amplitude, 0.0) for item in lines]
     return Front(
         table=table,
         margins=margins,
-        limits=tuple((entry.name, entry.unit, entry.sense) for entry in required[0]),
-        limit_range=tuple(_range([entry.limit for entry in same]) for same in zip(*required, strict=True)),
+        limits=tuple((same[0].name, same[0].unit, same[0].sense) for same in _by_name(required)),
+        limit_range=tuple(_range([entry.limit for entry in same]) for same in _by_name(required)),
         load_level=evaluations[0].load_level,
         efficiency=np.concatenate([item.efficiency for item in evaluations]),
         line_order=np.concatenate([item.lines.order for item in lines]),
@@ -108,18 +106,13 @@ def _range(limits: list[Array]) -> tuple[float, float]:
     return float(together.min()), float(together.max())
 
 
-SHORT_NAMES = {
-    "silicon IGBT": "IGBT",
-    "superjunction MOSFET": "SJ",
-    "low-voltage MOSFET": "LV",
-    "SiC MOSFET": "SIC",
-    "GaN HEMT": "GAN",
-}
-"""What the designs of a class are called by; other classes by their own name."""
-
-
-def _initials(device_class: str) -> str:
-    return SHORT_NAMES.get(device_class, device_class.replace(" ", "")) + "-"
+def _by_name(required: list[tuple[Constraint, ...]]) -> list[list[Constraint]]:
+    """Constraints of all concepts by name: bridges differ in some."""
+    found: dict[str, list[Constraint]] = {}
+    for entries in required:
+        for entry in entries:
+            found.setdefault(entry.name, []).append(entry)
+    return list(found.values())
 
 
 def margin_table(constraints: tuple[Constraint, ...]) -> pd.DataFrame:

@@ -1,4 +1,4 @@
-"""The search: one NSGA-II population per device class, side by side on the cores, every evaluation kept."""
+"""The search: one NSGA-II population per concept, side by side on the cores, every evaluation kept."""
 
 from __future__ import annotations
 
@@ -18,6 +18,7 @@ from numpy.typing import NDArray
 
 from models.inverter import Inverter
 from optimizer.catalog_listing import read_catalog
+from optimizer.concepts import Concept
 from optimizer.nsga import ArrayEvaluator, ArrayNSGA2
 from optimizer.objectives import OBJECTIVES, requirements_of
 from optimizer.problem import ClassProblem
@@ -30,9 +31,9 @@ RECORD_EVERY = 5  # generations between two hypervolume records
 
 @dataclass(frozen=True)
 class Progress:
-    """Where one population stands: class, evaluations so far, hypervolume of its feasible candidates [-]."""
+    """Where a population stands: concept, evaluations so far, hypervolume of its feasible candidates [-]."""
 
-    device_class: str
+    concept: str
     evaluations: int
     hypervolume: float
 
@@ -42,7 +43,7 @@ class ClassResult:
     """What one population found.
 
     Attributes:
-        device_class: its class.
+        concept: its bridge and device class.
         points, objectives: all feasible candidates evaluated, (k, n_var) and (k, m).
         evaluations: candidates evaluated [-].
         hypervolume: (evaluations, hypervolume) records.
@@ -51,7 +52,7 @@ class ClassResult:
         seconds: time in the models and in all [s].
     """
 
-    device_class: str
+    concept: Concept
     points: Array
     objectives: Array
     evaluations: int
@@ -76,24 +77,35 @@ class SearchResult:
         return sum(found.evaluations for found in self.classes)
 
 
-_prepared: dict[str, Inverter] = {}
+_prepared: dict[tuple[str, str], Inverter] = {}
 
 
-def prepared_inverter(study: Study) -> Inverter:
+def prepared_inverter(study: Study, bridge: str | None = None) -> Inverter:
     """The study's inverter with everything solved that does not depend on a candidate; kept for the last
     study asked.
+
+    Args:
+        study: the study.
+        bridge: one of its bridges; its own where none is named.
 
     Raises:
         InputError: where the study names parts that the catalogue does not have.
     """
-    if study.file_hash not in _prepared:
-        catalog = read_catalog(study.catalog_files)
+    key = study.file_hash, bridge or study.specification.bridge
+    if key not in _prepared:
+        for other in [other for other in _prepared if other[0] != study.file_hash]:
+            del _prepared[other]
+        catalog = next(iter(_prepared.values())).catalog if _prepared else read_catalog(study.catalog_files)
         study.check_against(catalog)
-        inverter = Inverter(study.specification, catalog)
+        inverter = Inverter(study.with_bridge(key[1]).specification, catalog)
         _ = inverter.tables, inverter.sinks, inverter.ac_capacitor
-        _prepared.clear()
-        _prepared[study.file_hash] = inverter
-    return _prepared[study.file_hash]
+        _prepared[key] = inverter
+    return _prepared[key]
+
+
+def search_space(study: Study, concept: Concept) -> SearchSpace:
+    """The search space of one concept of a study."""
+    return SearchSpace(study, prepared_inverter(study, concept.bridge), concept.device_class)
 
 
 def normalised_hypervolume(study: Study, objectives: Array) -> float:
@@ -104,21 +116,21 @@ def normalised_hypervolume(study: Study, objectives: Array) -> float:
     return float(moocore.hypervolume(scaled, ref=np.ones(len(reference)))) if len(scaled) else 0.0
 
 
-def search_class(
-    study: Study, device_class: str, seed: int, report: Callable[[Progress], None] | None = None
+def search_concept(
+    study: Study, concept: Concept, seed: int, report: Callable[[Progress], None] | None = None
 ) -> ClassResult:
-    """Search one device class.
+    """Search one concept.
 
     Args:
         study: the study.
-        device_class: one of its classes.
-        seed: of the whole search; the class's own generator is derived from it and the class's position.
+        concept: one of its concepts.
+        seed: of the whole search; the concept's own generator is derived from it and the concept's position.
         report: called with the progress every few generations.
     """
     started = time.perf_counter()
-    problem = ClassProblem(SearchSpace(study, prepared_inverter(study), device_class))
+    problem = ClassProblem(search_space(study, concept))
     in_models = _Stopwatch(problem.assess)
-    rng = np.random.default_rng([seed, study.search.device_classes.index(device_class)])
+    rng = np.random.default_rng([seed, study.concepts.index(concept)])
     first = problem.space.repaired(latin_hypercube(rng, study.search.population, problem.n_var))
     algorithm = ArrayNSGA2(
         study.search.population,
@@ -138,10 +150,10 @@ def search_class(
             value = normalised_hypervolume(study, algorithm.F[algorithm.violation <= 0.0])
             records.append((problem.archive.evaluations, value))
             if report:
-                report(Progress(device_class, *records[-1]))
+                report(Progress(concept.name, *records[-1]))
     points, objectives = problem.archive.feasible()
     return ClassResult(
-        device_class=device_class,
+        concept=concept,
         points=points,
         objectives=objectives,
         evaluations=problem.archive.evaluations,
@@ -188,8 +200,8 @@ def _set_outbox(outbox: Any) -> None:
     _outbox = outbox
 
 
-def _worker(study: Study, device_class: str, seed: int) -> ClassResult:
-    return search_class(study, device_class, seed, _outbox.put if _outbox is not None else None)
+def _worker(study: Study, concept: Concept, seed: int) -> ClassResult:
+    return search_concept(study, concept, seed, _outbox.put if _outbox is not None else None)
 
 
 def process_context() -> BaseContext:
@@ -206,12 +218,12 @@ def search(
     workers: int | None = None,
     report: Callable[[Progress], None] | None = None,
 ) -> SearchResult:
-    """Search all device classes of a study.
+    """Search all concepts of a study.
 
     Args:
         study: the study.
         seed: same seed, same result, whatever the number of workers.
-        workers: processes; default one per core, never more than classes.
+        workers: processes; default one per core, never more than concepts.
         report: called with every population's progress.
 
     Returns:
@@ -220,15 +232,17 @@ def search(
     Raises:
         InputError: where the study names parts that the catalogue does not have.
     """
-    classes = study.search.device_classes
-    prepared_inverter(study)
-    count = min(workers or os.cpu_count() or 1, len(classes))
+    all_concepts = study.concepts
+    for bridge in study.search.bridges:
+        prepared_inverter(study, bridge)
+    count = min(workers or os.cpu_count() or 1, len(all_concepts))
     if count == 1:
-        return SearchResult(study, seed, tuple(search_class(study, name, seed, report) for name in classes))
+        found = tuple(search_concept(study, concept, seed, report) for concept in all_concepts)
+        return SearchResult(study, seed, found)
     context = process_context()
     outbox = context.Queue()
     with ProcessPoolExecutor(count, mp_context=context, initializer=_set_outbox, initargs=(outbox,)) as pool:
-        futures = [pool.submit(_worker, study, name, seed) for name in classes]
+        futures = [pool.submit(_worker, study, concept, seed) for concept in all_concepts]
         _relay(futures, outbox, report)
         return SearchResult(study, seed, tuple(future.result() for future in futures))
 

@@ -20,7 +20,7 @@ class SearchBar:
     """
 
     def __init__(self, study: Study, *, hidden: bool) -> None:
-        self.total = len(study.search.device_classes) * study.search.population * study.search.generations
+        self.total = len(study.concepts) * study.search.population * study.search.generations
         self.evaluations: dict[str, int] = {}
         self.hypervolumes: dict[str, float] = {}
         self.progress = Progress(
@@ -48,8 +48,8 @@ class SearchBar:
 
     def report(self, progress: ClassProgress) -> None:
         """Take in the progress of one population."""
-        self.evaluations[progress.device_class] = progress.evaluations
-        self.hypervolumes[progress.device_class] = progress.hypervolume
+        self.evaluations[progress.concept] = progress.evaluations
+        self.hypervolumes[progress.concept] = progress.hypervolume
         note = "hypervolume " + ", ".join(f"{name} {value:.3f}" for name, value in self.hypervolumes.items())
         done = sum(self.evaluations.values())
         self.progress.update(self.task, completed=done, note=note, description="searching")

@@ -23,12 +23,11 @@ from optimizer.populations import (
     ClassResult,
     Progress,
     SearchResult,
-    prepared_inverter,
     process_context,
     search,
+    search_space,
 )
 from optimizer.run_folder import RUN_FILE, Content, write_run
-from optimizer.space import SearchSpace
 from optimizer.study import Study
 
 DIGITS = 7
@@ -114,18 +113,19 @@ def ruled_out(result: SearchResult) -> list[tuple[str, float, str]]:
     told = []
     for name, share, margin in zip(closest.constraints, shares, closest.nearest, strict=True):
         if margin < 0.0:
-            told.append((name, float(share), f"{-margin:.1%} beyond its limit ({closest.device_class})"))
+            told.append((name, float(share), f"{-margin:.1%} beyond its limit ({closest.concept.name})"))
     return told
 
 
 def evaluated_table(result: SearchResult) -> pd.DataFrame:
     """Every feasible candidate of a search: what it is and its objectives."""
-    inverter = prepared_inverter(result.study)
     parts = []
     for found in result.classes:
         if len(found.points):
-            designs = SearchSpace(result.study, inverter, found.device_class).designs(found.points)
-            columns = choices(inverter, designs) | _objective_columns(result.study, found)
+            space = search_space(result.study, found.concept)
+            columns: dict[str, Any] = {"concept": found.concept.name}
+            columns |= choices(space.inverter, space.designs(found.points))
+            columns |= _objective_columns(result.study, found)
             parts.append(pd.DataFrame(columns))
     return pd.concat(parts, ignore_index=True)
 
@@ -152,13 +152,13 @@ def _summary(result: SearchResult, fronts: Front) -> dict[str, Any]:
             for name in study.objectives
         ],
         "evaluations": result.evaluations,
-        "feasible": {found.device_class: len(found.points) for found in result.classes},
+        "feasible": {found.concept.name: len(found.points) for found in result.classes},
         "designs": {
-            "class_front": fronts.table.device_class.value_counts().to_dict(),
+            "class_front": fronts.table.concept.value_counts().to_dict(),
             "overall_front": int(fronts.table.overall_front.sum()),
         },
         "hypervolume": {
-            found.device_class: [
+            found.concept.name: [
                 {"evaluations": count, "hypervolume": value} for count, value in found.hypervolume
             ]
             for found in result.classes
@@ -168,7 +168,7 @@ def _summary(result: SearchResult, fronts: Front) -> dict[str, Any]:
             for (name, unit, sense), (low, high) in zip(fronts.limits, fronts.limit_range, strict=True)
         ],
         "ruled_out": {
-            found.device_class: ruled_out(SearchResult(study, result.seed, (found,)))
+            found.concept.name: ruled_out(SearchResult(study, result.seed, (found,)))
             for found in result.classes
             if not len(found.points)
         },

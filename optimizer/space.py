@@ -117,7 +117,7 @@ class SearchSpace:
         inductors = ["inverter"] if search.filter_kind == LC else ["inverter", "grid"]
         return (
             _category("device", len(self.devices)),
-            _category("modulation", len(search.modulations)),
+            _category("modulation", len(self._schemes)),
             _category("dc link", len(self.dc_links)),
             _category("cooling", len(search.cooling)),
             real("switching_frequency"),
@@ -272,9 +272,9 @@ class SearchSpace:
 
     @cached_property
     def _schemes(self) -> Ints:
-        return np.array(
-            [self.inverter.bridge.modulation_index(name) for name in self.study.search.modulations]
-        )
+        """Schemes of the bridge among those the study names [-]."""
+        wanted, schemes = self.study.search.modulations, self.inverter.bridge.modulations
+        return np.array([place for place, scheme in enumerate(schemes) if scheme.name in wanted])
 
     @cached_property
     def _forced(self) -> Ints:

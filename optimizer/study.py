@@ -17,9 +17,10 @@ from models.specification import (
     DesignRules,
     Specification,
 )
+from optimizer.concepts import Concept, concepts
 from optimizer.errors import InputError, Problem
 from optimizer.quantity import show
-from optimizer.study_checks import check_content, chosen_modulations, phase_voltage
+from optimizer.study_checks import bridges_of, check_content, chosen_modulations, phase_voltage
 from optimizer.study_schema import (
     CALIFORNIAN,
     EUROPEAN,
@@ -47,7 +48,8 @@ class SearchSettings:
     """What the search may choose from, and how long it searches.
 
     Attributes:
-        modulations: names of the bridge's modulation schemes, in the bridge's order.
+        bridges: names, the specification's own first.
+        modulations: names of the bridges' modulation schemes to choose from; each bridge uses those it has.
         filter_kind: LCL or LC.
         device_classes: classes of semiconductors; each gets a front of its own.
         core_materials, conductors: names out of the catalogue; empty means all of it.
@@ -59,6 +61,7 @@ class SearchSettings:
         generations: [-].
     """
 
+    bridges: tuple[str, ...]
     modulations: tuple[str, ...]
     filter_kind: str
     device_classes: tuple[str, ...]
@@ -97,6 +100,16 @@ class Study:
     at_most: Mapping[str, float]
     catalog_files: tuple[Path, ...] = ()
 
+    @property
+    def concepts(self) -> tuple[Concept, ...]:
+        """What the study compares: every device class on every bridge."""
+        return concepts(self.search.bridges, self.search.device_classes)
+
+    @property
+    def concept_names(self) -> tuple[str, ...]:
+        """Names of the concepts."""
+        return tuple(concept.name for concept in self.concepts)
+
     @classmethod
     def read(cls, path: Path | str) -> Study:
         """Return the study of a file.
@@ -121,6 +134,11 @@ class Study:
             at_most=content.at_most,
             catalog_files=tuple(path.parent / name for name in content.catalog["files"]),
         )
+
+    def with_bridge(self, name: str) -> Study:
+        """The same study of one of its bridges alone."""
+        specification = replace(self.specification, bridge=name)
+        return replace(self, specification=specification, search=replace(self.search, bridges=(name,)))
 
     def with_effort(self, population: int | None, generations: int | None) -> Study:
         """The same study searched with another population or number of generations; None keeps the study's
@@ -232,7 +250,8 @@ def _search_settings(content: StudyContent) -> SearchSettings:
     search = {key: value for key, value in content.search.items() if key != "ranges"}
     unused = {GRID_RATIO} if content.filter_kind == LC else set()
     return SearchSettings(
-        modulations=tuple(scheme.name for scheme in chosen_modulations(content)),
+        bridges=bridges_of(content),
+        modulations=chosen_modulations(content),
         filter_kind=content.filter_kind,
         ranges={name: ends for name, ends in content.ranges.items() if name not in unused},
         **search,

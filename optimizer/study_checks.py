@@ -9,7 +9,7 @@ import math
 from collections.abc import Callable
 
 from models.specification import GRID_CONNECTED, STAND_ALONE
-from models.waveforms.bridges import BRIDGES, Modulation
+from models.waveforms.bridges import BRIDGES, Bridge, Modulation
 from optimizer.errors import InputError, Problem
 from optimizer.quantity import written
 from optimizer.study_schema import (
@@ -40,14 +40,26 @@ def phase_voltage(line_voltage_v: float, phases: int) -> float:
     return line_voltage_v / math.sqrt(phases)
 
 
-def chosen_modulations(content: StudyContent) -> tuple[Modulation, ...]:
-    """Return the modulation schemes the search may choose from; none where the study's are in trouble."""
-    bridge = BRIDGES.get(content.bridge.get("kind", ""))
-    if bridge is None or "modulations" not in content.bridge:
+def bridges_of(content: StudyContent) -> tuple[str, ...]:
+    """Names of the bridges a study compares, its own first; those in trouble are missing."""
+    kind = content.bridge.get("kind")
+    return (*((kind,) if kind else ()), *content.bridge.get("compared_with", ()))
+
+
+def chosen_modulations(content: StudyContent) -> tuple[str, ...]:
+    """Names of the modulation schemes the search may choose from, in the bridges' order; none where the
+    study's are in trouble.
+    """
+    if "modulations" not in content.bridge:
         return ()
-    names = content.bridge["modulations"] or tuple(scheme.name for scheme in bridge.modulations)
-    schemes = tuple(scheme for scheme in bridge.modulations if scheme.name in names)
-    return schemes if len(schemes) == len(names) else ()
+    known = dict.fromkeys(scheme.name for name in bridges_of(content) for scheme in BRIDGES[name].modulations)
+    names = content.bridge["modulations"] or tuple(known)
+    return tuple(name for name in known if name in names) if set(names) <= set(known) else ()
+
+
+def _schemes(content: StudyContent, bridge: Bridge) -> list[Modulation]:
+    names = chosen_modulations(content)
+    return [scheme for scheme in bridge.modulations if scheme.name in names]
 
 
 def _check_application_keys(reading: Reading, content: StudyContent) -> None:
@@ -67,11 +79,15 @@ def _check_dc_order(reading: Reading, content: StudyContent) -> None:
 
 
 def _check_dc_reaches_ac(reading: Reading, content: StudyContent) -> None:
+    for name in bridges_of(content):
+        _check_bridge_reaches_ac(reading, content, BRIDGES[name])
+
+
+def _check_bridge_reaches_ac(reading: Reading, content: StudyContent, bridge: Bridge) -> None:
     asked, dc_min = content.application, content.dc_voltage.get("min")
-    schemes = chosen_modulations(content)
+    schemes = _schemes(content, bridge)
     if dc_min is None or not schemes or not {"ac_voltage", "ac_voltage_tolerance", "phases"} <= asked.keys():
         return
-    bridge = BRIDGES[content.bridge["kind"]]
     if bridge.phases != asked["phases"]:
         return
     ac_max = asked["ac_voltage"] * (1.0 + asked["ac_voltage_tolerance"])
@@ -82,20 +98,33 @@ def _check_dc_reaches_ac(reading: Reading, content: StudyContent) -> None:
         reading.note(
             "application.dc_voltage.min",
             f"at least {math.ceil(needed * 10.0) / 10.0:.1f} V: less cannot make the greatest ac voltage, "
-            f'{written(ac_max, "V")} rms, with modulation "{best.name}"',
+            f'{written(ac_max, "V")} rms, with modulation "{best.name}"{_of_bridge(content, bridge)}',
         )
+
+
+def _of_bridge(content: StudyContent, bridge: Bridge) -> str:
+    return f" of the {bridge.name}" if len(bridges_of(content)) > 1 else ""
 
 
 def _check_bridge(reading: Reading, content: StudyContent) -> None:
     kind, phases = content.bridge.get("kind"), content.application.get("phases")
     if kind is None:
         return
-    bridge = BRIDGES[kind]
-    if phases is not None and bridge.phases != phases:
-        fitting = [other.name for other in BRIDGES.values() if other.phases == phases]
-        names = " or ".join(f'"{name}"' for name in fitting)
-        reading.note("bridge.kind", f"{names} where application.phases is {phases}")
-    known = Choice(tuple(scheme.name for scheme in bridge.modulations))
+    others = content.bridge.get("compared_with", ())
+    places = ("bridge.kind", *(f"bridge.compared_with[{index}]" for index in range(len(others))))
+    for place, name in zip(places, (kind, *others), strict=True):
+        if phases is not None and BRIDGES[name].phases != phases:
+            fitting = [other.name for other in BRIDGES.values() if other.phases == phases]
+            names = " or ".join(f'"{fit}"' for fit in fitting)
+            reading.note(place, f"{names} where application.phases is {phases}")
+        elif place != "bridge.kind" and name == kind:
+            reading.note(place, "a bridge other than bridge.kind")
+        elif chosen_modulations(content) and not _schemes(content, BRIDGES[name]):
+            own = " or ".join(f'"{scheme.name}"' for scheme in BRIDGES[name].modulations)
+            reading.note("bridge.modulations", f"{own} among them, for the {name}")
+    known = Choice(
+        tuple(dict.fromkeys(scheme.name for name in (kind, *others) for scheme in BRIDGES[name].modulations))
+    )
     for index, name in enumerate(content.bridge.get("modulations") or ()):
         try:
             known.read(name)

@@ -131,6 +131,7 @@ CUSTOM_WEIGHTING = (
 )
 BRIDGE = (
     Key("kind", Choice(tuple(BRIDGES))),
+    Key("compared_with", Several(Choice(tuple(BRIDGES))), ()),
     Key("modulations", Several(Text()), None),
 )
 FILTER = (Key("kind", Choice((LCL, LC)), LCL),)

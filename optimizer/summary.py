@@ -19,9 +19,9 @@ def print_summary(outcome: Outcome, *, as_json: bool) -> None:
         return
     console = Console()
     console.print(_table(outcome))
-    for device_class, reasons in outcome.summary["ruled_out"].items():
+    for concept, reasons in outcome.summary["ruled_out"].items():
         console.print(
-            f"{device_class}: nothing feasible. " + "; ".join(f"{name}: {miss}" for name, _, miss in reasons)
+            f"{concept}: nothing feasible. " + "; ".join(f"{name}: {miss}" for name, _, miss in reasons)
         )
     seconds = outcome.summary["seconds"]
     if outcome.kept:
@@ -41,11 +41,11 @@ def print_summary(outcome: Outcome, *, as_json: bool) -> None:
 def _table(outcome: Outcome) -> Table:
     study, front = outcome.result.study, outcome.front.table
     table = Table(
-        title=f"{study.name}: Pareto designs by device class (best value of each objective)",
+        title=f"{study.name}: Pareto designs by concept (best value of each objective)",
         box=SIMPLE_HEAD,
         padding=(0, 1, 0, 0),
     )
-    table.add_column("class")
+    table.add_column("concept")
     table.add_column("designs", justify="right")
     table.add_column("on overall\nfront", justify="right")
     for name in study.objectives:
@@ -54,12 +54,12 @@ def _table(outcome: Outcome) -> Table:
         table.add_column(heading, justify="right")
     table.add_column("frequency\n\\[kHz]", justify="right")
     for found in outcome.result.classes:
-        rows = front[front.device_class == found.device_class]
+        rows = front[front.concept == found.concept.name]
         if len(rows):
             best = [f"{rows[OBJECTIVES[name].column].min():.3g}" for name in study.objectives]
             hertz = rows.switching_frequency_hz / 1e3
             span = f"{hertz.min():.3g} to {hertz.max():.3g}"
-            table.add_row(found.device_class, str(len(rows)), str(int(rows.overall_front.sum())), *best, span)
+            table.add_row(found.concept.name, str(len(rows)), str(int(rows.overall_front.sum())), *best, span)
         else:
-            table.add_row(found.device_class, "0", "0", *["-"] * len(study.objectives), "-")
+            table.add_row(found.concept.name, "0", "0", *["-"] * len(study.objectives), "-")
     return table

@@ -22,7 +22,7 @@ DIGITS = 4
 PERCENT, KILO, MICRO = 100.0, 1e3, 1e-6
 
 ROUND = (1.0, 1.5, 2.0, 3.0, 4.0, 6.0, 8.0, 10.0)
-WORDS = ("design_id", "device_class", "device", "modulation", "cooling")
+WORDS = ("design_id", "concept", "device", "modulation", "cooling")
 FIGURES = ("junction_temperature_c", "sink_temperature_c", "loss_rated_w", "parallel", "die_area_mm2")
 SIDES = ("inverter_inductor", "grid_inductor")
 
@@ -50,9 +50,9 @@ class DesignData:
     load_level: tuple[float, ...]
     balanced: str
 
-    def shown(self, device_class: str) -> int:
+    def shown(self, concept: str) -> int:
         """Designs of a class that are drawn [-]."""
-        return sum(record["device_class"] == device_class for record in self.records)
+        return sum(record["concept"] == concept for record in self.records)
 
 
 def significant(values: ArrayLike, digits: int = DIGITS) -> NDArray[np.float64]:
@@ -103,8 +103,7 @@ def design_data(study: Study, front: Front, per_class: int = SHOWN_PER_CLASS) ->
     return DesignData(
         records=[dict(zip(columns, row, strict=True)) for row in zip(*columns.values(), strict=True)],
         total={
-            str(name): int(count)
-            for name, count in front.table["device_class"].value_counts(sort=False).items()
+            str(name): int(count) for name, count in front.table["concept"].value_counts(sort=False).items()
         },
         quantities=quantities,
         losses=tuple(losses),

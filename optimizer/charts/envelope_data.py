@@ -52,14 +52,14 @@ def envelope(
     front_only = evaluated is None or column not in evaluated or evaluated.empty
     source = (table if front_only or evaluated is None else evaluated).reset_index(drop=True)
     place = _bins(source[FREQUENCY].to_numpy(dtype=float), bins)
-    found = source.groupby([source["device_class"], place], sort=True, observed=True)[column].agg(
+    found = source.groupby([source["concept"], place], sort=True, observed=True)[column].agg(
         ["size", "idxmin"]
     )
     most = found["size"].groupby(level=0).transform("max")
     least = found["idxmin"][found["size"] >= np.minimum(most, FEWEST)]
-    chosen = source.loc[least].sort_values(["device_class", FREQUENCY], kind="stable")
+    chosen = source.loc[least].sort_values(["concept", FREQUENCY], kind="stable")
     columns = {
-        "device_class": chosen["device_class"].tolist(),
+        "concept": chosen["concept"].tolist(),
         SHOWN_FREQUENCY: plain(chosen[FREQUENCY] / KILO),
         column: plain(chosen[column]),
     }

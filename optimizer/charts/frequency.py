@@ -30,14 +30,14 @@ class EnvelopeView:
     Attributes:
         found: the envelope.
         quantity: what is least.
-        device_classes: in the study's order.
+        concepts: in the study's order.
         records: all shown designs: the axes hold for each of them.
         with_frequency: whether the axis of the frequency is labelled.
     """
 
     found: Envelope
     quantity: Quantity
-    device_classes: Sequence[str]
+    concepts: Sequence[str]
     records: Records
     with_frequency: bool
 
@@ -74,13 +74,13 @@ class EnvelopeView:
 
     @property
     def colour(self) -> alt.Color:
-        """By device class; the legend stands at the fronts."""
-        return alt.Color("device_class:N", scale=class_scales(self.device_classes)[0], legend=None)
+        """By concept; the legend stands at the fronts."""
+        return alt.Color("concept:N", scale=class_scales(self.concepts)[0], legend=None)
 
     def lines(self) -> alt.Chart:
         """A line a class through the best candidates of the frequency bins."""
         tooltip = [
-            alt.Tooltip("device_class:N", title="device class"),
+            alt.Tooltip("concept:N", title="concept"),
             alt.Tooltip(f"{SHOWN_FREQUENCY}:Q", title=FREQUENCY_TITLE, format=".3~r"),
             alt.Tooltip(f"{self.found.column}:Q", title=self.quantity.label, format=".3~r"),
         ]
@@ -108,7 +108,7 @@ def envelope_views(study: Study, found: Content) -> list[EnvelopeView]:
         study: the study.
         found: what is drawn.
     """
-    classes, records, last = study.search.device_classes, found.designs.records, ENVELOPED[-1]
+    classes, records, last = study.concept_names, found.designs.records, ENVELOPED[-1]
     return [
         EnvelopeView(item, quantity_of(name), classes, records, name == last)
         for name, item in zip(ENVELOPED, found.envelopes, strict=True)

@@ -17,19 +17,19 @@ LOWEST_SHARE = 5.0
 
 
 def load_curve(
-    data: DesignData, device_classes: Sequence[str], linked: Selections, width: int, height: int
+    data: DesignData, concepts: Sequence[str], linked: Selections, width: int, height: int
 ) -> alt.LayerChart:
     """Efficiency over load on one fixed axis.
 
     Args:
         data: shown designs.
-        device_classes: in the study's order.
+        concepts: in the study's order.
         linked: the dashboard's selections.
         width, height: of the plot [px].
     """
     x, y = _axes(data)
     levels = json.dumps([round(PERCENT * level, 6) for level in data.load_level])
-    colour = alt.Color("device_class:N", scale=class_scales(device_classes)[0], legend=None)
+    colour = alt.Color("concept:N", scale=class_scales(concepts)[0], legend=None)
     tooltip = [
         alt.Tooltip("load:Q", title="load [%]"),
         alt.Tooltip("efficiency:Q", title="efficiency [%]", format=".2f"),

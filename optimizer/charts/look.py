@@ -8,7 +8,7 @@ from typing import Any
 import altair as alt
 
 PALETTE = ("#800921", "#b7a000", "#1f0a90", "#06aea4", "#734ba8", "#985c14", "#939ee2", "#532649")
-"""One colour a device class: any two stay apart for readers with protanopia, deuteranopia or tritanopia."""
+"""One colour a concept: any two stay apart for readers with protanopia, deuteranopia or tritanopia."""
 
 SHAPES = (
     "circle",
@@ -45,13 +45,13 @@ FIRST_CLASSES = ("silicon IGBT", "superjunction MOSFET", "SiC MOSFET", "GaN HEMT
 """Classes that keep their colour and shape whatever others a study compares them with."""
 
 
-def class_scales(device_classes: Sequence[str]) -> tuple[alt.Scale, alt.Scale]:
-    """Colour and shape scale of the device classes, the same in every view.
+def class_scales(concepts: Sequence[str]) -> tuple[alt.Scale, alt.Scale]:
+    """Colour and shape scale of the concepts, the same in every view.
 
     Args:
-        device_classes: in the study's order; beyond eight, colours come back with other shapes.
+        concepts: in the study's order; beyond eight, colours come back with other shapes.
     """
-    names = list(device_classes)
+    names = list(concepts)
     order = [*FIRST_CLASSES, *(name for name in names if name not in FIRST_CLASSES)]
     rounds = [divmod(order.index(name), len(PALETTE)) for name in names]
     colours = [PALETTE[place] for _, place in rounds]

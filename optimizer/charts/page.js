@@ -44,12 +44,12 @@
 
   function chosenDesigns(view) {
     const group = view.signal("group");
-    const classes = view.signal("classes").device_class;
+    const classes = view.signal("classes").concept;
     const x = view.signal("x_axis");
     const y = view.signal("y_axis");
     const grouped = Boolean(group && group.x_value && group.y_value);
     const rows = designs.filter((design) =>
-      (!classes || classes.length === 0 || classes.includes(design.device_class)) &&
+      (!classes || classes.length === 0 || classes.includes(design.concept)) &&
       (!grouped || (within(group.x_value, design[x]) && within(group.y_value, design[y]))));
     return { grouped, rows: rows.sort((a, b) => a[columns.first] - b[columns.first]) };
   }

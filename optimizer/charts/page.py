@@ -55,7 +55,7 @@ def table_columns(study: Study, designs: DesignData) -> dict[str, Any]:
     """What the table shows: fields and heads, and by which objective it is sorted."""
     named = [
         ("design_id", "design"),
-        ("device_class", "device class"),
+        ("concept", "concept"),
         ("modulation", "modulation"),
         ("switching_frequency_khz", "switching frequency [kHz]"),
         *((quantity.column, quantity.label) for quantity in designs.quantities),

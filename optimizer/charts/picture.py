@@ -34,7 +34,7 @@ def front_picture(study: Study, front: Front, evaluated: pd.DataFrame | None = N
     envelopes = [view.lines().properties(width=430, height=140, title=view.title()) for view in views]
     across, upwards = found.designs.quantities[:2]
     chart = alt.hconcat(
-        still_fronts(across, upwards, study.search.device_classes).properties(width=460, height=340),
+        still_fronts(across, upwards, study.concept_names).properties(width=460, height=340),
         alt.vconcat(*envelopes, spacing=60, bounds="flush"),
         spacing=60,
         bounds="flush",
@@ -43,7 +43,7 @@ def front_picture(study: Study, front: Front, evaluated: pd.DataFrame | None = N
     return vl_convert.vegalite_to_png(spec, scale=PIXELS_PER_POINT)
 
 
-def still_fronts(across: Quantity, upwards: Quantity, device_classes: tuple[str, ...]) -> alt.Chart:
+def still_fronts(across: Quantity, upwards: Quantity, concepts: tuple[str, ...]) -> alt.Chart:
     """The fronts over two fixed quantities."""
     scale = alt.Scale(zero=False, padding=14)
     return (
@@ -52,7 +52,7 @@ def still_fronts(across: Quantity, upwards: Quantity, device_classes: tuple[str,
         .encode(
             x=alt.X(f"{across.column}:Q", title=across.label, scale=scale, axis=alt.Axis(tickCount=8)),
             y=alt.Y(f"{upwards.column}:Q", title=upwards.label, scale=scale),
-            **class_encodings(device_classes, class_legend()),
+            **class_encodings(concepts, class_legend()),
         )
         .properties(
             title=heading(

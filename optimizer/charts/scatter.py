@@ -1,4 +1,4 @@
-"""The fronts: two quantities across and upwards, a third as size, device class as colour and shape."""
+"""The fronts: two quantities across and upwards, a third as size, concept as colour and shape."""
 
 from __future__ import annotations
 
@@ -26,13 +26,13 @@ RING = 260
 OVERALL_FILL, CLASS_FILL = 0.8, 0.0
 
 
-def class_encodings(device_classes: Sequence[str], legend: alt.Legend | None) -> dict[str, Any]:
-    """Colour, outline and shape by device class; filled where a design is on the overall front."""
-    colour, shape = class_scales(device_classes)
+def class_encodings(concepts: Sequence[str], legend: alt.Legend | None) -> dict[str, Any]:
+    """Colour, outline and shape by concept; filled where a design is on the overall front."""
+    colour, shape = class_scales(concepts)
     return {
-        "fill": alt.Fill("device_class:N", scale=colour, title="device class", legend=legend),
-        "stroke": alt.Stroke("device_class:N", scale=colour, title="device class", legend=legend),
-        "shape": alt.Shape("device_class:N", scale=shape, title="device class", legend=legend),
+        "fill": alt.Fill("concept:N", scale=colour, title="concept", legend=legend),
+        "stroke": alt.Stroke("concept:N", scale=colour, title="concept", legend=legend),
+        "shape": alt.Shape("concept:N", scale=shape, title="concept", legend=legend),
         "fillOpacity": alt.condition("datum.overall_front", alt.value(OVERALL_FILL), alt.value(CLASS_FILL)),
     }
 
@@ -45,7 +45,7 @@ def class_legend() -> alt.Legend:
 def scatter(
     linked: Selections,
     quantities: tuple[Quantity, ...],
-    device_classes: Sequence[str],
+    concepts: Sequence[str],
     width: int,
     height: int,
 ) -> alt.LayerChart:
@@ -54,7 +54,7 @@ def scatter(
     Args:
         linked: the dashboard's selections.
         quantities: what an axis can show.
-        device_classes: in the study's order.
+        concepts: in the study's order.
         width, height: of the plot [px].
     """
     place = _place()
@@ -65,7 +65,7 @@ def scatter(
         .encode(**place)
     )
     # The points lie in a layer of their own, so that the group's rectangle stays below the pointer's reach.
-    points = alt.LayerChart(layer=[_points(linked, place, device_classes)])
+    points = alt.LayerChart(layer=[_points(linked, place, concepts)])
     pointed = [ring.transform_filter(linked.picked_test), reach.transform_filter(linked.classes)]
     below = "filled: on the front of all classes together; hollow: on the front of its own class only"
     return alt.LayerChart(
@@ -85,14 +85,14 @@ def _place() -> dict[str, Any]:
     }
 
 
-def _points(linked: Selections, place: dict[str, Any], device_classes: Sequence[str]) -> alt.Chart:
+def _points(linked: Selections, place: dict[str, Any], concepts: Sequence[str]) -> alt.Chart:
     """The designs, those outside the group dimmed."""
     return (
         alt.Chart(name=POINTS)
         .mark_point(strokeWidth=1.2)
         .encode(
             **place,
-            **class_encodings(device_classes, class_legend()),
+            **class_encodings(concepts, class_legend()),
             size=alt.Size(
                 f"{SIZE_VALUE}:Q", scale=alt.Scale(range=list(SIZES), zero=False), legend=_size_legend()
             ),

@@ -34,7 +34,7 @@ class Selections:
     """Parameters of the dashboard.
 
     Attributes:
-        classes: device classes chosen in the legend.
+        classes: concepts chosen in the legend.
         group: designs within the rectangle drawn in the front.
         pointed: design nearest to the pointer; pinned: design that was clicked.
         variables: choices of the axes and the id of the design that all detail views show.
@@ -73,7 +73,7 @@ def selections(quantities: tuple[Quantity, ...], at_start: str) -> Selections:
     by_id: dict[str, Any] = {"fields": ["design_id"], "nearest": True}
     rectangle = alt.BrushConfig(fill=INK, fillOpacity=0.05, stroke=INK, strokeDash=[3, 3], strokeOpacity=0.5)
     return Selections(
-        classes=alt.selection_point(name=CLASSES, fields=["device_class"], bind="legend", toggle="true"),
+        classes=alt.selection_point(name=CLASSES, fields=["concept"], bind="legend", toggle="true"),
         group=alt.selection_interval(
             name=GROUP,
             encodings=["x", "y"],

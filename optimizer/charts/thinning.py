@@ -60,13 +60,13 @@ def shown_rows(
     """Rows of a front that are drawn, in the table's order.
 
     Args:
-        table: front, with `device_class`.
+        table: front, with `concept`.
         spread_over: columns whose space is to be covered evenly (the objectives).
         extremes_of: columns whose least and greatest values in every class are always drawn.
         per_class: rows of a class at most [-].
         also: a row that is drawn in any case.
     """
-    classes = table["device_class"].to_numpy()
+    classes = table["concept"].to_numpy()
     kept = []
     for name in pd.unique(classes):
         rows = np.flatnonzero(classes == name)

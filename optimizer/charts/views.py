@@ -66,7 +66,7 @@ def linked_views(study: Study, found: Content) -> alt.VConcatChart:
 
 def _rows(study: Study, found: Content, linked: Selections) -> list[alt.LayerChart | alt.HConcatChart]:
     """Fronts and frequency; the picked design in words; where it loses, is big, binds; what it puts out."""
-    designs, classes, spec = found.designs, study.search.device_classes, study.specification
+    designs, classes, spec = found.designs, study.concept_names, study.specification
     losses, volumes = component_words(designs.losses, LOSS), component_words(designs.volumes, VOLUME)
     envelopes = [envelope_view(view, linked, 490, 180) for view in envelope_views(study, found)]
     over_frequency = alt.VConcatChart(vconcat=envelopes, spacing=GAP, bounds="flush")

@@ -24,7 +24,7 @@ HELP = (
     "Point at the fronts: all views show the nearest design. A click pins it; another click pins another.",
     "Drag a rectangle in the fronts: its designs are the group of the thin lines, the means, the dots over "
     "frequency and the table.",
-    "Click a device class in the legend to see it alone; click further classes to add or remove them.",
+    "Click a concept in the legend to see it alone; click further concepts to add or remove them.",
     "Click a row of the table to pin its design.",
     "Double-click, Escape, or the button let go of group and pin.",
 )
@@ -51,7 +51,7 @@ def missing(study: Study, data: DesignData, summary: Mapping[str, Any]) -> list[
     """Device classes without any feasible design, and what ruled them out where the run says it."""
     ruled_out: Mapping[str, Sequence[Sequence[Any]]] = summary.get("ruled_out") or {}
     told = []
-    for name in study.search.device_classes:
+    for name in study.concept_names:
         if name not in data.total:
             reasons = ", ".join(str(entry[0]) for entry in ruled_out.get(name, ()))
             told.append(

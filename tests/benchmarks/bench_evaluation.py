@@ -19,8 +19,7 @@ from pathlib import Path
 import numpy as np
 
 from models.designs import Designs
-from optimizer.populations import prepared_inverter, search_class
-from optimizer.space import SearchSpace
+from optimizer.populations import search_concept, search_space
 from optimizer.study import Study
 
 ROOT = Path(__file__).parents[2]
@@ -54,23 +53,23 @@ def first_rows(designs: Designs, count: int) -> Designs:
 def main(name: str) -> None:
     """Print rates for every class of a study."""
     study = Study.read(ROOT / "studies" / f"{name}.toml")
-    inverter = prepared_inverter(study)
     rng = np.random.default_rng(1)
     base = rate(lambda: elementwise(LARGE), LARGE)
     print(
         f"{study.name}: designs per second on one core (goals: 50,000 in large blocks, 10,000 at population)"
     )
     print(f"{'candidates':42} {'large block':>12} {'population':>12} {'large block / baseline':>24}")
-    for device_class in study.search.device_classes:
-        space = SearchSpace(study, inverter, device_class)
+    for concept in study.concepts:
+        space = search_space(study, concept)
+        inverter = space.inverter
         points = space.repaired(rng.random((LARGE, len(space.variables))))
-        found = search_class(study.with_effort(100, 30), device_class, 1).points
+        found = search_concept(study.with_effort(100, 30), concept, 1).points
         for words, chosen in (("random", points), ("feasible", found)):
             designs = space.designs(chosen)
             large, small = first_rows(designs, LARGE), first_rows(designs, POPULATION)
-            fast = rate(lambda large=large: inverter.evaluate(large), LARGE)
-            slow = rate(lambda small=small: inverter.evaluate(small), POPULATION)
-            print(f"{device_class + ', ' + words:42} {fast:12,.0f} {slow:12,.0f} {fast / base:24.4f}")
+            fast = rate(lambda large=large, inverter=inverter: inverter.evaluate(large), LARGE)
+            slow = rate(lambda small=small, inverter=inverter: inverter.evaluate(small), POPULATION)
+            print(f"{concept.name + ', ' + words:42} {fast:12,.0f} {slow:12,.0f} {fast / base:24.4f}")
 
 
 if __name__ == "__main__":

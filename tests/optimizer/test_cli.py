@@ -48,7 +48,7 @@ def test_run_json_says_what_was_done(run):
     front = pd.read_csv(folder / "front.csv")
     assert {entry["column"] for entry in content["objectives"]} <= set(front.columns)
     assert {entry["direction"] for entry in content["objectives"]} == {"min"}
-    assert set(content["hypervolume"]) == set(front.device_class.unique()) | set(content["ruled_out"])
+    assert set(content["hypervolume"]) == set(front.concept.unique()) | set(content["ruled_out"])
     assert {"name", "unit", "limit"} <= set(content["limits"][0])
     assert "lethal" in content["caution"]
 

@@ -16,7 +16,7 @@ def fronts(small_search):
 
 def test_promised_columns_are_there(fronts):
     promised = {
-        "design_id", "class_front", "overall_front", "device_class", "bridge", "modulation", "switching_frequency_hz",
+        "design_id", "concept", "class_front", "overall_front", "device_class", "bridge", "modulation", "switching_frequency_hz",
         "efficiency_rated", "efficiency_weighted", "volume_l", "mass_kg", "price", "current_thd", "junction_temperature_c",
         "loss_conduction_w", "volume_heatsink_l", "loss_rated_w",
     }  # fmt: skip

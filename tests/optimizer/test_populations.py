@@ -5,7 +5,7 @@ import numpy as np
 import pytest
 
 from optimizer.objectives import OBJECTIVES, margins_of, requirements_of
-from optimizer.populations import normalised_hypervolume, prepared_inverter, search, search_class
+from optimizer.populations import normalised_hypervolume, prepared_inverter, search, search_concept
 from optimizer.problem import ClassProblem
 from optimizer.space import SearchSpace
 
@@ -18,7 +18,7 @@ def tiny(rooftop):
 def test_same_seed_same_result_whatever_the_workers(tiny):
     alone, beside = (search(tiny, seed=5, workers=count) for count in (1, 2))
     for first, second in zip(alone.classes, beside.classes, strict=True):
-        assert first.device_class == second.device_class
+        assert first.concept == second.concept
         np.testing.assert_array_equal(first.points, second.points)
         np.testing.assert_array_equal(first.objectives, second.objectives)
         assert first.hypervolume == second.hypervolume
@@ -26,14 +26,16 @@ def test_same_seed_same_result_whatever_the_workers(tiny):
 
 def test_global_random_state_does_not_matter(tiny):
     np.random.seed(1)  # noqa: NPY002
-    first = search_class(tiny, "SiC MOSFET", 5)
+    concept = tiny.concepts[tiny.concept_names.index("SiC MOSFET")]
+    first = search_concept(tiny, concept, 5)
     np.random.seed(99)  # noqa: NPY002
-    second = search_class(tiny, "SiC MOSFET", 5)
+    second = search_concept(tiny, concept, 5)
     np.testing.assert_array_equal(first.points, second.points)
 
 
 def test_another_seed_gives_another_result(tiny):
-    first, second = (search_class(tiny, "SiC MOSFET", seed) for seed in (5, 6))
+    concept = tiny.concepts[tiny.concept_names.index("SiC MOSFET")]
+    first, second = (search_concept(tiny, concept, seed) for seed in (5, 6))
     assert first.points.shape != second.points.shape or not np.array_equal(first.points, second.points)
 
 
@@ -51,7 +53,7 @@ def test_every_evaluation_is_counted(small_search):
 def test_archived_candidates_are_feasible_and_give_their_objectives_again(small_search):
     inverter = prepared_inverter(small_search.study)
     for found in small_search.classes:
-        space = SearchSpace(small_search.study, inverter, found.device_class)
+        space = SearchSpace(small_search.study, inverter, found.concept.device_class)
         rows = np.arange(0, len(found.points), 17)
         result = inverter.evaluate(space.designs(found.points[rows]))
         chosen = [OBJECTIVES[name] for name in small_search.study.objectives]
@@ -63,7 +65,7 @@ def test_archived_candidates_are_feasible_and_give_their_objectives_again(small_
 def test_progress_is_reported_for_every_class(tiny):
     seen = []
     search(tiny, seed=1, workers=1, report=seen.append)
-    assert {entry.device_class for entry in seen} == set(tiny.search.device_classes)
+    assert {entry.concept for entry in seen} == set(tiny.concept_names)
     assert max(entry.evaluations for entry in seen) == 20 * 12
 
 
@@ -76,8 +78,8 @@ def test_hypervolume_grows_with_more_candidates(small_search):
 def test_search_beats_random_candidates_of_the_same_number(small_search):
     """NSGA-II must find more than as many random points: otherwise it does nothing."""
     study, inverter = small_search.study, prepared_inverter(small_search.study)
-    found = next(entry for entry in small_search.classes if entry.device_class == "SiC MOSFET")
-    problem = ClassProblem(SearchSpace(study, inverter, found.device_class))
+    found = next(entry for entry in small_search.classes if entry.concept.name == "SiC MOSFET")
+    problem = ClassProblem(SearchSpace(study, inverter, found.concept.device_class))
     points = problem.space.repaired(np.random.default_rng(1).random((found.evaluations, problem.n_var)))
     problem.assess(points)
     random_objectives = problem.archive.feasible()[1]

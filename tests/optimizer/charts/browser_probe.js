@@ -78,7 +78,7 @@
     picked: view.signal("picked"),
     group: view.signal("group"),
     pinned: view.signal("pinned").design_id || [],
-    classes: view.signal("classes").device_class || [],
+    classes: view.signal("classes").concept || [],
     count: document.getElementById("count").textContent,
     rows: rows(),
     thin: named(view, "load_curve_group").length,

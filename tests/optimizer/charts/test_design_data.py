@@ -85,7 +85,7 @@ def test_lists_belong_to_the_same_design(drawn, data):
 
 
 def test_classes_are_counted_and_the_balanced_design_is_drawn(drawn, data):
-    assert data.total == drawn.front.table["device_class"].value_counts().to_dict()
+    assert data.total == drawn.front.table["concept"].value_counts().to_dict()
     assert sum(data.shown(name) for name in data.total) == len(data.records)
     assert data.balanced in {record["design_id"] for record in data.records}
 
@@ -95,9 +95,9 @@ def test_a_small_share_keeps_the_extremes_of_the_whole_front(drawn):
     assert len(few.records) < len(drawn.front.table)
     for name in few.total:
         assert few.shown(name) <= 12
-        whole = drawn.front.table[drawn.front.table.device_class == name]
+        whole = drawn.front.table[drawn.front.table.concept == name]
         for quantity in few.quantities:
-            values = [record[quantity.column] for record in few.records if record["device_class"] == name]
+            values = [record[quantity.column] for record in few.records if record["concept"] == name]
             assert min(values) == pytest.approx(whole[quantity.column].min(), rel=1e-3)
             assert max(values) == pytest.approx(whole[quantity.column].max(), rel=1e-3)
 

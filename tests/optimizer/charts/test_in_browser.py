@@ -136,7 +136,7 @@ def test_the_button_lets_go_of_the_pin(told):
 
 
 def test_the_legend_filters_classes(told, designs):
-    of_class = [name for name, design in designs.items() if design["device_class"] == "SiC MOSFET"]
+    of_class = [name for name, design in designs.items() if design["concept"] == "SiC MOSFET"]
     assert told["one_class"]["classes"] == ["SiC MOSFET"]
     assert told["one_class"]["count"].startswith(f"{len(of_class)} designs")
     assert set(told["one_class"]["rows"]) <= set(of_class)

@@ -71,7 +71,7 @@ def test_task_cautions_and_counts_are_said(drawn):
     assert "5 kVA, single phase" in text
     assert "Mind the <dc link>." in text
     assert "No design here has been built or verified" in text
-    for name, count in drawn.front.table.device_class.value_counts().items():
+    for name, count in drawn.front.table.concept.value_counts().items():
         assert f"{name} {count} of {count}" in text
     assert f"{drawn.summary['evaluations']:,} candidates evaluated" in text
 
@@ -82,14 +82,14 @@ def test_where_designs_are_left_out_it_says_how_many(drawn):
     many.table["design_id"] = [f"D{number}" for number in range(len(rows))]
     many.table["loss_weighted_percent"] *= np.linspace(1.0, 1.3, len(rows))
     _, text = read(dashboard_html(drawn.study, many, drawn.evaluated, drawn.summary))
-    counts = many.table.device_class.value_counts()
+    counts = many.table.concept.value_counts()
     assert counts.max() > 300
     for name, count in counts.items():
         assert f"{name} {min(count, 300)} of {count}" in text
 
 
 def test_a_class_without_designs_is_named_with_what_it_misses(drawn):
-    left = some(drawn.front, np.flatnonzero(drawn.front.table.device_class != "silicon IGBT"))
+    left = some(drawn.front, np.flatnonzero(drawn.front.table.concept != "silicon IGBT"))
     ruled_out = {"silicon IGBT": [["heatsink temperature", 0.9, "12 % beyond its limit"]]}
     _, text = read(dashboard_html(drawn.study, left, None, {**drawn.summary, "ruled_out": ruled_out}))
     assert "No feasible design with silicon IGBT: the nearest one misses heatsink temperature." in text

@@ -19,7 +19,7 @@ def some_front(classes=("a", "b"), each=500, seed=5):
     angle = rng.uniform(0.0, np.pi / 2.0, len(classes) * each)
     return pd.DataFrame(
         {
-            "device_class": np.repeat(classes, each),
+            "concept": np.repeat(classes, each),
             "loss": 1.0 - np.sin(angle),
             "volume": 1.0 - np.cos(angle),
             "mass": rng.uniform(1.0, 9.0, len(angle)),
@@ -58,7 +58,7 @@ def test_every_class_keeps_its_extremes_of_every_quantity(per_class):
     quantities = ["loss", "volume", "mass"]
     kept = table.iloc[shown_rows(table, ["loss", "volume"], quantities, per_class)]
     for name in ("a", "b"):
-        whole, part = table[table.device_class == name], kept[kept.device_class == name]
+        whole, part = table[table.concept == name], kept[kept.concept == name]
         assert len(part) == min(per_class, len(whole))
         for quantity in quantities:
             assert part[quantity].min() == whole[quantity].min()

@@ -12,8 +12,10 @@ from models.evaluation import Constraint, Evaluation
 from models.operating_points import OperatingPoints
 from models.requirements import Findings
 from models.specification import CALIFORNIAN_WEIGHTS, EUROPEAN_WEIGHTS, Specification
+from models.waveforms.leg_commutations import CLAMP
 
 Array = NDArray[np.float64]
+TWO_LEVEL_POSITIONS = {1: 4, 3: 6}  # switch positions of the two-level bridges, by phases
 PACKAGE_DENSITY = 4000.0  # kg/m3, moulded package with copper tab, estimate
 CONTROL_DENSITY = 600.0  # kg/m3, populated boards in air, estimate
 HOUSING_DENSITY = 250.0  # kg/m3 of the whole volume, sheet or cast housing, estimate
@@ -92,11 +94,23 @@ def _losses(
     }
 
 
+def _further_drivers(spec: Specification, found: Findings) -> float:
+    """Switch positions beyond those of a two-level bridge, whose drivers count with the control [-]."""
+    positions = sum(part.positions for part in found.packages if part.role != CLAMP)
+    return max(float(positions) - TWO_LEVEL_POSITIONS[spec.phases], 0.0)
+
+
+def _control_volume(spec: Specification, found: Findings) -> float:
+    rules = spec.rules
+    drivers = rules.further_driver_volume * _further_drivers(spec, found)
+    return rules.control_volume_base + rules.control_volume_per_va * spec.apparent_power_va + drivers
+
+
 def _volumes(spec: Specification, found: Findings) -> dict[str, Array]:
     """Boxed volumes per component (n,) [m3]; `unused` is what the packing factor leaves empty."""
     first, second = found.inductors
     rules = spec.rules
-    control = rules.control_volume_base + rules.control_volume_per_va * spec.apparent_power_va
+    control = _control_volume(spec, found)
     boxes = {
         "semiconductors": np.sum([part.volume for part in found.packages], axis=0),
         "heatsink": found.sink.volume_m3,
@@ -112,8 +126,7 @@ def _volumes(spec: Specification, found: Findings) -> dict[str, Array]:
 
 def _masses(spec: Specification, found: Findings) -> dict[str, Array]:
     first, second = found.inductors
-    rules = spec.rules
-    control = rules.control_volume_base + rules.control_volume_per_va * spec.apparent_power_va
+    control = _control_volume(spec, found)
     return {
         "semiconductors": PACKAGE_DENSITY * np.sum([part.volume for part in found.packages], axis=0),
         "heatsink": found.sink.mass_kg,
@@ -129,6 +142,7 @@ def _prices(spec: Specification, catalog: Catalog, found: Findings) -> dict[str,
     """Prices per component (n,) [currency]."""
     first, second = found.inductors
     cost, count = catalog.cost, len(found.designs)
+    drivers = spec.rules.further_driver_price * _further_drivers(spec, found)
     return {
         "semiconductors": np.sum([part.price for part in found.packages], axis=0),
         "heatsink": found.sink.price,
@@ -136,7 +150,7 @@ def _prices(spec: Specification, catalog: Catalog, found: Findings) -> dict[str,
         "grid_inductor": spec.phases * second.price,
         "filter_capacitor": found.ac_capacitor.price,
         "dc_link": found.dc_link.price,
-        "control": np.full(count, float(cost.control_price_at(spec.apparent_power_va))),
+        "control": np.full(count, float(cost.control_price_at(spec.apparent_power_va)) + drivers),
         "housing": np.full(count, float(cost.housing_price_at(spec.apparent_power_va))),
     }
 

@@ -92,6 +92,10 @@ class DesignRules:
     packing_factor: float = rule(0.45, "", "sum of component boxes over the volume of the whole")
     control_volume_base: float = rule(1.5e-4, "m^3", "volume of control and auxiliary supply at small power")
     control_volume_per_va: float = rule(2.0e-8, "m^3/VA", "growth of that volume with rated power")
+    further_driver_volume: float = rule(
+        4e-6, "m^3", "isolated gate driver of each switch position beyond those of a two-level bridge"
+    )
+    further_driver_price: float = rule(3.0, "", "its price [currency]")
 
 
 @dataclass(frozen=True, kw_only=True)

@@ -23,6 +23,7 @@ from models.catalog.parts import AcCapacitor, Catalog
 from models.cooling import SinkCurve, SinkPoint, sink_curve_forced, sink_curve_natural
 from models.designs import Designs
 from models.distortion import Distortion
+from models.emission.emission_filter import EmissionModel
 from models.evaluation import Evaluation, joined
 from models.filter_inductors import RippleView, Surroundings, bridge_side, grid_side
 from models.magnetics.core_bands import CoreBands, core_bands
@@ -78,6 +79,11 @@ class Inverter:
     def tables(self) -> WaveformTables:
         """Waveform tables of the bridge."""
         return waveform_tables(self.bridge.name, self.bands.exponents)
+
+    @cached_property
+    def emission(self) -> EmissionModel:
+        """Conducted emission and its filter."""
+        return EmissionModel(self.specification, self.catalog, self.bridge, self.tables)
 
     @cached_property
     def sinks(self) -> tuple[SinkCurve, SinkCurve]:
@@ -147,6 +153,11 @@ class Inverter:
             Cooling(spec.ambient_c, lambda power, rows: self._rise(designs, power, rows)),
         )
         distortion, linear = self._distortion(columns, state, designs, packages[0].device.dead_time_s[:, 0])
+        emission = (
+            self.emission.evaluate(designs, columns, state, points.distortion, packages)
+            if spec.emission_limit
+            else None
+        )
         inductors = self._inductors(designs, phasors, state, distortion)
         capacitors = self._capacitors(designs, phasors, losing)
         findings = Findings(
@@ -163,6 +174,7 @@ class Inverter:
             ac_capacitor=capacitors[0],
             dc_link=capacitors[1],
             resonance=resonance_hz(circuit),
+            emission=emission,
         )
         constraints = requirements(spec, self.catalog, self.tables, points, findings)
         return roll_up(spec, self.catalog, points, findings, constraints)

@@ -12,6 +12,7 @@ from models.catalog.parts import Catalog
 from models.cooling import SinkPoint
 from models.designs import Designs
 from models.distortion import Distortion
+from models.emission.emission_filter import Emission
 from models.evaluation import Constraint, at_least, at_most
 from models.magnetics.inductor import Inductor
 from models.operating_points import OperatingPoints
@@ -24,6 +25,8 @@ from models.waveforms.state import WaveformState
 from models.waveforms.tables import WaveformTables
 
 Array = NDArray[np.float64]
+EMISSION_SCALE_DB = 20.0  # a margin of 1 in decibels
+DECIBEL_ROUNDING = 0.1  # the stages' sizing is good to that
 
 
 @dataclass(frozen=True)
@@ -43,6 +46,7 @@ class Findings:
     ac_capacitor: AcFilterCapacitor
     dc_link: DcLink
     resonance: Array
+    emission: Emission | None
 
 
 def requirements(
@@ -74,6 +78,7 @@ def requirements(
         ),
         *_filter(spec, found),
         *_quality(spec, catalog, found),
+        *_emission(spec, found),
     )
 
 
@@ -176,6 +181,17 @@ def _filter(spec: Specification, found: Findings) -> tuple[Constraint, ...]:
         ),
         at_most("filter capacitor current", "of its limit", found.ac_capacitor.current_share, 1.0),
         at_most("dc-link capacitor count", "", link.series * link.parallel, rules.dc_link_units_limit),
+    )
+
+
+def _emission(spec: Specification, found: Findings) -> tuple[Constraint, ...]:
+    emission = found.emission
+    if emission is None:
+        return ()
+    kept = spec.rules.emission_margin_db
+    distance = emission.margin + kept
+    return (
+        at_least("distance from emission limit", "dB", distance, kept - DECIBEL_ROUNDING, EMISSION_SCALE_DB),
     )
 
 

@@ -89,9 +89,23 @@ def _losses(
         "filter_capacitor": found.ac_capacitor.loss[:, loads],
         "damping": damping,
         "dc_link": found.dc_link.loss[:, loads],
+        **_emission_loss(spec, loads, found),
         "fan": found.sink.fan_power_w[:, None] * running,
         "auxiliary": auxiliary,
     }
+
+
+def _emission_loss(spec: Specification, loads: slice, found: Findings) -> dict[str, Array]:
+    """Copper loss of the emission filter's chokes; none where the study leaves emission out."""
+    if found.emission is None:
+        return {}
+    lines = 2.0 if spec.phases == 1 else 3.0
+    current = np.abs(found.phasors.output_current[..., loads])
+    return {"emission_filter": lines * found.emission.resistance[:, None] * current**2}
+
+
+def _of_emission_filter(found: Findings, quantity: str) -> dict[str, Array]:
+    return {} if found.emission is None else {"emission_filter": getattr(found.emission, quantity)}
 
 
 def _further_drivers(spec: Specification, found: Findings) -> float:
@@ -118,6 +132,7 @@ def _volumes(spec: Specification, found: Findings) -> dict[str, Array]:
         "grid_inductor": spec.phases * second.volume,
         "filter_capacitor": found.ac_capacitor.volume,
         "dc_link": found.dc_link.volume,
+        **_of_emission_filter(found, "volume"),
         "control": np.full(len(found.designs), control),
     }
     used = np.sum(list(boxes.values()), axis=0)
@@ -134,6 +149,7 @@ def _masses(spec: Specification, found: Findings) -> dict[str, Array]:
         "grid_inductor": spec.phases * second.mass,
         "filter_capacitor": found.ac_capacitor.mass,
         "dc_link": found.dc_link.mass,
+        **_of_emission_filter(found, "mass"),
         "control": np.full(len(found.designs), control * CONTROL_DENSITY),
     }
 
@@ -150,6 +166,7 @@ def _prices(spec: Specification, catalog: Catalog, found: Findings) -> dict[str,
         "grid_inductor": spec.phases * second.price,
         "filter_capacitor": found.ac_capacitor.price,
         "dc_link": found.dc_link.price,
+        **_of_emission_filter(found, "price"),
         "control": np.full(count, float(cost.control_price_at(spec.apparent_power_va)) + drivers),
         "housing": np.full(count, float(cost.housing_price_at(spec.apparent_power_va))),
     }
@@ -177,6 +194,15 @@ def _details(spec: Specification, points: OperatingPoints, found: Findings) -> d
         "tightest_harmonic_order": found.distortion.worst_order,
         "tightest_harmonic_share": found.distortion.worst_share,
     }
+    if found.emission is not None:
+        emission = found.emission
+        details |= {
+            "emission_distance_db": emission.margin + spec.rules.emission_margin_db,
+            "emission_differential_inductance_h": emission.differential_inductance,
+            "emission_differential_stages": emission.differential_stages,
+            "emission_common_inductance_h": emission.common_inductance,
+            "emission_common_stages": emission.common_stages,
+        }
     for name, part in zip(("inverter_inductor", "grid_inductor"), found.inductors, strict=True):
         details |= {
             f"{name}_flux_t": part.flux_density,

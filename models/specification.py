@@ -80,6 +80,19 @@ class DesignRules:
     clamp_diode_current_share: float = rule(
         0.7, "", "rated current of clamp diodes over that of the switches they stand beside"
     )
+    emission_margin_db: float = rule(6.0, "", "distance kept from the limit of conducted emission [dB]")
+    leakage_current_limit: float = rule(0.0035, "A", "greatest earth leakage current of the Y capacitors")
+    emission_x_share: float = rule(
+        0.01, "", "reactive power of the emission filter's X capacitors over rated power"
+    )
+    emission_current_density: float = rule(5e6, "", "current density in the emission filter's chokes [A/m2]")
+    choke_capacitance: float = rule(30e-12, "F", "capacitance of a choke's winding")
+    switch_node_stray: float = rule(
+        50e-12, "F", "capacitance of a switch node to earth beside its packages' tabs (board, windings)"
+    )
+    common_mode_asymmetry: float = rule(
+        0.03, "", "share of a leg's voltage left in the common mode of schemes whose legs cancel"
+    )
     sink_temperature_limit: float = rule(
         95.0, "degC", "greatest heatsink temperature (touch, boards beside it)"
     )
@@ -117,6 +130,8 @@ class Specification:
         rectifier_share: share of rated apparent power drawn by rectifier loads (stand-alone) [-].
         crest_factor: crest factor of that rectifier load's current [-].
         limit_table: name of the harmonic limit table in the catalogue [-].
+        emission_limit: name of the limit of conducted emission in the catalogue, "" where emission is left
+            out [-].
         voltage_thd_limit_linear, voltage_thd_limit_rectifier: stand-alone voltage limits, fractions [-].
         rules: the design rules.
     """
@@ -139,6 +154,7 @@ class Specification:
     rectifier_share: float = 0.0
     crest_factor: float = 3.0
     limit_table: str = "IEEE 1547-2018"
+    emission_limit: str = ""
     voltage_thd_limit_linear: float = 0.03
     voltage_thd_limit_rectifier: float = 0.08
     rules: DesignRules = field(default_factory=DesignRules)

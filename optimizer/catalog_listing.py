@@ -23,6 +23,8 @@ KINDS = (
     "ac_capacitors",
     "dc_link_capacitors",
     "fans",
+    "choke_materials",
+    "emission_limits",
 )
 
 

@@ -194,6 +194,7 @@ _RESULT_STARTS = (
     "efficiency_",
     "margin",
     "tightest",
+    "emission_",
     "distortion_",
     "modulation_index_",
 )

@@ -35,7 +35,7 @@ KINDS = {
 }
 
 PREFIXED = frozenset({"A", "F", "H", "Hz", "V", "VA", "W", "ohm"})
-PREFIXES = (("M", 1e6), ("k", 1e3), ("", 1.0), ("m", 1e-3), ("u", 1e-6), ("n", 1e-9))
+PREFIXES = (("M", 1e6), ("k", 1e3), ("", 1.0), ("m", 1e-3), ("u", 1e-6), ("n", 1e-9), ("p", 1e-12))
 
 LONGEST_TEXT = 60
 """Longer texts are no quantity; also the length to which a given value is cut in an error."""

@@ -27,6 +27,7 @@ from optimizer.study_schema import (
     GRID_CONNECTED_ONLY,
     GRID_RATIO,
     LC,
+    NO_EMISSION_LIMIT,
     STAND_ALONE_ONLY,
     SearchRange,
     StudyContent,
@@ -168,6 +169,9 @@ class Study:
         if self.specification.application == GRID_CONNECTED:
             tables = [table.name for table in catalog.limit_tables]
             asked.append(("application.harmonic_limits", self.specification.limit_table, tables))
+        if self.specification.emission_limit:
+            limits = (*catalog.emission_limits.names, NO_EMISSION_LIMIT)
+            asked.append(("application.emission_limit", self.specification.emission_limit, limits))
         problems = [
             Problem(show(name), f"a name in the catalogue{_known(name, known)}", key, str(self.path))
             for key, name, known in asked
@@ -235,6 +239,7 @@ def _specification(content: StudyContent) -> Specification:
         bridge=content.bridge["kind"],
         weights=_weights(content.weighting),
         limit_table=asked[GRID_CONNECTED_ONLY[0].name],
+        emission_limit="" if asked["emission_limit"] == NO_EMISSION_LIMIT else asked["emission_limit"],
         rules=DesignRules(**content.rules),
         **{key.name: asked[key.name] for key in own},
     )

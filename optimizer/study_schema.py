@@ -91,6 +91,7 @@ RANGES = (
     RangeEntry("window_use", "", (0.3, 1.0), (0.05, 1.0), "share of the allowed copper fill used"),
 )
 
+NO_EMISSION_LIMIT = "none"
 TABLES = ("application", "weighting", "bridge", "filter", "objectives", "search", "rules", "catalog")
 NAME = Text(
     "a text of letters, digits, blanks, dots, - and _ (the run folder is called so)", r"\w[\w .-]{0,79}"
@@ -114,6 +115,7 @@ APPLICATION = (
     Key("dc_voltage", SubTable(), None),
     Key("ambient", Quantity("degC", -40.0, 85.0), 40.0),
     Key("altitude", Quantity("m", -100.0, 5000.0), 1000.0),
+    Key("emission_limit", Text(), NO_EMISSION_LIMIT),
 )
 DC_VOLTAGE = (Key("min", _VOLTAGE), Key("nominal", _VOLTAGE), Key("max", _VOLTAGE))
 _ASKED = {entry.name: entry.default for entry in fields(Specification)}

@@ -23,6 +23,8 @@ _TOML_FILES = (
     "ac_capacitors.toml",
     "dc_link_capacitors.toml",
     "fans.toml",
+    "choke_materials.toml",
+    "emission_limits.toml",
     "limits.toml",
     "cost.toml",
 )

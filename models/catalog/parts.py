@@ -13,6 +13,7 @@ from dataclasses import dataclass, field
 
 from models.catalog.clamp_diode import ClampDiode
 from models.catalog.cost_model import CostModel
+from models.catalog.emission_parts import ChokeMaterial, EmissionLimit
 from models.catalog.limits import LimitBand, LimitTable
 from models.catalog.part_table import PartTable
 from models.cooling.fan import Fan
@@ -21,6 +22,7 @@ __all__ = [
     "DEVICE_CLASSES",
     "AcCapacitor",
     "Catalog",
+    "ChokeMaterial",
     "ClampDiode",
     "Conductor",
     "CoreMaterial",
@@ -28,6 +30,7 @@ __all__ = [
     "CostModel",
     "DcLinkCapacitor",
     "Device",
+    "EmissionLimit",
     "Fan",
     "LimitBand",
     "LimitTable",
@@ -219,6 +222,8 @@ class Catalog:
     ac_capacitors: PartTable[AcCapacitor]
     dc_link_capacitors: PartTable[DcLinkCapacitor]
     fans: PartTable[Fan]
+    choke_materials: PartTable[ChokeMaterial]
+    emission_limits: PartTable[EmissionLimit]
     limit_tables: tuple[LimitTable, ...]
     cost: CostModel
 

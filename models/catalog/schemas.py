@@ -17,6 +17,7 @@ from models.catalog.device_sheet import DEVICE_RULES, device_anchors
 from models.catalog.parts import (
     DEVICE_CLASSES,
     AcCapacitor,
+    ChokeMaterial,
     ClampDiode,
     Conductor,
     CoreMaterial,
@@ -24,6 +25,7 @@ from models.catalog.parts import (
     CostModel,
     DcLinkCapacitor,
     Device,
+    EmissionLimit,
     Fan,
 )
 
@@ -189,6 +191,12 @@ SCHEMAS: tuple[Schema, ...] = (
         choices={"technology": ("film", "electrolytic")},
     ),
     Schema("fans", Fan),
+    Schema("choke_materials", ChokeMaterial),
+    Schema(
+        "emission_limits",
+        EmissionLimit,
+        checks=(same_length("frequency_hz", "quasi_peak_dbuv", "average_dbuv"), rising("frequency_hz")),
+    ),
 )
 
 COST_SCHEMA = Schema(

@@ -71,9 +71,7 @@ def test_single_phase_capacitor_current(row: dict[str, Any], scheme: str) -> Non
         np.array([lag_of(row)]),
     )
     place = (np.array([FULL_BRIDGE.modulation_index(scheme)]), *tables.position(index))
-    slow, fast = (
-        rail_rms(tables.read(part, *place), lag) for part in (tables.rail_slow, tables.rail_fast)
-    )
+    slow, fast = (rail_rms(tables.read(part, *place), lag) for part in (tables.rail_slow, tables.rail_fast))
     assert_meets(row, float(np.hypot(fast, slow)[0]))
 
 

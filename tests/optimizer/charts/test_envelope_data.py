@@ -64,16 +64,12 @@ def test_bins_with_a_few_lucky_candidates_are_left_out(candidates):
 
 
 def test_a_class_with_hardly_any_candidate_is_still_drawn(candidates):
-    few = pd.DataFrame(
-        {"concept": ["c", "c"], "switching_frequency_hz": [1e4, 9e4], "volume_l": [3.0, 2.0]}
-    )
+    few = pd.DataFrame({"concept": ["c", "c"], "switching_frequency_hz": [1e4, 9e4], "volume_l": [3.0, 2.0]})
     records = envelope(pd.concat([candidates, few], ignore_index=True), candidates, "volume_l").records
     assert [record["volume_l"] for record in records if record["concept"] == "c"] == [3.0, 2.0]
 
 
-@pytest.mark.parametrize(
-    "evaluated", [None, pd.DataFrame({"concept": [], "switching_frequency_hz": []})]
-)
+@pytest.mark.parametrize("evaluated", [None, pd.DataFrame({"concept": [], "switching_frequency_hz": []})])
 def test_without_the_column_the_front_stands_in(evaluated, candidates):
     found = envelope(evaluated, candidates, "volume_l")
     assert found.front_only

@@ -84,6 +84,11 @@ class Evaluation:
         return np.sum(list(self.volumes.values()), axis=0)
 
     @property
+    def filter_volume(self) -> Array:
+        """Volume of the output and the emission filter (n,) [m3]."""
+        return np.sum([self.volumes[name] for name in FILTER_PARTS if name in self.volumes], axis=0)
+
+    @property
     def mass(self) -> Array:
         """Total mass (n,) [kg]."""
         return np.sum(list(self.masses.values()), axis=0)
@@ -102,6 +107,9 @@ class Evaluation:
     def feasible(self) -> NDArray[np.bool_]:
         """Candidates that meet every constraint (n,)."""
         return np.all(self.margins >= 0.0, axis=-1)
+
+
+FILTER_PARTS = ("inverter_inductor", "grid_inductor", "filter_capacitor", "emission_filter")
 
 
 def joined(blocks: Sequence[Evaluation]) -> Evaluation:

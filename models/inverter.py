@@ -23,7 +23,7 @@ from models.catalog.parts import AcCapacitor, Catalog
 from models.cooling import SinkCurve, SinkPoint, sink_curve_forced, sink_curve_natural
 from models.designs import Designs
 from models.distortion import Distortion
-from models.emission.emission_filter import EmissionModel
+from models.emission.emission_filter import Emission, EmissionModel
 from models.evaluation import Evaluation, joined
 from models.filter_inductors import RippleView, Surroundings, bridge_side, grid_side
 from models.magnetics.core_bands import CoreBands, core_bands
@@ -122,24 +122,31 @@ class Inverter:
             return self._evaluate_block(designs)
         return joined([self._evaluate_block(designs.take(slice(start, start + BLOCK))) for start in starts])
 
+    def emission_at(self, designs: Designs, multiples: NDArray[np.int64]) -> Emission:
+        """Conducted emission of candidates at carrier multiples of one's own choice (n, k) [-].
+
+        The study must name a limit of conducted emission.
+        """
+        columns = _circuit(designs).columns()
+        _, state = self._waveforms(designs, columns)
+        packages = self.packages.of(designs)
+        return self.emission.at_multiples(
+            multiples, designs, columns, state, self.points.distortion, packages
+        )
+
+    def _waveforms(self, designs: Designs, columns: Filter) -> tuple[LinePhasors, WaveformState]:
+        """Line-frequency phasors and waveform state at all operating points."""
+        spec, points = self.specification, self.points
+        phasors = line_phasors(columns, spec.line_frequency_hz, points.output_voltage, points.output_current)
+        per_volt = 1.0 / (designs.inverter_inductance_h * designs.switching_frequency_hz)
+        scheme = designs.modulation
+        return phasors, waveform_state(self.bridge, self.tables, scheme, phasors, points.dc_voltage, per_volt)
+
     def _evaluate_block(self, designs: Designs) -> Evaluation:
         spec, points = self.specification, self.points
-        circuit = Filter(
-            designs.inverter_inductance_h,
-            designs.grid_inductance_h,
-            designs.filter_capacitance_f,
-            designs.damping_resistance_ohm,
-        )
+        circuit = _circuit(designs)
         columns = circuit.columns()
-        phasors = line_phasors(columns, spec.line_frequency_hz, points.output_voltage, points.output_current)
-        state = waveform_state(
-            self.bridge,
-            self.tables,
-            designs.modulation,
-            phasors,
-            points.dc_voltage,
-            1.0 / (designs.inverter_inductance_h * designs.switching_frequency_hz),
-        )
+        phasors, state = self._waveforms(designs, columns)
         packages = self.packages.of(designs)
         losing = _at_points(state, points.losses)
         sink = self._sink(designs)
@@ -292,6 +299,15 @@ class Inverter:
             for moments in (self.tables.rail_slow, self.tables.rail_fast)
         )
         return slow, fast
+
+
+def _circuit(designs: Designs) -> Filter:
+    return Filter(
+        designs.inverter_inductance_h,
+        designs.grid_inductance_h,
+        designs.filter_capacitance_f,
+        designs.damping_resistance_ohm,
+    )
 
 
 def _at_points(state: WaveformState, points: slice) -> WaveformState:

@@ -200,6 +200,7 @@ _RESULT_STARTS = (
 )
 _RESULT_NAMES = {
     "concept",
+    "filter_volume_l",
     "class_front",
     "overall_front",
     "device_class",

@@ -17,6 +17,7 @@ from models.designs import Designs, InductorDesigns
 from models.evaluation import Constraint, Evaluation
 from models.inverter import Inverter
 from models.waveforms.leg_commutations import INNER
+from optimizer.emission_lines import EmissionLines, emission_lines, joined_lines
 from optimizer.objectives import OBJECTIVES, distortion_column, margins_of, requirements_of
 from optimizer.populations import ClassResult, SearchResult, search_space
 
@@ -37,6 +38,7 @@ class Front:
         efficiency: (n, p) over `load_level` (p,) [-].
         line_order, line_amplitude, line_limit: (n, k) harmonic lines over the base, listed ones; no limit is
             infinite.
+        emission: conducted emission; None where the study leaves it out.
     """
 
     table: pd.DataFrame
@@ -48,6 +50,7 @@ class Front:
     line_order: Array
     line_amplitude: Array
     line_limit: Array
+    emission: EmissionLines | None
 
 
 def front(result: SearchResult) -> Front:
@@ -91,6 +94,7 @@ def front(result: SearchResult) -> Front:
         line_order=np.concatenate([item.lines.order for item in lines]),
         line_amplitude=np.concatenate(listed),
         line_limit=np.concatenate([item.line_limit for item in lines]),
+        emission=joined_lines([emission_lines(inverter, designs) for inverter, designs, _ in parts]),
     )
 
 
@@ -148,6 +152,7 @@ def design_table(
         "loss_weighted_percent": OBJECTIVES["weighted loss"].read(result),
         "loss_rated_w": np.sum([part[:, rated] for part in result.losses.values()], axis=0),
         "volume_l": LITRES * result.volume,
+        "filter_volume_l": LITRES * result.filter_volume,
         "mass_kg": result.mass,
         "price": result.price,
         distortion_column(inverter.specification): result.distortion.total,

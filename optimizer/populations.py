@@ -45,6 +45,7 @@ class ClassResult:
     Attributes:
         concept: its bridge and device class.
         points, objectives: all feasible candidates evaluated, (k, n_var) and (k, m).
+        filter_volume: of their output and emission filters (k,) [m3].
         evaluations: candidates evaluated [-].
         hypervolume: (evaluations, hypervolume) records.
         constraints: names; failures: share of candidates violating each [-].
@@ -55,6 +56,7 @@ class ClassResult:
     concept: Concept
     points: Array
     objectives: Array
+    filter_volume: Array
     evaluations: int
     hypervolume: list[tuple[int, float]]
     constraints: tuple[str, ...]
@@ -151,11 +153,12 @@ def search_concept(
             records.append((problem.archive.evaluations, value))
             if report:
                 report(Progress(concept.name, *records[-1]))
-    points, objectives = problem.archive.feasible()
+    points, objectives, filter_volume = problem.archive.feasible()
     return ClassResult(
         concept=concept,
         points=points,
         objectives=objectives,
+        filter_volume=filter_volume,
         evaluations=problem.archive.evaluations,
         hypervolume=records,
         constraints=_constraint_names(problem),

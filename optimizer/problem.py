@@ -21,7 +21,7 @@ class Archive:
     """Every candidate evaluated, feasible ones with their points; of the others what ruled them out.
 
     Attributes:
-        points, objectives: blocks of feasible candidates.
+        points, objectives: blocks of feasible candidates; filter_volume: of each [m3].
         evaluations: all candidates [-].
         failures: per constraint, how many candidates violated it [-].
         nearest: margins of the candidate of least violation (c,) [-], and that violation.
@@ -29,17 +29,21 @@ class Archive:
 
     points: list[Array] = field(default_factory=list)
     objectives: list[Array] = field(default_factory=list)
+    filter_volume: list[Array] = field(default_factory=list)
     evaluations: int = 0
     failures: Array | None = None
     nearest: Array | None = None
     least_violation: float = np.inf
 
-    def add(self, points: Array, objectives: Array, margins: Array, violation: Array) -> None:
+    def add(
+        self, points: Array, objectives: Array, filter_volume: Array, margins: Array, violation: Array
+    ) -> None:
         """Take in one evaluated block."""
         feasible = violation <= 0.0
         if feasible.any():
             self.points.append(points[feasible])
             self.objectives.append(objectives[feasible])
+            self.filter_volume.append(filter_volume[feasible])
         self.evaluations += len(points)
         failed = (margins < 0.0).sum(0)
         self.failures = failed if self.failures is None else self.failures + failed
@@ -48,11 +52,15 @@ class Archive:
             self.least_violation = float(violation[closest])
             self.nearest = margins[closest]
 
-    def feasible(self) -> tuple[Array, Array]:
-        """Points and objectives of all feasible candidates, in the order they were evaluated."""
+    def feasible(self) -> tuple[Array, Array, Array]:
+        """Points, objectives and filter volumes of all feasible candidates, in the order of evaluation."""
         if not self.points:
-            return np.zeros((0, 0)), np.zeros((0, 0))
-        return np.concatenate(self.points), np.concatenate(self.objectives)
+            return np.zeros((0, 0)), np.zeros((0, 0)), np.zeros(0)
+        return (
+            np.concatenate(self.points),
+            np.concatenate(self.objectives),
+            np.concatenate(self.filter_volume),
+        )
 
 
 class ClassProblem(Problem):
@@ -75,5 +83,5 @@ class ClassProblem(Problem):
         margins = margins_of(requirements_of(self.space.study.at_most, result))
         missing = np.maximum(-margins, 0.0)
         violation = np.where(missing > 1.0, 1.0 + np.log(np.maximum(missing, 1.0)), missing).sum(-1)
-        self.archive.add(points, objectives, margins, violation)
+        self.archive.add(points, objectives, result.filter_volume, margins, violation)
         return objectives, violation

@@ -17,7 +17,7 @@ import pandas as pd
 from numpy.typing import NDArray
 
 from optimizer.errors import NothingFeasible
-from optimizer.fronts import Front, choices, front
+from optimizer.fronts import LITRES, Front, choices, front
 from optimizer.objectives import OBJECTIVES
 from optimizer.populations import (
     ClassResult,
@@ -126,6 +126,7 @@ def evaluated_table(result: SearchResult) -> pd.DataFrame:
             columns: dict[str, Any] = {"concept": found.concept.name}
             columns |= choices(space.inverter, space.designs(found.points))
             columns |= _objective_columns(result.study, found)
+            columns["filter_volume_l"] = LITRES * found.filter_volume
             parts.append(pd.DataFrame(columns))
     return pd.concat(parts, ignore_index=True)
 

@@ -100,6 +100,7 @@ def design_data(study: Study, front: Front, per_class: int = SHOWN_PER_CLASS) ->
     columns["margin"] = plain(PERCENT * front.margins.iloc[rows][named].to_numpy(dtype=float))
     columns["efficiency"] = plain(PERCENT * front.efficiency[rows])
     columns |= _spectra(front, rows)
+    columns |= _emission(front, rows)
     return DesignData(
         records=[dict(zip(columns, row, strict=True)) for row in zip(*columns.values(), strict=True)],
         total={
@@ -173,3 +174,19 @@ def _spectra(front: Front, rows: NDArray[np.int64]) -> dict[str, list[Any]]:
         for name, values in zip(lists, lines, strict=True):
             lists[name].append(plain(values[present]))
     return lists
+
+
+def _emission(front: Front, rows: NDArray[np.int64]) -> dict[str, list[Any]]:
+    """Lists of the emission lines of each design: MHz and dB over 1 uV, whole decibels; none without a limit.
+
+    The limit itself is the same for all designs and drawn from the catalogue.
+    """
+    if front.emission is None:
+        return {}
+    found = front.emission
+    return {
+        "emission_mhz": plain(found.frequency[rows] / 1e6),
+        "emission_bare": np.rint(found.bare[rows]).astype(int).tolist(),
+        "emission_left": np.rint(found.left[rows]).astype(int).tolist(),
+        "emission_limit": np.round(found.limit[rows], 1).tolist(),
+    }

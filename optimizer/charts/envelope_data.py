@@ -9,11 +9,12 @@ import pandas as pd
 
 from optimizer.charts.design_data import KILO, Records, plain
 
-MOST_BINS = 40
+MOST_BINS = 60
 FEWEST = 10
 """Candidates that a bin needs: the best of a few is luck. A class without one keeps its fullest bins."""
 FREQUENCY = "switching_frequency_hz"
 SHOWN_FREQUENCY = "switching_frequency_khz"
+VOLUME_COLUMN, FILTER_COLUMN = "volume_l", "filter_volume_l"
 
 
 @dataclass(frozen=True)
@@ -21,7 +22,8 @@ class Envelope:
     """A lower envelope over the switching frequency.
 
     Attributes:
-        records: per class and frequency bin the candidate with the least value, at its own frequency [kHz].
+        records: per class and frequency bin the candidate with the least value, at its own frequency [kHz];
+            the least volumes with the volume of their filters.
         column: what is least.
         candidates: candidates looked at [-].
         front_only: whether only the front was at hand.
@@ -63,6 +65,8 @@ def envelope(
         SHOWN_FREQUENCY: plain(chosen[FREQUENCY] / KILO),
         column: plain(chosen[column]),
     }
+    if column == VOLUME_COLUMN and FILTER_COLUMN in chosen:
+        columns[FILTER_COLUMN] = plain(chosen[FILTER_COLUMN])
     records = [dict(zip(columns, row, strict=True)) for row in zip(*columns.values(), strict=True)]
     return Envelope(records, column, len(source), front_only)
 

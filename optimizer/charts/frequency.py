@@ -7,10 +7,10 @@ from dataclasses import dataclass
 
 import altair as alt
 
-from optimizer.charts.content import ENVELOPED, Content
+from optimizer.charts.content import BAND_STEPS, ENVELOPED, Content
 from optimizer.charts.design_data import Records
-from optimizer.charts.envelope_data import FEWEST, SHOWN_FREQUENCY, Envelope
-from optimizer.charts.look import INK, class_scales, heading
+from optimizer.charts.envelope_data import FEWEST, FILTER_COLUMN, SHOWN_FREQUENCY, Envelope
+from optimizer.charts.look import FAINT, INK, class_scales, heading
 from optimizer.charts.quantities import Quantity, quantity_of
 from optimizer.charts.selections import Selections
 from optimizer.study import Study
@@ -33,6 +33,7 @@ class EnvelopeView:
         concepts: in the study's order.
         records: all shown designs: the axes hold for each of them.
         with_frequency: whether the axis of the frequency is labelled.
+        with_steps: whether the steps of the emission band's start are marked.
     """
 
     found: Envelope
@@ -40,6 +41,12 @@ class EnvelopeView:
     concepts: Sequence[str]
     records: Records
     with_frequency: bool
+    with_steps: bool = False
+
+    @property
+    def has_filter(self) -> bool:
+        """Whether the filters' volumes are known."""
+        return any(FILTER_COLUMN in record for record in self.found.records)
 
     @property
     def name(self) -> str:
@@ -66,6 +73,7 @@ class EnvelopeView:
     def y(self) -> alt.Y:
         """The quantity over the envelopes and somewhat above; what lies farther up is cut off."""
         values = [record[self.found.column] for record in self.found.records]
+        values += [record[FILTER_COLUMN] for record in self.found.records if FILTER_COLUMN in record]
         low, high = min(values), max(values)
         span = max(high - low, 0.05 * abs(high))
         scale = alt.Scale(domain=[low - ROOM * span, high + HEADROOM * span], nice=False, zero=False)
@@ -91,11 +99,35 @@ class EnvelopeView:
             .encode(x=self.x, y=self.y, color=self.colour, tooltip=tooltip)
         )
 
+    def filters(self) -> alt.Chart:
+        """Of the same candidates the volume of their filters, dashed."""
+        share = alt.Y(f"{FILTER_COLUMN}:Q")
+        tooltip = [
+            alt.Tooltip("concept:N", title="concept"),
+            alt.Tooltip(f"{SHOWN_FREQUENCY}:Q", title=FREQUENCY_TITLE, format=".3~r"),
+            alt.Tooltip(f"{FILTER_COLUMN}:Q", title="filters [l]", format=".3~r"),
+        ]
+        return (
+            alt.Chart(alt.NamedData(self.name), name=f"{self.name}_filters")
+            .mark_line(strokeWidth=1.1, strokeDash=[4, 3])
+            .encode(x=self.x, y=share, color=self.colour, tooltip=tooltip)
+        )
+
+    def marks(self) -> alt.Chart:
+        """A line at every step of the emission band's start."""
+        return (
+            alt.Chart(alt.NamedData(BAND_STEPS), name=f"{self.name}_steps")
+            .mark_rule(color=FAINT, strokeWidth=0.8)
+            .encode(x=self.x)
+        )
+
     def title(self) -> alt.TitleParams:
         """Heading that says what the envelope was drawn from."""
         words = f"Least {self.quantity.title} at each switching frequency"
         if self.with_frequency:
-            return heading(words)
+            told = ["dashed: of it the filters"] if self.has_filter else []
+            told += ["grey lines: 150 kHz/n"] if self.with_steps else []
+            return heading(words, *(["; ".join(told)] if told else []))
         source = "front designs" if self.found.front_only else "feasible candidates"
         few = f"bands with fewer than {FEWEST} left out"
         return heading(words, f"best of {self.found.candidates:,} {source} by frequency band; {few}")
@@ -110,7 +142,7 @@ def envelope_views(study: Study, found: Content) -> list[EnvelopeView]:
     """
     classes, records, last = study.concept_names, found.designs.records, ENVELOPED[-1]
     return [
-        EnvelopeView(item, quantity_of(name), classes, records, name == last)
+        EnvelopeView(item, quantity_of(name), classes, records, name == last, bool(found.steps))
         for name, item in zip(ENVELOPED, found.envelopes, strict=True)
     ]
 
@@ -145,5 +177,9 @@ def envelope_view(view: EnvelopeView, linked: Selections, width: int, height: in
         .transform_filter(linked.picked_test)
         .properties(name=f"{view.name}_at")
     )
-    lines = view.lines().transform_filter(linked.classes)
-    return alt.LayerChart(layer=[at, group, lines, picked], width=width, height=height, title=view.title())
+    layers = [view.marks()] if view.with_steps else []
+    layers += [at, group]
+    if view.has_filter:
+        layers.append(view.filters().transform_filter(linked.classes))
+    layers += [view.lines().transform_filter(linked.classes), picked]
+    return alt.LayerChart(layer=layers, width=width, height=height, title=view.title())

@@ -11,6 +11,7 @@ import pandas as pd
 from optimizer.charts.breakdown import breakdown
 from optimizer.charts.card import card
 from optimizer.charts.content import Content, content
+from optimizer.charts.emission import emission
 from optimizer.charts.frequency import envelope_view, envelope_views
 from optimizer.charts.load_curve import load_curve
 from optimizer.charts.look import configuration
@@ -70,7 +71,7 @@ def _rows(study: Study, found: Content, linked: Selections) -> list[alt.LayerCha
     losses, volumes = component_words(designs.losses, LOSS), component_words(designs.volumes, VOLUME)
     envelopes = [envelope_view(view, linked, 490, 180) for view in envelope_views(study, found)]
     over_frequency = alt.VConcatChart(vconcat=envelopes, spacing=GAP, bounds="flush")
-    return [
+    rows: list[alt.LayerChart | alt.HConcatChart] = [
         _row(GAP, scatter(linked, designs.quantities, classes, 600, 420), over_frequency),
         card(spec, designs.quantities, linked, WIDTH),
         _row(
@@ -85,6 +86,9 @@ def _rows(study: Study, found: Content, linked: Selections) -> list[alt.LayerCha
             load_curve(designs, classes, linked, 450, 230),
         ),
     ]
+    if spec.emission_limit:
+        rows.append(emission(spec, linked, WIDTH, 230))
+    return rows
 
 
 def _row(gap: int, *views: alt.LayerChart | alt.VConcatChart) -> alt.HConcatChart:

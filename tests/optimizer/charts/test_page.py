@@ -47,7 +47,8 @@ def some(front, rows):
         for name in ("efficiency", "line_order", "line_amplitude", "line_limit")
     }
     frames = {name: getattr(front, name).iloc[rows].reset_index(drop=True) for name in ("table", "margins")}
-    return replace(front, **arrays, **frames)
+    lines = replace(front.emission, **{name: value[rows] for name, value in vars(front.emission).items()})
+    return replace(front, **arrays, **frames, emission=lines)
 
 
 def test_nothing_is_fetched_and_the_browser_is_told_so(drawn):

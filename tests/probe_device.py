@@ -40,7 +40,8 @@ IDEAL: dict[str, float | bool] = {
     "gate_swing_v": 1.0, "junction_case_k_m2_per_w": 1e-9, "junction_case_reference_area_m2": 1.0,
     "gate_unit_power_w": 0.0,
     "junction_case_exponent": 0.0, "diode_junction_case_factor": 1.0, "case_sink_k_per_w": 1e-9,
-    "junction_limit_c": 150.0, "dead_time_s": 0.0, "reference_current_density_a_per_m2": 1.0,
+    "junction_limit_c": 150.0, "turn_on_constant_share": 0.0, "turn_off_constant_share": 0.0,
+    "recovery_constant_share": 0.0, "dead_time_s": 0.0, "reference_current_density_a_per_m2": 1.0,
 }  # fmt: skip
 
 

@@ -46,6 +46,11 @@ class ClampDiode:
     origin: Mapping[str, str] = field(default_factory=dict, compare=False, repr=False)
 
     @property
+    def recovery_constant_share(self) -> float:
+        """Part of the recovery energy at rated current that is there without current [-]."""
+        return 0.0
+
+    @property
     def diode_area_share(self) -> float:
         """Diode die over the die areas given for it: it is the only die [-]."""
         return 1.0

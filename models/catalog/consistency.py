@@ -25,6 +25,16 @@ def below(lower: str, upper: str) -> Check:
     return check
 
 
+def at_most(lower: str, upper: str) -> Check:
+    """`lower` is not greater than `upper`."""
+
+    def check(values: Mapping[str, Number]) -> str:
+        (low,), (high,) = _numbers(values[lower]), _numbers(values[upper])
+        return f"{lower} must not exceed {upper}, got {low:g} and {high:g}" if low > high else ""
+
+    return check
+
+
 def rising(name: str) -> Check:
     """Entries rise from first to last."""
 

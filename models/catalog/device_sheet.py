@@ -180,6 +180,16 @@ _CLASS_RULES = [
         "gate drive takes charge per cycle only",
         last_resort=True,
     ),
+    *(
+        Rule(
+            f"{name}_constant_share",
+            (),
+            lambda: 0.0,
+            "a power of the current alone",
+            last_resort=True,
+        )
+        for name in ("turn_on", "turn_off", "recovery")
+    ),
     Rule(
         "greatest_switching_frequency_hz",
         (),
@@ -213,6 +223,39 @@ _SHEET_RULES = [
         ("sheet_rated_current_a", _DIE),
         lambda i, area: i / area,
         "sheet rated current over die area",
+    ),
+    *(
+        Rule(
+            f"slope_area_{temperature}_ohm_m2",
+            (f"sheet_slope_{temperature}_ohm", _DIE),
+            lambda r, area: r * area,
+            "slope resistance times die area",
+        )
+        for temperature in ("25", "hot")
+    ),
+    *(
+        Rule(
+            f"diode_slope_area_{temperature}_ohm_m2",
+            (f"sheet_diode_slope_{temperature}_ohm", _DIE, "diode_area_share"),
+            lambda r, area, share: r * area * share,
+            "slope resistance times the diode's die area",
+        )
+        for temperature in ("25", "hot")
+    ),
+    *(
+        Rule(f"die_area_{end}_m2", (_DIE,), lambda area: area, "a data sheet's part has one size")
+        for end in ("min", "max")
+    ),
+    Rule(
+        "diode_junction_case_factor",
+        (
+            "sheet_diode_junction_case_k_per_w",
+            "sheet_junction_case_k_per_w",
+            "diode_area_share",
+            "junction_case_exponent",
+        ),
+        lambda diode, switch, share, exponent: diode / switch * share**exponent,
+        "sheet thermal resistances, brought to equal die area",
     ),
     Rule("output_charge_c_per_m2", ("sheet_output_charge_c", _DIE), lambda q, a: q / a, "over die area"),
     Rule("output_energy_j_per_m2", ("sheet_output_energy_j", _DIE), lambda e, a: e / a, "over die area"),

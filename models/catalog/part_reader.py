@@ -11,6 +11,7 @@ from models.catalog.key_units import accepted_keys
 from models.catalog.reading import Problems, RawPart, nearest_hint
 from models.catalog.schemas import Schema
 
+CURVES = "curves"
 _ENTRY_KEYS = ("value", "origin", "range")
 _PART_WORDS = ("name", "based_on", "replaces", "range_class")
 _KIND_WORDS = {str: "a text", bool: "true or false", int: "a whole number", tuple: "a list of texts"}
@@ -34,6 +35,7 @@ class PartReader:
             base = str(raw.entries.get("based_on"))
             plain = {**self._plain.get(base, {}), **self._plain_values(raw)}
             given = self._quantities(raw)
+            self._add_curves(raw, plain, given)
             for message in self.schema.faults_alone(given):
                 self.problems.add(raw, message)
             if len(self.problems.messages) == before:
@@ -117,7 +119,7 @@ class PartReader:
         keys = accepted_keys(self.schema.quantities)
         given: dict[str, Quantity] = {}
         for key, entry in raw.entries.items():
-            if key in _PART_WORDS or key in self.schema.plain_fields:
+            if key in _PART_WORDS or key in self.schema.plain_fields or self._is_curves(key):
                 continue
             if key not in keys:
                 hint = nearest_hint(key, [*keys, *_PART_WORDS, *self.schema.plain_fields])
@@ -130,6 +132,23 @@ class PartReader:
             elif quantity is not None:
                 given[name] = quantity
         return given
+
+    def _is_curves(self, key: str) -> bool:
+        return key == CURVES and self.schema.curves is not None
+
+    def _add_curves(self, raw: RawPart, plain: Mapping[str, Any], given: dict[str, Quantity]) -> None:
+        """Add what follows from a part's curves; what is stated as a number as well is a fault."""
+        if CURVES not in raw.entries or self.schema.curves is None:
+            return
+        rated = given.get("sheet_rated_current_a")
+        current = rated.value if rated is not None and isinstance(rated.value, float) else None
+        found, faults = self.schema.curves(raw.entries[CURVES], current, plain.get("shared_die") is True)
+        for fault in faults:
+            self.problems.add(raw, fault)
+        for name, quantity in found.items():
+            if name in given:
+                self.problems.add(raw, f"{name} is given by a curve and by a number; leave one out")
+            given[name] = quantity
 
     def _quantity(self, raw: RawPart, key: str, entry: Any, factor: float) -> Quantity | None:
         """One entry { value, origin } as a quantity in SI."""

@@ -109,6 +109,10 @@ class Device:
     switch_node_capacitance_f: float  # package tab to heatsink through the insulation [F]
     gate_unit_power_w: float = 0.0  # of one package's gate unit, whatever the frequency [W]
     greatest_switching_frequency_hz: float = math.inf  # least on and off times, snubber recovery [Hz]
+    # part of an energy at rated current that is there without current: E ~ (1 - c) (I/I_ref)^k_i + c
+    turn_on_constant_share: float = 0.0  # [-]
+    turn_off_constant_share: float = 0.0  # [-]
+    recovery_constant_share: float = 0.0  # [-]
     origin: Mapping[str, str] = field(default_factory=dict, compare=False, repr=False)
 
 

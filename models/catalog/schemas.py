@@ -10,9 +10,10 @@ from types import UnionType
 from typing import Any, get_type_hints
 
 from models.catalog.capacitor_sheet import DC_LINK_RULES
-from models.catalog.consistency import Check, below, rising, same_length, warm_energy
+from models.catalog.consistency import Check, at_most, below, rising, same_length, warm_energy
 from models.catalog.core_sheet import CORE_MATERIAL_RULES
 from models.catalog.derivations import Number, Quantity, Rule
+from models.catalog.device_curves import curve_quantities
 from models.catalog.device_sheet import DEVICE_RULES, device_anchors
 from models.catalog.parts import (
     DEVICE_CLASSES,
@@ -49,6 +50,7 @@ class Schema:
     choices: Mapping[str, tuple[str, ...]] | None = None
     checks: tuple[Check, ...] = ()
     anchors: Callable[[Mapping[str, Any]], tuple[str, ...]] = _no_anchors
+    curves: Callable[[Any, float | None, bool], tuple[dict[str, Quantity], list[str]]] | None = None
 
     @cached_property
     def _hints(self) -> dict[str, type | UnionType]:
@@ -130,6 +132,9 @@ _DEVICE_ZERO = frozenset(
         "output_energy_j_per_m2",
         "output_charge_voltage_exponent",
         "gate_unit_power_w",
+        "turn_on_constant_share",
+        "turn_off_constant_share",
+        "recovery_constant_share",
     }
 )
 
@@ -141,10 +146,11 @@ SCHEMAS: tuple[Schema, ...] = (
         zero_allowed=_DEVICE_ZERO,
         signed=frozenset({"gate_off_v"}),
         at_most_one=frozenset({"voltage_use_limit", "turn_on_share"}),
+        curves=curve_quantities,
         unbounded=frozenset({"greatest_switching_frequency_hz"}),
         choices={"device_class": DEVICE_CLASSES},
         checks=(
-            below("die_area_min_m2", "die_area_max_m2"),
+            at_most("die_area_min_m2", "die_area_max_m2"),
             *(warm_energy(name) for name in ("turn_on", "turn_off", "recovery")),
         ),
         anchors=lambda plain: device_anchors(bool(plain["shared_die"])),

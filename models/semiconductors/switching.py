@@ -1,6 +1,7 @@
 """Switching loss of a leg: energies at the true commutated currents, averaged over the line angle.
 
-E = e V_ref I_ref (I/I_ref)^k_i (V/V_ref)^k_v [1 - k_T (T_hot - T)] with I_ref = rated current of the dies. At
+E = e V_ref I_ref [(1 - c) (I/I_ref)^k_i + c] (V/V_ref)^k_v [1 - k_T (T_hot - T)] with I_ref = rated current
+of the dies. At
 each angle one of the leg's switches turns on at |i| - offset and off at |i| + offset, the offset being half
 the local ripple (exactly: the flux deviation at the instant). Where the current reverses within the period,
 turn-on is soft: no overlap, no recovery, and the reversed current recharges the output capacitances as far as
@@ -162,14 +163,25 @@ def leg_switching(
     (turned_on,) = summed(on, log_valley, hard)
     (turned_off,) = summed(off, log_peak, shares)
     reversed_too, hard_too = summed(off, log_valley, shares, hard)
+    turned_off += reversed_too - hard_too
     recovering = summed(recovery, log_valley, hard)[0] if recovered.any() else np.zeros_like(turned_on)
+    constants = (
+        device.turn_on_constant_share,
+        device.turn_off_constant_share,
+        diode.device.recovery_constant_share,
+    )
+    if any(np.any(constant) for constant in constants):
+        hard_count, all_count = hard.sum(-1), shares.sum(-1)
+        turned_on = turned_on + constants[0] * (hard_count - turned_on)
+        turned_off = turned_off + constants[1] * (2.0 * all_count - hard_count - turned_off)
+        recovering = recovering + constants[2] * (hard_count - recovering)
     charged = np.zeros_like(turned_on)
     if node_charge.any():
         left = charge_left(valley, node_charge[..., None], device.dead_time_s[..., None])
         charged = np.einsum("...a,...a->...", shares, left)
     return LegSwitching(
         turn_on_hot=overlap * per_second * turned_on,
-        turn_off_hot=turn_off * per_second * (turned_off + reversed_too - hard_too),
+        turn_off_hot=turn_off * per_second * turned_off,
         recovery_hot=recovered * per_second * recovering,
         output_charge=0.5 * node_charge * voltage * frequency / count * charged,
         mean_current=carried @ np.full(count, 1.0 / count),

@@ -303,7 +303,7 @@ def test_a_part_is_replaced_only_when_it_says_so(tmp_path: Path) -> None:
         ),
         (
             DEVICE + "die_area_max_mm2 = { value = 1, origin = 'x' }",
-            ["die_area_min_m2 must be less than die_area_max_m2"],
+            ["die_area_min_m2 must not exceed die_area_max_m2"],
         ),
         (
             DEVICE + "turn_on_temperature_coefficient_per_k = { value = 0.02, origin = 'x' }",

@@ -50,18 +50,20 @@ def ac_filter_capacitor(
         line_frequency_hz: [Hz]; ripple_frequency: (n,) [Hz].
         greatest_current: rms current at its worst operating point (n,) [A].
 
-    The dielectric loss is I^2 tan(delta)/(omega C) for each of the two current parts.
+    The dielectric loss is I^2 tan(delta)/(omega C) for each of the two current parts. A filter without
+    capacitor has none of all this.
     """
-    c = capacitance[:, None]
-    line = line_current**2 / (2.0 * np.pi * line_frequency_hz * c)
-    ripple = ripple_mean_square / (2.0 * np.pi * ripple_frequency[:, None] * c)
+    there = capacitance > 0.0
+    c = np.where(there, capacitance, 1.0)[:, None]
+    line = np.where(there[:, None], line_current, 0.0) ** 2 / (2.0 * np.pi * line_frequency_hz * c)
+    ripple = np.where(there[:, None], ripple_mean_square, 0.0) / (2.0 * np.pi * ripple_frequency[:, None] * c)
     volume = phases * capacitance * kind.volume_m3_per_f
     return AcFilterCapacitor(
         loss=phases * kind.loss_tangent * (line + ripple),
-        current_share=greatest_current / (capacitance * kind.current_a_per_f),
+        current_share=np.where(there, greatest_current, 0.0) / (c[:, 0] * kind.current_a_per_f),
         volume=volume,
         mass=volume * kind.density_kg_m3,
-        price=phases * (capacitance * kind.price_per_f + kind.price_fixed),
+        price=phases * (capacitance * kind.price_per_f + np.where(there, kind.price_fixed, 0.0)),
     )
 
 

@@ -46,8 +46,11 @@ class Designs:
             two-level bridge does not have [-], [m2].
         inverter_inductance_h: bridge-side inductance at peak current [H].
         grid_inductance_h: grid- or load-side inductance; 0 for an LC filter [H].
-        filter_capacitance_f: filter capacitance [F].
-        damping_resistance_ohm: resistor in series with the filter capacitor [ohm].
+        filter_capacitance_f: filter capacitance; 0 for a filter of inductance alone [F].
+        damping_resistance_ohm: resistor in series with the filter capacitor, or with the damping capacitor
+            [ohm].
+        damping_capacitance_f: of a damping branch beside the filter capacitor; 0 for a resistor in series
+            [F].
         inverter_inductor, grid_inductor: their builds.
         dc_link: index into the catalogue's dc-link capacitors [-].
         forced_cooling: 1 where a fan drives the heatsink, 0 for natural convection [-].
@@ -65,6 +68,7 @@ class Designs:
     grid_inductance_h: Floats
     filter_capacitance_f: Floats
     damping_resistance_ohm: Floats
+    damping_capacitance_f: Floats
     inverter_inductor: InductorDesigns
     grid_inductor: InductorDesigns
     dc_link: Ints

@@ -47,6 +47,27 @@ class Distortion:
     line_limit: Array
 
 
+def worse(first: Distortion, second: Distortion) -> Distortion:
+    """Of two circuits the one whose lines come nearer to their limits, candidate by candidate; totals are the
+    greater ones.
+    """
+    other = second.worst_share > first.worst_share
+    rows = other[:, None]
+    lines = Lines(
+        order=np.where(rows, second.lines.order, first.lines.order),
+        amplitude=np.where(rows, second.lines.amplitude, first.lines.amplitude),
+        listed=np.where(rows, second.lines.listed, first.lines.listed),
+    )
+    return Distortion(
+        total=np.maximum(first.total, second.total),
+        low=np.maximum(first.low, second.low),
+        worst_share=np.maximum(first.worst_share, second.worst_share),
+        worst_order=np.where(other, second.worst_order, first.worst_order),
+        lines=lines,
+        line_limit=np.where(rows, second.line_limit, first.line_limit),
+    )
+
+
 def loop_left(frequency_hz: Array, bandwidth_hz: Array) -> Array:
     """Share of a disturbance that a loop of integrator gain leaves, f/sqrt(f^2 + f_bw^2) [-]."""
     return frequency_hz / np.sqrt(frequency_hz**2 + bandwidth_hz**2)

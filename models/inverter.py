@@ -22,14 +22,14 @@ from models.catalog.gathered import Gathered
 from models.catalog.parts import AcCapacitor, Catalog
 from models.cooling import SinkCurve, SinkPoint, sink_curve_forced, sink_curve_natural
 from models.designs import Designs
-from models.distortion import Distortion
+from models.distortion import Distortion, worse
 from models.emission.emission_filter import Emission, EmissionModel
 from models.evaluation import Evaluation, joined
 from models.filter_inductors import RippleView, Surroundings, bridge_side, grid_side
 from models.magnetics.core_bands import CoreBands, core_bands
 from models.magnetics.inductor import Inductor
 from models.operating_points import OperatingPoints, operating_points
-from models.output_distortion import current_distortion, voltage_distortion
+from models.output_distortion import current_distortion, sideband_voltages, voltage_distortion
 from models.output_filter import Filter, LinePhasors, line_phasors, resonance_hz
 from models.requirements import Findings, requirements
 from models.roll_up import roll_up
@@ -134,6 +134,16 @@ class Inverter:
             multiples, designs, columns, state, self.points.distortion, packages
         )
 
+    def bridge_lines(self, designs: Designs) -> Array:
+        """Rms of the switching lines of the bridge's phase voltage (n, k) [V], at rated current and greatest
+        dc voltage, in the order of the distortion's lines.
+        """
+        _, state = self._waveforms(designs, _circuit(designs).columns())
+        point, spec = self.points.distortion, self.specification
+        frequency = designs.switching_frequency_hz
+        _, share, _ = sideband_voltages(self.tables, state, point, frequency, spec.line_frequency_hz)
+        return share * spec.dc_voltage_max_v
+
     def _waveforms(self, designs: Designs, columns: Filter) -> tuple[LinePhasors, WaveformState]:
         """Line-frequency phasors and waveform state at all operating points."""
         spec, points = self.specification, self.points
@@ -180,6 +190,7 @@ class Inverter:
             inductors=inductors,
             ac_capacitor=capacitors[0],
             dc_link=capacitors[1],
+            ripple_frequency=designs.switching_frequency_hz * self.tables.main_carrier[designs.modulation],
             resonance=resonance_hz(circuit),
             emission=emission,
         )
@@ -209,7 +220,11 @@ class Inverter:
         spec, point = self.specification, self.points.distortion
         common = (self.tables, state, point, designs.switching_frequency_hz, dead_time)
         if spec.application == GRID_CONNECTED:
-            found = current_distortion(spec, self.catalog.limit_table(spec.limit_table), columns, *common)
+            limits = self.catalog.limit_table(spec.limit_table)
+            strong, weak = spec.grid_inductance_min_h, spec.grid_inductance_max_h
+            found = current_distortion(spec, limits, columns.behind(strong), *common)
+            if weak > strong:
+                found = worse(found, current_distortion(spec, limits, columns.behind(weak), *common))
             return found, found
         linear = voltage_distortion(spec, columns, *common, 0.0)
         if spec.rectifier_share <= 0.0:
@@ -254,10 +269,11 @@ class Inverter:
         worst = points.thermal.start
         line = np.abs(phasors.capacitor_current)
         greatest = np.sqrt(line.max(-1) ** 2 + state.ripple_mean_square.max(-1))
+        together = designs.filter_capacitance_f + designs.damping_capacitance_f
         film = ac_filter_capacitor(
             self.ac_capacitor,
             spec.phases,
-            designs.filter_capacitance_f,
+            together,
             line[:, points.losses],
             state.ripple_mean_square,
             spec.line_frequency_hz,
@@ -307,6 +323,7 @@ def _circuit(designs: Designs) -> Filter:
         designs.grid_inductance_h,
         designs.filter_capacitance_f,
         designs.damping_resistance_ohm,
+        designs.damping_capacitance_f,
     )
 
 

@@ -54,18 +54,19 @@ def operating_points(specification: Specification) -> OperatingPoints:
     """List the operating points of a specification.
 
     Load levels: every one of the European, the Californian and the study's own weighting, at nominal
-    voltages and unity power factor. Thermal points: rated apparent power at the least ac and the greatest
-    dc voltage, at unity and at the least power factor, leading (its current and the filter capacitor's
-    add). Distortion point: rated power at nominal ac and greatest dc voltage. Modulation points: nominal ac
-    at least dc voltage, and greatest ac at nominal dc voltage, both at the least power factor, lagging,
-    which asks most of the bridge's voltage.
+    voltages and the study's power factor (unity unless it says otherwise). Thermal points: rated apparent
+    power at the least ac and the greatest dc voltage, at unity and at the least power factor, leading (its
+    current and the filter capacitor's add). Distortion point: rated power at nominal ac and greatest dc
+    voltage. Modulation points: nominal ac at least dc voltage, and greatest ac at nominal dc voltage, both
+    at the least power factor, lagging, which asks most of the bridge's voltage.
     """
     spec = specification
     levels = sorted({*EUROPEAN_WEIGHTS, *CALIFORNIAN_WEIGHTS, *spec.weights, 1.0})
     low_ac = spec.phase_voltage_v if spec.application == STAND_ALONE else spec.phase_voltage_min_v
     high_ac = spec.phase_voltage_v if spec.application == STAND_ALONE else spec.phase_voltage_max_v
     angle = float(np.arccos(spec.power_factor_min))
-    rows = [(level, spec.phase_voltage_v, 0.0, spec.dc_voltage_v) for level in levels]
+    lag = float(np.copysign(np.arccos(abs(spec.power_factor)), spec.power_factor))
+    rows = [(level, spec.phase_voltage_v, lag, spec.dc_voltage_v) for level in levels]
     count = len(rows)
     rows += [(1.0, low_ac, 0.0, spec.dc_voltage_max_v), (1.0, low_ac, -angle, spec.dc_voltage_max_v)]
     rows += [(1.0, spec.phase_voltage_v, 0.0, spec.dc_voltage_max_v)]
@@ -73,8 +74,8 @@ def operating_points(specification: Specification) -> OperatingPoints:
         (1.0, spec.phase_voltage_v, angle, spec.dc_voltage_min_v),
         (1.0, high_ac, angle, spec.dc_voltage_v),
     ]
-    level, voltage, lag, dc = np.array(rows).T
-    phasor = level * spec.apparent_power_va / (spec.phases * voltage) * np.exp(-1j * lag)
+    level, voltage, angles, dc = np.array(rows).T
+    phasor = level * spec.apparent_power_va / (spec.phases * voltage) * np.exp(-1j * angles)
     return OperatingPoints(
         load_level=level,
         output_voltage=voltage,

@@ -16,7 +16,7 @@ from models.emission.emission_filter import Emission
 from models.evaluation import Constraint, at_least, at_most
 from models.magnetics.inductor import Inductor
 from models.operating_points import OperatingPoints
-from models.output_filter import Filter, LinePhasors
+from models.output_filter import Filter, LinePhasors, resonance_hz
 from models.semiconductors.bridge_losses import BridgeLosses
 from models.semiconductors.packages import Packages
 from models.specification import GRID_CONNECTED, DesignRules, Specification
@@ -35,6 +35,7 @@ class Findings:
 
     designs: Designs
     circuit: Filter
+    ripple_frequency: Array
     phasors: LinePhasors
     state: WaveformState
     packages: tuple[Packages, ...]
@@ -161,19 +162,19 @@ def _filter(spec: Specification, found: Findings) -> tuple[Constraint, ...]:
     rules, designs, link = spec.rules, found.designs, found.dc_link
     omega = 2.0 * np.pi * spec.line_frequency_hz
     reactance = omega * (designs.inverter_inductance_h + designs.grid_inductance_h) / spec.base_impedance_ohm
-    reactive = omega * designs.filter_capacitance_f * spec.base_impedance_ohm
+    capacitance = designs.filter_capacitance_f + designs.damping_capacitance_f
+    reactive = omega * capacitance * spec.base_impedance_ohm
+    there = designs.filter_capacitance_f > 0.0  # a filter of inductance alone has no resonance
+    lowest, highest = (
+        resonance_hz(found.circuit.behind(grid))
+        for grid in (spec.grid_inductance_max_h, spec.grid_inductance_min_h)
+    )
+    over_line = np.where(there, lowest / spec.line_frequency_hz, 10.0 * rules.resonance_over_line)
+    over_switching = np.where(there, highest / designs.switching_frequency_hz, 0.0)
     return (
-        at_least(
-            "filter resonance over line frequency",
-            "",
-            found.resonance / spec.line_frequency_hz,
-            rules.resonance_over_line,
-        ),
+        at_least("filter resonance over line frequency", "", over_line, rules.resonance_over_line),
         at_most(
-            "filter resonance over switching frequency",
-            "",
-            found.resonance / designs.switching_frequency_hz,
-            rules.resonance_over_switching,
+            "filter resonance over switching frequency", "", over_switching, rules.resonance_over_switching
         ),
         at_most("filter reactance", "of base impedance", reactance, rules.total_inductance_share),
         at_most(

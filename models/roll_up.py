@@ -43,7 +43,7 @@ def roll_up(
     """
     losses = _losses(spec, catalog, points, found)
     level = points.load_level[points.loads]
-    power = level * spec.apparent_power_va
+    power = level * spec.apparent_power_va * abs(spec.power_factor)
     efficiency = power / (power + sum(losses.values()))
     volumes, masses = _volumes(spec, found), _masses(spec, found)
     return Evaluation(
@@ -71,7 +71,7 @@ def _losses(
     first, second = found.inductors
     capacitor_current = np.abs(found.phasors.capacitor_current[:, loads])
     ripple = found.state.ripple_mean_square[:, loads]
-    damping = spec.phases * found.designs.damping_resistance_ohm[:, None] * (capacitor_current**2 + ripple)
+    damping = _damping_loss(spec, found, capacitor_current, ripple)
     running = points.load_level[loads] >= spec.rules.fan_load_start
     shape = damping.shape
     auxiliary = np.full(shape, float(catalog.cost.auxiliary_power_at(spec.apparent_power_va)))
@@ -93,6 +93,17 @@ def _losses(
         "fan": found.sink.fan_power_w[:, None] * running,
         "auxiliary": auxiliary,
     }
+
+
+def _damping_loss(spec: Specification, found: Findings, line_current: Array, ripple: Array) -> Array:
+    """Loss of the damping resistors: the capacitor branch's resistance at line frequency and at the carrier
+    group that carries most ripple (n, p) [W].
+    """
+    circuit, carrier = found.circuit.columns(), found.ripple_frequency[:, None]
+    slow, _ = circuit.branch(np.full_like(carrier, 2.0 * np.pi * spec.line_frequency_hz))
+    fast, _ = circuit.branch(2.0 * np.pi * carrier)
+    there = (found.designs.filter_capacitance_f > 0.0)[:, None]
+    return np.where(there, spec.phases * (slow * line_current**2 + fast * ripple), 0.0)
 
 
 def _emission_loss(spec: Specification, loads: slice, found: Findings) -> dict[str, Array]:

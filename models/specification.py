@@ -2,6 +2,7 @@
 
 from __future__ import annotations
 
+import math
 from dataclasses import dataclass, field
 from typing import Any
 
@@ -42,6 +43,9 @@ class DesignRules:
     resonance_over_line: float = rule(10.0, "", "least resonance frequency over the line frequency")
     resonance_over_switching: float = rule(
         0.5, "", "greatest resonance frequency over the switching frequency"
+    )
+    damping_capacitance_ratio: float = rule(
+        1.0, "", "capacitance of a parallel R-C damping branch over the filter capacitance"
     )
     capacitor_reactive_share: float = rule(
         0.08, "", "greatest filter capacitor reactive power over rated power"
@@ -130,6 +134,9 @@ class Specification:
         rectifier_share: share of rated apparent power drawn by rectifier loads (stand-alone) [-].
         crest_factor: crest factor of that rectifier load's current [-].
         limit_table: name of the harmonic limit table in the catalogue [-].
+        power_factor: of the delivered current at the load levels: positive lagging, negative leading [-].
+        short_circuit_ratio_min, short_circuit_ratio_max: short-circuit power of the grid over rated apparent
+            power; infinite for a stiff grid [-].
         emission_limit: name of the limit of conducted emission in the catalogue, "" where emission is left
             out [-].
         voltage_thd_limit_linear, voltage_thd_limit_rectifier: stand-alone voltage limits, fractions [-].
@@ -155,9 +162,25 @@ class Specification:
     crest_factor: float = 3.0
     limit_table: str = "IEEE 1547-2018"
     emission_limit: str = ""
+    power_factor: float = 1.0
+    short_circuit_ratio_min: float = float("inf")
+    short_circuit_ratio_max: float = float("inf")
     voltage_thd_limit_linear: float = 0.03
     voltage_thd_limit_rectifier: float = 0.08
     rules: DesignRules = field(default_factory=DesignRules)
+
+    @property
+    def grid_inductance_min_h(self) -> float:
+        """Inductance of the strongest grid per phase [H]."""
+        return self._grid_inductance(self.short_circuit_ratio_max)
+
+    @property
+    def grid_inductance_max_h(self) -> float:
+        """Inductance of the weakest grid per phase [H]."""
+        return self._grid_inductance(self.short_circuit_ratio_min)
+
+    def _grid_inductance(self, ratio: float) -> float:
+        return self.base_impedance_ohm / (ratio * 2.0 * math.pi * self.line_frequency_hz)
 
     @property
     def rated_current_a(self) -> float:

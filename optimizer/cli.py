@@ -94,18 +94,27 @@ def evaluate(
         Path | None,
         typer.Option(help="Result file, .csv or .json; default: standard output.", show_default=False),
     ] = None,
+    spectrum: Annotated[
+        Path | None,
+        typer.Option(help="CSV file for the harmonic lines of every design.", show_default=False),
+    ] = None,
     json: Annotated[bool, typer.Option("--json", help="JSON instead of CSV on standard output.")] = False,
 ) -> None:
-    """Evaluate designs given by hand: every figure, every margin."""
+    """Evaluate designs given by hand: every figure, every margin, losses by part, spectrum."""
     from optimizer.designs_file import read_designs
-    from optimizer.evaluate import evaluated_table, written_table
+    from optimizer.evaluate import evaluated_table, spectrum_table, written_table
     from optimizer.populations import prepared_inverter
     from optimizer.run_folder import write_whole
     from optimizer.study import Study
 
     asked = Study.read(study)
     inverter = prepared_inverter(asked)
-    table = evaluated_table(asked, inverter, read_designs(designs, inverter))
+    given = read_designs(designs, inverter)
+    for note in given.notes:
+        typer.echo(f"Left out of {designs.name}, {note}", err=True)
+    table = evaluated_table(asked, inverter, given)
+    if spectrum is not None:
+        write_whole(spectrum, written_table(spectrum_table(asked, inverter, given), "csv"))
     kind = "json" if json or (out is not None and out.suffix == ".json") else "csv"
     text = written_table(table, kind)
     if out is None:

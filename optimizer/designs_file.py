@@ -17,6 +17,7 @@ from models.designs import Designs, InductorDesigns
 from models.inverter import Inverter
 from models.waveforms.leg_commutations import INNER
 from optimizer.errors import InputError, Problem
+from optimizer.left_out import filled_in, may_be_left_out
 
 MOST_ROWS = 1_000_000
 LABEL = "design_id"
@@ -36,10 +37,13 @@ class Column:
 
 @dataclass(frozen=True)
 class HandDesigns:
-    """Designs of a file with their labels (the design_id column, or row numbers)."""
+    """Designs of a file with their labels (the design_id column, or row numbers), and what stands in for what
+    the file leaves out.
+    """
 
     labels: tuple[str, ...]
     designs: Designs
+    notes: tuple[str, ...] = ()
 
 
 def columns(inverter: Inverter) -> tuple[Column, ...]:
@@ -54,8 +58,9 @@ def columns(inverter: Inverter) -> tuple[Column, ...]:
         *_inner_columns(inverter),
         _positive("inverter_inductance_h"),
         _positive("grid_inductance_h", zero=True, default=0.0),
-        _positive("filter_capacitance_f"),
+        _positive("filter_capacitance_f", zero=True, default=0.0),
         _positive("damping_resistance_ohm", zero=True, default=0.0),
+        _positive("damping_capacitance_f", zero=True, default=0.0),
         _choice("dc_link", catalog.dc_link_capacitors.names),
         _choice("cooling", ("natural", "forced"), default=0),
         _positive("sink_resistance_k_per_w"),
@@ -127,8 +132,10 @@ def read_designs(path: Path, inverter: Inverter, also_known: Sequence[str] = ())
             expected).
     """
     rows, header = _rows(path)
-    wanted = columns(inverter)
-    problems = _header_problems(path, header, wanted, {LABEL, *also_known})
+    everything = columns(inverter)
+    left_out = _left_out(header)
+    wanted = [column for column in everything if column.name not in left_out]
+    problems = _header_problems(path, header, everything, {LABEL, *also_known}, left_out)
     if problems:
         raise InputError(*problems)
     values: dict[str, list[Any]] = {column.name: [] for column in wanted}
@@ -141,7 +148,20 @@ def read_designs(path: Path, inverter: Inverter, also_known: Sequence[str] = ())
     labels = tuple(
         (row.get(LABEL) or "").strip() or f"row {number}" for number, row in enumerate(rows, start=2)
     )
-    return HandDesigns(labels, _designs({name: np.array(column) for name, column in values.items()}))
+    arrays = {name: np.array(column) for name, column in values.items()}
+    complete, notes, faults = filled_in(arrays, left_out, inverter)
+    if faults:
+        raise InputError(*(Problem("no such column", fault, file=str(path)) for fault in faults))
+    return HandDesigns(labels, _designs(complete), notes)
+
+
+def _left_out(header: Sequence[str]) -> tuple[str, ...]:
+    """Columns that the file lacks and something can stand in for; an inductor's only all together."""
+    lacking = [name for name in may_be_left_out() if name not in header]
+    inductor = [name for name in may_be_left_out() if name.startswith("inverter_inductor_")]
+    if any(name in header for name in inductor):
+        return tuple(name for name in lacking if name not in inductor)
+    return tuple(lacking)
 
 
 def _rows(path: Path) -> tuple[list[dict[str, str]], list[str]]:
@@ -169,13 +189,13 @@ def _rows(path: Path) -> tuple[list[dict[str, str]], list[str]]:
 
 
 def _header_problems(
-    path: Path, header: Sequence[str], wanted: Sequence[Column], known: set[str]
+    path: Path, header: Sequence[str], wanted: Sequence[Column], known: set[str], left_out: Sequence[str]
 ) -> list[Problem]:
     names = [column.name for column in wanted]
     problems = [
         Problem("no such column", column.expected, key=column.name, file=str(path))
         for column in wanted
-        if column.default is None and column.name not in header
+        if column.default is None and column.name not in header and column.name not in left_out
     ]
     for name in header:
         if name not in names and name not in known and not _is_result(name):
@@ -255,6 +275,7 @@ def _designs(values: Mapping[str, Any]) -> Designs:
         grid_inductance_h=values["grid_inductance_h"],
         filter_capacitance_f=values["filter_capacitance_f"],
         damping_resistance_ohm=values["damping_resistance_ohm"],
+        damping_capacitance_f=values["damping_capacitance_f"],
         inverter_inductor=_inductor(values, "inverter_inductor"),
         grid_inductor=_inductor(values, "grid_inductor"),
         dc_link=values["dc_link"],

@@ -39,7 +39,37 @@ def _over_load(result: Evaluation) -> pd.DataFrame:
         share = f"at_{100.0 * level:.0f}_percent"
         columns[f"efficiency_{share}"] = result.efficiency[:, place]
         columns[f"loss_{share}_w"] = np.sum([part[:, place] for part in result.losses.values()], axis=0)
+        columns |= {f"loss_{name}_{share}_w": part[:, place] for name, part in result.losses.items()}
     return pd.DataFrame(columns)
+
+
+def spectrum_table(study: Study, inverter: Inverter, given: HandDesigns) -> pd.DataFrame:
+    """One row a design and line: low orders, then switching sidebands.
+
+    Columns: order and frequency; rms of the bridge's phase voltage [V] (of switching lines); rms over rated
+    current or voltage of what the filter puts out [%], and its limit [%].
+
+    Args:
+        study, inverter, given: as in `evaluated_table`.
+    """
+    found = inverter.evaluate(given.designs).distortion
+    switched, low = inverter.bridge_lines(given.designs), found.lines.order.shape[1]
+    low -= switched.shape[1]
+    volts = np.concatenate([np.full((len(switched), low), np.nan), switched], axis=-1)
+    shown = np.concatenate([np.ones((len(switched), low), dtype=bool), found.lines.listed[:, low:]], axis=-1)
+    limit = np.where(np.isfinite(found.line_limit), 100.0 * found.line_limit, np.nan)
+    labels = np.repeat(np.array(given.labels, dtype=object)[:, None], shown.shape[1], axis=1)
+    table = pd.DataFrame(
+        {
+            LABEL: labels[shown],
+            "order": found.lines.order[shown],
+            "frequency_hz": study.specification.line_frequency_hz * found.lines.order[shown],
+            "bridge_voltage_v": volts[shown],
+            "output_percent": 100.0 * found.lines.amplitude[shown],
+            "limit_percent": limit[shown],
+        }
+    )
+    return table.sort_values([LABEL, "order"], kind="stable", ignore_index=True)
 
 
 def written_table(table: pd.DataFrame, kind: str) -> str:

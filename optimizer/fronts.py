@@ -190,6 +190,7 @@ def choices(inverter: Inverter, designs: Designs) -> dict[str, Any]:
         "grid_inductance_h": designs.grid_inductance_h,
         "filter_capacitance_f": designs.filter_capacitance_f,
         "damping_resistance_ohm": designs.damping_resistance_ohm,
+        "damping_capacitance_f": designs.damping_capacitance_f,
         "dc_link": np.array(catalog.dc_link_capacitors.names)[designs.dc_link],
         "cooling": np.where(designs.forced_cooling == 1, "forced", "natural"),
         "sink_resistance_k_per_w": designs.sink_resistance_k_per_w,

@@ -15,10 +15,11 @@ from numpy.typing import NDArray
 from models.designs import Designs, InductorDesigns
 from models.inverter import Inverter
 from models.magnetics.sizing import CoreLadder, core_ladder, size_inductor
+from models.output_filter import NO_CAPACITANCE
 from models.waveforms.leg_commutations import INNER, OUTER
 from models.waveforms.tables import WaveformTables
 from optimizer.study import Study
-from optimizer.study_schema import LC
+from optimizer.study_schema import LCL, ONLY_L, PARALLEL_RC
 
 Array = NDArray[np.float64]
 Ints = NDArray[np.int64]
@@ -114,7 +115,7 @@ class SearchSpace:
     def variables(self) -> tuple[Variable, ...]:
         """All variables, in the order of the cube's axes."""
         search, real = self.study.search, self._real
-        inductors = ["inverter"] if search.filter_kind == LC else ["inverter", "grid"]
+        inductors = ["inverter", "grid"] if search.filter_kind == LCL else ["inverter"]
         return (
             _category("device", len(self.devices)),
             _category("modulation", len(self._schemes)),
@@ -125,12 +126,19 @@ class SearchSpace:
             Variable("die area", LINEAR, 0.0, 1.0),
             *self._inner_variables(),
             real("ripple"),
-            *([] if search.filter_kind == LC else [real("grid_inductance_ratio")]),
-            real("filter_capacitance_share"),
-            real("damping"),
+            *([real("grid_inductance_ratio")] if search.filter_kind == LCL else []),
+            *self._capacitor_variables(),
             real("sink_resistance"),
             *(variable for name in inductors for variable in self._inductor_variables(name)),
         )
+
+    def _capacitor_variables(self) -> tuple[Variable, ...]:
+        search = self.study.search
+        if search.filter_kind == ONLY_L:
+            return ()
+        kinds = len(search.damping_branches)
+        choice = (_category("damping branch", kinds),) if kinds > 1 else ()
+        return (self._real("filter_capacitance_share"), *choice, self._real("damping"))
 
     def _inner_variables(self) -> tuple[Variable, ...]:
         """Of three-level legs: the inner part where it blocks less than the outer one, and its die area."""
@@ -196,7 +204,8 @@ class SearchSpace:
         )
         grid_inductance = inverter_inductance * values.get("grid_inductance_ratio", np.zeros_like(frequency))
         omega = 2.0 * np.pi * spec.line_frequency_hz
-        capacitance = values["filter_capacitance_share"] / (omega * spec.base_impedance_ohm)
+        none = np.zeros_like(frequency)
+        capacitance = values.get("filter_capacitance_share", none) / (omega * spec.base_impedance_ohm)
         effective = np.where(
             grid_inductance > 0.0,
             inverter_inductance * grid_inductance / (inverter_inductance + grid_inductance),
@@ -228,13 +237,23 @@ class SearchSpace:
             inverter_inductance_h=inverter_inductance,
             grid_inductance_h=grid_inductance,
             filter_capacitance_f=capacitance,
-            damping_resistance_ohm=values["damping"] * np.sqrt(effective / capacitance),
+            damping_resistance_ohm=values.get("damping", none)
+            * np.sqrt(effective / np.maximum(capacitance, NO_CAPACITANCE)),
+            damping_capacitance_f=np.where(
+                self._beside(values), spec.rules.damping_capacitance_ratio * capacitance, 0.0
+            ),
             inverter_inductor=first,
             grid_inductor=second,
             dc_link=self.dc_links[choose["dc link"]],
             forced_cooling=self._forced[choose["cooling"]],
             sink_resistance_k_per_w=values["sink_resistance"],
         )
+
+    def _beside(self, values: dict[str, Array]) -> NDArray[np.bool_]:
+        """Whether the damping branch stands beside the filter capacitor (n,)."""
+        kinds = np.array([name == PARALLEL_RC for name in self.study.search.damping_branches])
+        chosen = values.get("damping branch", np.zeros_like(values["switching_frequency"]))
+        return kinds[chosen.astype(np.int64)]
 
     def _die_area(self, device: Ints, unit: Array) -> Array:
         """Die areas between the least and the greatest of each device, on a logarithmic scale [m2]."""

@@ -20,14 +20,19 @@ from models.specification import (
 from optimizer.concepts import Concept, concepts
 from optimizer.errors import InputError, Problem
 from optimizer.quantity import show
-from optimizer.study_checks import bridges_of, check_content, chosen_modulations, phase_voltage
+from optimizer.study_checks import (
+    bridges_of,
+    check_content,
+    chosen_modulations,
+    phase_voltage,
+    unused_ranges,
+)
 from optimizer.study_schema import (
     CALIFORNIAN,
     EUROPEAN,
     GRID_CONNECTED_ONLY,
-    GRID_RATIO,
-    LC,
     NO_EMISSION_LIMIT,
+    SIDES,
     STAND_ALONE_ONLY,
     SearchRange,
     StudyContent,
@@ -51,7 +56,8 @@ class SearchSettings:
     Attributes:
         bridges: names, the specification's own first.
         modulations: names of the bridges' modulation schemes to choose from; each bridge uses those it has.
-        filter_kind: LCL or LC.
+        filter_kind: LCL, LC or L.
+        damping_branches: where the damping resistor may stand.
         device_classes: classes of semiconductors; each gets a front of its own.
         core_materials, conductors: names out of the catalogue; empty means all of it.
         dc_links: technologies of dc-link capacitors.
@@ -65,6 +71,7 @@ class SearchSettings:
     bridges: tuple[str, ...]
     modulations: tuple[str, ...]
     filter_kind: str
+    damping_branches: tuple[str, ...]
     device_classes: tuple[str, ...]
     core_materials: tuple[str, ...]
     conductors: tuple[str, ...]
@@ -227,6 +234,9 @@ def _specification(content: StudyContent) -> Specification:
         phases=asked["phases"],
         apparent_power_va=asked["apparent_power"],
         power_factor_min=asked["power_factor_min"],
+        power_factor=asked["power_factor"] * (1.0 if asked["power_factor_side"] == SIDES[0] else -1.0),
+        short_circuit_ratio_min=content.short_circuit_ratio["min"],
+        short_circuit_ratio_max=content.short_circuit_ratio["max"],
         phase_voltage_v=nominal,
         phase_voltage_min_v=nominal * (1.0 - asked["ac_voltage_tolerance"]),
         phase_voltage_max_v=nominal * (1.0 + asked["ac_voltage_tolerance"]),
@@ -253,11 +263,12 @@ def _weights(weighting: Mapping[str, Any]) -> dict[float, float]:
 
 def _search_settings(content: StudyContent) -> SearchSettings:
     search = {key: value for key, value in content.search.items() if key != "ranges"}
-    unused = {GRID_RATIO} if content.filter_kind == LC else set()
+    unused = set(unused_ranges(content.filter["kind"]))
     return SearchSettings(
         bridges=bridges_of(content),
         modulations=chosen_modulations(content),
-        filter_kind=content.filter_kind,
+        filter_kind=content.filter["kind"],
+        damping_branches=content.filter["damping"],
         ranges={name: ends for name, ends in content.ranges.items() if name not in unused},
         **search,
     )

@@ -18,6 +18,8 @@ from optimizer.study_schema import (
     GRID_CONNECTED_ONLY,
     GRID_RATIO,
     LC,
+    LCL,
+    ONLY_L,
     RANGES,
     STAND_ALONE_ONLY,
     StudyContent,
@@ -152,13 +154,32 @@ def _check_weighting(reading: Reading, content: StudyContent) -> None:
 
 
 def _check_filter(reading: Reading, content: StudyContent) -> None:
-    if content.filter_kind != LC:
-        return
-    if content.application.get("kind") == GRID_CONNECTED:
-        reading.note("filter.kind", f'"LCL" where application.kind is "{GRID_CONNECTED}"')
-    place = f"search.ranges.{GRID_RATIO}"
-    if reading.has(place):
-        reading.note(place, 'no such key where filter.kind is "LC"')
+    kind = content.filter.get("kind", LCL)
+    if kind == LC and content.application.get("kind") == GRID_CONNECTED:
+        reading.note("filter.kind", f'"LCL" or "L" where application.kind is "{GRID_CONNECTED}"')
+    for name in unused_ranges(kind):
+        if reading.has(f"search.ranges.{name}"):
+            reading.note(f"search.ranges.{name}", f'no such key where filter.kind is "{kind}"')
+    if kind == ONLY_L and reading.has("filter.damping"):
+        reading.note("filter.damping", f'no such key where filter.kind is "{kind}"')
+
+
+def unused_ranges(filter_kind: str) -> tuple[str, ...]:
+    """Search ranges that a kind of filter has no use for."""
+    without_grid_side = (GRID_RATIO,) if filter_kind != LCL else ()
+    return (
+        (*without_grid_side, "filter_capacitance_share", "damping")
+        if filter_kind == ONLY_L
+        else without_grid_side
+    )
+
+
+def _check_grid(reading: Reading, content: StudyContent) -> None:
+    low, high = content.short_circuit_ratio.get("min"), content.short_circuit_ratio.get("max")
+    if low is not None and high is not None and low > high:
+        reading.note(
+            "application.short_circuit_ratio.min", f"at most application.short_circuit_ratio.max, {high:g}"
+        )
 
 
 def _check_ranges(reading: Reading, content: StudyContent) -> None:
@@ -201,6 +222,7 @@ CHECKS: tuple[Callable[[Reading, StudyContent], None], ...] = (
     _check_bridge,
     _check_weighting,
     _check_filter,
+    _check_grid,
     _check_ranges,
     _check_room_for_resonance,
     _check_catalog_files,

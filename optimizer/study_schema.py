@@ -19,7 +19,8 @@ OBJECTIVES = ("weighted loss", "volume", "price", "mass", "distortion")
 DEFAULT_CLASSES = ("silicon IGBT", "superjunction MOSFET", "SiC MOSFET", "GaN HEMT")
 DC_LINKS = ("electrolytic", "film")
 COOLING = ("natural", "forced")
-LCL, LC = "LCL", "LC"
+LCL, LC, ONLY_L = "LCL", "LC", "L"
+SERIES_R, PARALLEL_RC = "series resistor", "parallel R-C"
 GRID_RATIO = "grid_inductance_ratio"
 EUROPEAN, CALIFORNIAN, CUSTOM = "european", "californian", "custom"
 
@@ -92,6 +93,7 @@ RANGES = (
 )
 
 NO_EMISSION_LIMIT = "none"
+SIDES = ("lagging", "leading")
 TABLES = ("application", "weighting", "bridge", "filter", "objectives", "search", "rules", "catalog")
 NAME = Text(
     "a text of letters, digits, blanks, dots, - and _ (the run folder is called so)", r"\w[\w .-]{0,79}"
@@ -109,6 +111,8 @@ APPLICATION = (
     Key("phases", Choice((1, 3))),
     Key("apparent_power", Quantity("VA", 10.0, 100e6)),
     Key("power_factor_min", Quantity("", 0.0, 1.0, above=True), 0.9),
+    Key("power_factor", Quantity("", 0.0, 1.0, above=True), 1.0),
+    Key("power_factor_side", Choice(SIDES), SIDES[0]),
     Key("ac_voltage", _VOLTAGE),
     Key("ac_voltage_tolerance", Quantity("", 0.0, 0.5), 0.1),
     Key("line_frequency", Quantity("Hz", 10.0, 1e3)),
@@ -116,6 +120,10 @@ APPLICATION = (
     Key("ambient", Quantity("degC", -40.0, 85.0), 40.0),
     Key("altitude", Quantity("m", -100.0, 5000.0), 1000.0),
     Key("emission_limit", Text(), NO_EMISSION_LIMIT),
+)
+SHORT_CIRCUIT = (
+    Key("min", Quantity("", 1.0, 1e6), math.inf),
+    Key("max", Quantity("", 1.0, 1e6), math.inf),
 )
 DC_VOLTAGE = (Key("min", _VOLTAGE), Key("nominal", _VOLTAGE), Key("max", _VOLTAGE))
 _ASKED = {entry.name: entry.default for entry in fields(Specification)}
@@ -125,7 +133,10 @@ STAND_ALONE_ONLY = (
     Key("voltage_thd_limit_linear", _THD, _ASKED["voltage_thd_limit_linear"]),
     Key("voltage_thd_limit_rectifier", _THD, _ASKED["voltage_thd_limit_rectifier"]),
 )
-GRID_CONNECTED_ONLY = (Key("harmonic_limits", Text(), _ASKED["limit_table"]),)
+GRID_CONNECTED_ONLY = (
+    Key("harmonic_limits", Text(), _ASKED["limit_table"]),
+    Key("short_circuit_ratio", SubTable(), None),
+)
 WEIGHTING = (Key("scheme", Choice((EUROPEAN, CALIFORNIAN, CUSTOM)), EUROPEAN),)
 CUSTOM_WEIGHTING = (
     Key("levels", Several(Quantity("", 0.0, 1.2, above=True)), None),
@@ -136,7 +147,10 @@ BRIDGE = (
     Key("compared_with", Several(Choice(tuple(BRIDGES))), ()),
     Key("modulations", Several(Text()), None),
 )
-FILTER = (Key("kind", Choice((LCL, LC)), LCL),)
+FILTER = (
+    Key("kind", Choice((LCL, LC, ONLY_L)), LCL),
+    Key("damping", Several(Choice((SERIES_R, PARALLEL_RC))), (SERIES_R,)),
+)
 MINIMISE = (
     Key("minimise", Several(Choice(OBJECTIVES), 2, 5), OBJECTIVES[:3]),
     Key("at_most", SubTable(), None),
@@ -187,18 +201,19 @@ class StudyContent:
     """The values of a study file in SI units, table by table; a value in trouble is missing.
 
     Attributes:
-        top, application, dc_voltage, weighting, bridge, objectives, at_most, search, rules, catalog: tables
-            by key.
-        filter_kind: LCL or LC.
+        top, application, dc_voltage, short_circuit_ratio, weighting, bridge, objectives, at_most, search,
+            rules, catalog: tables by key.
+        filter: kind and damping.
         ranges: search ranges by name.
     """
 
     top: Mapping[str, Any]
     application: Mapping[str, Any]
     dc_voltage: Mapping[str, float]
+    short_circuit_ratio: Mapping[str, float]
     weighting: Mapping[str, Any]
     bridge: Mapping[str, Any]
-    filter_kind: str
+    filter: Mapping[str, Any]
     objectives: tuple[str, ...]
     at_most: Mapping[str, float]
     search: Mapping[str, Any]
@@ -213,9 +228,10 @@ def read_content(reading: Reading) -> StudyContent:
         top=reading.table("", TOP),
         application=reading.table("application", APPLICATION + STAND_ALONE_ONLY + GRID_CONNECTED_ONLY),
         dc_voltage=reading.table("application.dc_voltage", DC_VOLTAGE),
+        short_circuit_ratio=reading.table("application.short_circuit_ratio", SHORT_CIRCUIT),
         weighting=reading.table("weighting", WEIGHTING + CUSTOM_WEIGHTING),
         bridge=reading.table("bridge", BRIDGE),
-        filter_kind=reading.table("filter", FILTER).get("kind", LCL),
+        filter=reading.table("filter", FILTER),
         objectives=reading.table("objectives", MINIMISE).get("minimise", ()),
         at_most=_stated(reading.table("objectives.at_most", AT_MOST)),
         search=reading.table("search", SEARCH),

@@ -9,7 +9,8 @@ from numpy.typing import NDArray
 from scipy.optimize import least_squares
 
 Array = NDArray[np.float64]
-LEAST_SHARE, MOST_SHARE = 0.08, 1.25  # of rated current: the range that a fit weighs
+LEAST_SHARE, MOST_SHARE = 0.08, 1.25  # of rated current: the range that a line is fitted over
+MOST_ENERGY_SHARE = 1.6  # likewise of energies, whose law bends with them
 CONSTANT_LIMIT = 0.8  # greatest part of an energy at rated current that is there without current
 EXPONENTS = (0.3, 2.5)
 POINTS_FOR_CONSTANT = 4  # fewer points leave the constant part at zero
@@ -65,7 +66,7 @@ def energy_fit(current: Array, energy: Array, rated: float) -> EnergyFit:
 
     Source: non-linear least squares of relative deviations.
     """
-    used = _working(current, rated)
+    used = _working(current, rated, MOST_ENERGY_SHARE)
     x, y = current[used] / rated, energy[used]
     constant = len(x) >= POINTS_FOR_CONSTANT
 
@@ -82,9 +83,9 @@ def energy_fit(current: Array, energy: Array, rated: float) -> EnergyFit:
     return EnergyFit(float(np.exp(found[0])), float(found[1]), share, _deviation(law(found), y))
 
 
-def _working(current: Array, rated: float) -> NDArray[np.bool_]:
+def _working(current: Array, rated: float, most: float = MOST_SHARE) -> NDArray[np.bool_]:
     """Points in the working range; all of them where fewer than two lie in it."""
-    inside = (current >= LEAST_SHARE * rated) & (current <= MOST_SHARE * rated)
+    inside = (current >= LEAST_SHARE * rated) & (current <= most * rated)
     return inside if inside.sum() >= 2 else np.ones(len(current), dtype=bool)
 
 

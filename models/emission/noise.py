@@ -103,10 +103,10 @@ class Noise:
 
     def _differential(self, stages: tuple[tuple[str, Complex], ...]) -> Array:
         circuit, both = self.circuit, 2.0 if self.lines == 2 else 1.0
-        branch = circuit.damping + 1.0 / (1j * self.omega * circuit.capacitance)
+        resistance, reactance = circuit.branch(self.omega)
         chain = (
             (SERIES, choke_impedance(circuit.inverter_inductance, self.winding_capacitance, self.frequency)),
-            (SHUNT, 1.0 / branch),
+            (SHUNT, 1.0 / (resistance - 1j * reactance)),
             (SERIES, choke_impedance(circuit.grid_inductance, self.winding_capacitance, self.frequency)),
             *stages,
         )

@@ -101,20 +101,25 @@ def evaluate(
     json: Annotated[bool, typer.Option("--json", help="JSON instead of CSV on standard output.")] = False,
 ) -> None:
     """Evaluate designs given by hand: every figure, every margin, losses by part, spectrum."""
-    from optimizer.designs_file import read_designs
-    from optimizer.evaluate import evaluated_table, spectrum_table, written_table
+    from optimizer.designs_file import INNER_COLUMNS, bridges_in, read_designs
+    from optimizer.evaluate import evaluated_table, joined, spectrum_table, written_table
     from optimizer.populations import prepared_inverter
     from optimizer.run_folder import write_whole
     from optimizer.study import Study
 
     asked = Study.read(study)
-    inverter = prepared_inverter(asked)
-    given = read_designs(designs, inverter)
-    for note in given.notes:
-        typer.echo(f"Left out of {designs.name}, {note}", err=True)
-    table = evaluated_table(asked, inverter, given)
+    tables, spectra = [], []
+    others = INNER_COLUMNS if len(asked.search.bridges) > 1 else ()
+    for bridge in bridges_in(designs, asked.search.bridges):
+        inverter = prepared_inverter(asked, bridge)
+        given = read_designs(designs, inverter, others, asked.specification.bridge)
+        for note in given.notes:
+            typer.echo(f"Left out of {designs.name}, {note}", err=True)
+        tables.append(evaluated_table(asked, inverter, given))
+        spectra.append(spectrum_table(asked, inverter, given))
+    table = joined(tables)
     if spectrum is not None:
-        write_whole(spectrum, written_table(spectrum_table(asked, inverter, given), "csv"))
+        write_whole(spectrum, written_table(joined(spectra), "csv"))
     kind = "json" if json or (out is not None and out.suffix == ".json") else "csv"
     text = written_table(table, kind)
     if out is None:

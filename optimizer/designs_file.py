@@ -20,7 +20,8 @@ from optimizer.errors import InputError, Problem
 from optimizer.left_out import filled_in, may_be_left_out
 
 MOST_ROWS = 1_000_000
-LABEL = "design_id"
+INNER_COLUMNS = ("inner_device", "inner_die_area_mm2")  # which only three-level bridges have
+LABEL, BRIDGE = "design_id", "bridge"
 
 
 @dataclass(frozen=True)
@@ -73,7 +74,8 @@ def _inner_columns(inverter: Inverter) -> tuple[Column, ...]:
     """Columns of the inner positions, which only three-level legs have."""
     if INNER not in inverter.packages.blocking:
         return ()
-    return _choice("inner_device", inverter.catalog.devices.names), _positive("inner_die_area_mm2")
+    device, area = INNER_COLUMNS
+    return _choice(device, inverter.catalog.devices.names), _positive(area)
 
 
 def _inductor_columns(inverter: Inverter, side: str, default: int | None) -> tuple[Column, ...]:
@@ -118,20 +120,49 @@ def _whole(name: str, least: int, default: int | None = None) -> Column:
     return Column(name, read, f"a whole number of at least {least}", default)
 
 
-def read_designs(path: Path, inverter: Inverter, also_known: Sequence[str] = ()) -> HandDesigns:
-    """Read a designs file.
+def bridges_in(path: Path, bridges: Sequence[str]) -> tuple[str, ...]:
+    """Bridges that the rows of a designs file name in their column `bridge`; the first one where they name
+    none.
+
+    Raises:
+        InputError: for names other than `bridges`.
+    """
+    rows, _ = _rows(path)
+    named = [(row.get(BRIDGE) or "").strip() or bridges[0] for row in rows]
+    expected = " or ".join(f"{name!r}" for name in bridges)
+    problems = [
+        Problem(repr(name), expected, key=f"row {number}, {BRIDGE}", file=str(path))
+        for number, name in enumerate(named, start=2)
+        if name not in bridges
+    ]
+    if problems:
+        raise InputError(*problems)
+    return tuple(name for name in bridges if name in named)
+
+
+def read_designs(
+    path: Path, inverter: Inverter, also_known: Sequence[str] = (), own_bridge: str | None = None
+) -> HandDesigns:
+    """Read the designs of a file for one bridge.
 
     Args:
         path: CSV with a header; columns as `columns` lists them, in any order. Columns of front.csv that hold
             results are passed over, so that rows of a run can be fed in again.
         inverter: the study's inverter.
         also_known: further column names to pass over.
+        own_bridge: bridge of rows that name none; the inverter's where it is left out.
 
     Raises:
         InputError: with all problems: missing or unknown columns, unreadable cells (row, column, given,
             expected).
     """
     rows, header = _rows(path)
+    wanted_bridge = inverter.bridge.name
+    numbered = [
+        (number, row)
+        for number, row in enumerate(rows, start=2)
+        if ((row.get(BRIDGE) or "").strip() or own_bridge or wanted_bridge) == wanted_bridge
+    ]
     everything = columns(inverter)
     left_out = _left_out(header)
     wanted = [column for column in everything if column.name not in left_out]
@@ -139,15 +170,13 @@ def read_designs(path: Path, inverter: Inverter, also_known: Sequence[str] = ())
     if problems:
         raise InputError(*problems)
     values: dict[str, list[Any]] = {column.name: [] for column in wanted}
-    for number, row in enumerate(rows, start=2):
+    for number, row in numbered:
         for column in wanted:
             cell = (row.get(column.name) or "").strip()
             values[column.name].append(_cell(path, number, column, cell, problems))
     if problems:
         raise InputError(*problems)
-    labels = tuple(
-        (row.get(LABEL) or "").strip() or f"row {number}" for number, row in enumerate(rows, start=2)
-    )
+    labels = tuple((row.get(LABEL) or "").strip() or f"row {number}" for number, row in numbered)
     arrays = {name: np.array(column) for name, column in values.items()}
     complete, notes, faults = filled_in(arrays, left_out, inverter)
     if faults:

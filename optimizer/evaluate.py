@@ -14,6 +14,9 @@ from optimizer.fronts import design_table, margin_table
 from optimizer.objectives import margins_of, requirements_of
 from optimizer.study import Study
 
+LAST_DIGIT = 1e-6
+"""Margin that the seven digits of a front.csv may cost a design that stands at its limit [-]."""
+
 
 def evaluated_table(study: Study, inverter: Inverter, given: HandDesigns) -> pd.DataFrame:
     """One row a design: what it is, results, losses over load, margins, the harmonic lines that matter.
@@ -27,7 +30,7 @@ def evaluated_table(study: Study, inverter: Inverter, given: HandDesigns) -> pd.
     constraints = requirements_of(study.at_most, result)
     table = design_table(inverter, given.designs, result, constraints)
     table.insert(0, LABEL, given.labels)
-    table.insert(1, "feasible", np.asarray((margins_of(constraints) >= 0.0).all(-1)).tolist())
+    table.insert(1, "feasible", np.asarray((margins_of(constraints) >= -LAST_DIGIT).all(-1)).tolist())
     margins = margin_table(constraints).drop(columns="tightest")
     margins.columns = [f"margin: {name}" for name in margins.columns]
     return pd.concat([table, _over_load(result), margins], axis=1)
@@ -70,6 +73,11 @@ def spectrum_table(study: Study, inverter: Inverter, given: HandDesigns) -> pd.D
         }
     )
     return table.sort_values([LABEL, "order"], kind="stable", ignore_index=True)
+
+
+def joined(tables: list[pd.DataFrame]) -> pd.DataFrame:
+    """Tables of several bridges in one; what a bridge does not have stays empty."""
+    return pd.concat(tables, ignore_index=True)
 
 
 def written_table(table: pd.DataFrame, kind: str) -> str:

@@ -176,3 +176,39 @@ def test_catalog_lists_and_checks_own_parts(tmp_path):
     assert done.returncode == 2
     assert "own.toml" in done.stderr
     assert "Traceback" not in done.stderr
+
+
+def test_several_bridges_are_compared_and_evaluated_again(tmp_path):
+    """A study with a further bridge: a front for each concept, and its rows come back through evaluate."""
+    text = (ROOT / "studies" / "depot_10kw_three_phase.toml").read_text(encoding="utf-8")
+    start, end = text.index("[bridge]"), text.index("[filter]")
+    bridges = (
+        '[bridge]\nkind = "three-phase six-switch bridge"\ncompared_with = ["three-phase bridge, T-type"]\n\n'
+    )
+    study = tmp_path / "both.toml"
+    study.write_text(text[:start] + bridges + text[end:], encoding="utf-8")
+    run = tmp_path / "run"
+    found = wattfront(
+        "search", str(study), "--run", str(run), "--population", "40", "--generations", "25", cwd=tmp_path
+    )
+    assert found.returncode == 0, found.stderr
+    table = pd.read_csv(run / "front.csv")
+    assert set(table.concept) == {
+        "silicon IGBT, six-switch bridge", "SiC MOSFET, six-switch bridge",
+        "silicon IGBT, T-type", "SiC MOSFET, T-type",
+    }  # fmt: skip
+    mixed = table[table.bridge == "three-phase bridge, T-type"]
+    assert mixed.inner_device.str.contains("650 V").all()
+    assert mixed.device.str.contains("1200 V").all()
+    out = tmp_path / "again.csv"
+    again = wattfront(
+        "evaluate", str(study), "--designs", str(run / "front.csv"), "--out", str(out), cwd=tmp_path
+    )
+    assert again.returncode == 0, again.stderr
+    back = pd.read_csv(out).set_index("design_id").loc[table.design_id]
+    assert back.loss_rated_w.to_numpy() == pytest.approx(table.loss_rated_w.to_numpy(), rel=1e-6)
+    wrong = table.assign(bridge="three-phase bridge, neutral-point clamped")
+    wrong.to_csv(tmp_path / "wrong.csv", index=False)
+    told = wattfront("evaluate", str(study), "--designs", str(tmp_path / "wrong.csv"), cwd=tmp_path)
+    assert told.returncode == 2
+    assert "row 2, bridge: given 'three-phase bridge, neutral-point clamped'" in told.stderr

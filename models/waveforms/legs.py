@@ -5,7 +5,7 @@ each, compared with the upper and the lower of two carriers in phase (phase disp
 the leg's level is the mean of its cells. Angles are found for an integer pulse number, the carrier's valley
 (centre of the on-state at positive reference) at the line voltage's zero plus an offset.
 
-Sampling: natural (the reference runs on), symmetrical regular (held from one carrier valley to the next) or
+Sampling: natural (the reference runs on), symmetrical regular (held from one carrier peak to the next) or
 asymmetrical regular (held over each half carrier period); Holmes & Lipo (2003), ch. 3.
 """
 
@@ -26,6 +26,9 @@ PROBES = 6  # sub-intervals of half a carrier period that are searched for a cro
 JUMP_GRID = 2880  # cells of the line period searched for jumps of the reference
 JUMP = 0.02  # change within such a cell that no smooth reference makes
 FULL_TURN = 2.0 * np.pi
+ROUNDING = 1e-11  # of a carrier period
+TOUCH = 1e-7  # rad between two switchings that are none
+AFTER = 1e-9  # rad after a sampling instant: where the reference jumps at it, the value after the jump counts
 
 
 @dataclass(frozen=True)
@@ -78,8 +81,8 @@ def held(reference: Reference, pulse_number: int, offset: float, sampling: str) 
         # symmetrical: taken at each carrier peak and held to the next; asymmetrical: at peak and valley
         shift = 0.5 if sampling == SYMMETRICAL else 0.0
         place = (pulse_number * angle - offset) / FULL_TURN - shift
-        instant = (np.floor(place * steps + 1e-9) / steps + shift) * FULL_TURN + offset
-        return reference(np.mod(instant / pulse_number, FULL_TURN))
+        instant = (np.floor(place * steps + ROUNDING) / steps + shift) * FULL_TURN + offset
+        return reference(np.mod(instant / pulse_number + AFTER, FULL_TURN))
 
     return sampled
 
@@ -114,7 +117,7 @@ def pulse_width_cell(
     bounds = np.mod((offset / pulse_number) + FULL_TURN * np.arange(count) / count, FULL_TURN)
     bounds = np.unique(np.concatenate([bounds, jumps_of(reference)]))
     bounds = np.append(bounds, bounds[0] + FULL_TURN)
-    inside = 1e-9 / pulse_number
+    inside = 1e-8 / pulse_number  # far more than ROUNDING of a carrier period, far less than a pulse
     left, right = bounds[:-1] + inside, bounds[1:] - inside
     start, end = excess(left) > 0.0, excess(right) > 0.0
     crossing = start != end
@@ -124,9 +127,22 @@ def pulse_width_cell(
         same = (excess(middle) > 0.0) == above
         low, high = np.where(same, middle, low), np.where(same, high, middle)
     jumps = bounds[1:][end != np.roll(start, -1)]
-    angles = np.sort(np.mod(np.concatenate([0.5 * (low + high), jumps]), FULL_TURN))
+    angles = _without_touches(np.sort(np.mod(np.concatenate([0.5 * (low + high), jumps]), FULL_TURN)))
     before = (angles[0] if len(angles) else 0.0) - inside
     return Cell(angles, bool(excess(np.array([before]))[0] > 0.0))
+
+
+def _without_touches(angles: Array) -> Array:
+    """Switching angles without pairs that bound no time: carrier and reference only touch there."""
+    kept: list[float] = []
+    for angle in angles.tolist():
+        if kept and angle - kept[-1] < TOUCH:
+            kept.pop()
+        else:
+            kept.append(angle)
+    if len(kept) > 1 and kept[0] + FULL_TURN - kept[-1] < TOUCH:
+        kept = kept[1:-1]
+    return np.array(kept)
 
 
 def jumps_of(reference: Reference) -> Array:

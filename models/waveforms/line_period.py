@@ -23,6 +23,7 @@ from models.waveforms.legs import FULL_TURN, NATURAL, Cell, line_switched_cell, 
 Array = NDArray[np.float64]
 Complex = NDArray[np.complex128]
 NODES, WEIGHTS = np.polynomial.legendre.leggauss(4)
+LONGEST = np.pi / 90.0  # rad that a piece of the quadrature may be long
 PHASE_SHIFTS = {1: np.zeros(1), 3: 2.0 * np.pi / 3.0 * np.arange(3)}
 
 
@@ -173,7 +174,12 @@ class LinePeriod:
 
     @cached_property
     def voltage_thd(self) -> float:
-        """Distortion of phase one's output voltage, all harmonics, over its fundamental [-]."""
+        """Distortion of phase one's output voltage, all harmonics, over its fundamental [-].
+
+        Infinite where there is no fundamental, as with clamped legs at three pulses.
+        """
+        if self.fundamental_peak < 1e-9 * self.dc_voltage:
+            return float("inf")
         levels = self.output_levels[0]
         square = float(self.widths @ levels**2 - (self.widths @ levels) ** 2)
         return float(np.sqrt(max(2.0 * square / self.fundamental_peak**2 - 1.0, 0.0)))
@@ -189,11 +195,20 @@ class LinePeriod:
 
     @cached_property
     def nodes(self) -> tuple[Array, Array, NDArray[np.int64]]:
-        """Quadrature angles [rad], their weights over the line period (sum 1), and the interval of each."""
-        half = 0.5 * np.diff(self.bounds)
-        angle = (self.middles[:, None] + half[:, None] * NODES).ravel()
+        """Quadrature angles [rad], their weights over the line period (sum 1), and the interval of each.
+
+        Long intervals, as line-switched legs and low pulse numbers have, are cut into short ones, so that a
+        current that changes its sign within one costs no accuracy.
+        """
+        widths = np.diff(self.bounds)
+        parts = np.maximum(np.ceil(widths / LONGEST).astype(np.int64), 1)
+        interval = np.repeat(np.arange(len(widths)), parts)
+        place = np.arange(parts.sum()) - np.repeat(np.cumsum(parts) - parts, parts)
+        half = 0.5 * widths[interval] / parts[interval]
+        middle = self.bounds[interval] + (2 * place + 1) * half
+        angle = (middle[:, None] + half[:, None] * NODES).ravel()
         weight = (half[:, None] * WEIGHTS).ravel() / FULL_TURN
-        return angle, weight, np.repeat(np.arange(len(half)), len(NODES))
+        return angle, weight, np.repeat(interval, len(NODES))
 
     @cached_property
     def _flux_at_nodes(self) -> Array:
@@ -235,14 +250,51 @@ class LinePeriod:
 
     @cached_property
     def local_peak_to_peak(self) -> tuple[Array, Array]:
-        """Peak-to-peak ripple of phase one in every carrier period, and the period's middle angle ([rad],
-        [A]).
+        """Peak-to-peak ripple of phase one in every carrier period, from one carrier peak to the next, and
+        the period's middle angle ([rad], [A]).
+
+        Where no leg switches at the carrier frequency the whole line period counts as one.
         """
-        number = np.floor((self.pulse_number * self.bounds - self.carrier_offset) / FULL_TURN + 0.5 + 1e-9)
-        periods = np.unique(number)
-        at = self.ripple_at_bounds[0]
-        swing = np.array([np.ptp(at[number == period]) for period in periods])
-        return (periods * FULL_TURN + self.carrier_offset) / self.pulse_number, swing
+        angle, value = self._ripple_extremes
+        if not any(self.scheme.switching_legs):
+            return np.array([np.pi]), np.array([np.ptp(value)])
+        number = np.floor((self.pulse_number * angle - self.carrier_offset) / FULL_TURN + 0.5 + 1e-9)
+        number = number.astype(np.int64) % self.pulse_number
+        order = np.argsort(number, kind="stable")
+        starts = np.flatnonzero(np.concatenate([[True], np.diff(number[order]) > 0]))
+        sorted_values = value[order]
+        swing = np.maximum.reduceat(sorted_values, starts) - np.minimum.reduceat(sorted_values, starts)
+        middle = (number[order][starts] * FULL_TURN + self.carrier_offset) / self.pulse_number
+        return middle, swing
+
+    @cached_property
+    def _ripple_extremes(self) -> tuple[Array, Array]:
+        """Angles and ripple current of phase one at all switchings, carrier peaks and turning points between.
+
+        Between two switchings the voltage level is constant, so that the ripple turns where the fundamental
+        passes that level.
+        """
+        level = self.output_levels[0] - self.output_levels[0] @ self.widths
+        size, lag = np.abs(self.fundamental[0]), np.angle(self.fundamental[0])
+        lift = np.arccos(np.clip(level / np.maximum(size, 1e-30), -1.0, 1.0))
+        start, end = self.bounds[:-1], self.bounds[1:]
+        turning = [np.mod(sign * lift - lag, FULL_TURN) for sign in (1.0, -1.0)]
+        inside = [angle[(angle > start) & (angle < end) & (np.abs(level) < size)] for angle in turning]
+        peaks = np.zeros(0)
+        if any(self.scheme.switching_legs):
+            valleys = np.arange(self.pulse_number) * FULL_TURN + self.carrier_offset
+            peaks = np.mod((valleys + np.pi) / self.pulse_number, FULL_TURN)
+        further = np.concatenate([*inside, peaks])
+        interval = np.clip(np.searchsorted(self.bounds, further, side="right") - 1, 0, len(start) - 1)
+        smooth = (self.fundamental[0] * (np.exp(1j * further) - np.exp(1j * start[interval])) / 1j).real
+        straight = level[interval] * (further - start[interval])
+        flux = self._flux_at_bounds[0, interval] + (straight - smooth) / (FULL_TURN * self.line_frequency)
+        ripple = (flux - self._mean_flux[0]) / self.inductance
+        # a carrier peak ends one period and begins the next
+        before = np.mod(peaks - 1e-8 / self.pulse_number, FULL_TURN)
+        angle = np.concatenate([self.bounds[:-1], further, before])
+        value = np.concatenate([self.ripple_at_bounds[0, :-1], ripple, ripple[len(further) - len(peaks) :]])
+        return angle, value
 
     @property
     def ripple_peak_to_peak(self) -> float:

@@ -65,7 +65,8 @@ def bridge_side(
 
     Args:
         catalog, designs, bands, tables, state: what the evaluation works with.
-        dc_voltage: over the operating points of `state` (q,) [V].
+        dc_voltage: over the operating points of `state` (q,) or, where a load takes part of the ripple
+            voltage, (n, q) [V].
         phasors: line-frequency phasors at the loss points (n, p).
         peak_current: greatest current, ripple included (n,) [A].
         view: ripple points.
@@ -79,7 +80,7 @@ def bridge_side(
     frequency = designs.switching_frequency_hz
     material = designs.inverter_inductor.material
     shapes = tables.read(tables.core_loss_shape, scheme, row, weight)
-    slope = dc_voltage[columns] / (built.turns * built.area)[:, None]
+    slope = dc_voltage[..., columns] / (built.turns * built.area)[:, None]
 
     def switched(band: Ints) -> Array:
         shape = np.take_along_axis(shapes, bands.pair[material, band][:, None, None], axis=-1)[..., 0]

@@ -2,7 +2,7 @@
 
 from __future__ import annotations
 
-from dataclasses import dataclass
+from dataclasses import dataclass, replace
 from functools import cached_property
 
 import numpy as np
@@ -29,7 +29,7 @@ from models.filter_inductors import RippleView, Surroundings, bridge_side, grid_
 from models.magnetics.core_bands import CoreBands, core_bands
 from models.magnetics.inductor import Inductor
 from models.operating_points import OperatingPoints, operating_points
-from models.output_distortion import current_distortion, sideband_voltages, voltage_distortion
+from models.output_distortion import Spectrum, current_distortion, spectrum, voltage_distortion
 from models.output_filter import Filter, LinePhasors, line_phasors, resonance_hz
 from models.requirements import Findings, requirements
 from models.roll_up import roll_up
@@ -134,15 +134,15 @@ class Inverter:
             multiples, designs, columns, state, self.points.distortion, packages
         )
 
-    def bridge_lines(self, designs: Designs) -> Array:
-        """Rms of the switching lines of the bridge's phase voltage (n, k) [V], at rated current and greatest
-        dc voltage, in the order of the distortion's lines.
+    def spectrum(self, designs: Designs) -> Spectrum:
+        """Harmonic lines of bridge voltage, currents and output voltage, in the order of the distortion's
+        lines with the fundamental before them.
         """
-        _, state = self._waveforms(designs, _circuit(designs).columns())
-        point, spec = self.points.distortion, self.specification
-        frequency = designs.switching_frequency_hz
-        _, share, _ = sideband_voltages(self.tables, state, point, frequency, spec.line_frequency_hz)
-        return share * spec.dc_voltage_max_v
+        columns = _circuit(designs).columns()
+        phasors, state = self._waveforms(designs, columns)
+        dead_time = self.packages.of(designs)[0].device.dead_time_s[:, 0]
+        frequency, point = designs.switching_frequency_hz, self.points.distortion
+        return spectrum(self.specification, columns, phasors, self.tables, state, point, frequency, dead_time)
 
     def _waveforms(self, designs: Designs, columns: Filter) -> tuple[LinePhasors, WaveformState]:
         """Line-frequency phasors and waveform state at all operating points."""
@@ -150,7 +150,29 @@ class Inverter:
         phasors = line_phasors(columns, spec.line_frequency_hz, points.output_voltage, points.output_current)
         per_volt = 1.0 / (designs.inverter_inductance_h * designs.switching_frequency_hz)
         scheme = designs.modulation
-        return phasors, waveform_state(self.bridge, self.tables, scheme, phasors, points.dc_voltage, per_volt)
+        state = waveform_state(self.bridge, self.tables, scheme, phasors, points.dc_voltage, per_volt)
+        share = self._ripple_share(designs)
+        if share is None:
+            return phasors, state
+        return phasors, replace(
+            state,
+            ripple_unit=state.ripple_unit * share,
+            peak_ripple=state.peak_ripple * share,
+            ripple_mean_square=state.ripple_mean_square * share**2,
+        )
+
+    def _ripple_share(self, designs: Designs) -> Array | None:
+        """Part of the bridge's ripple voltage that falls on the bridge-side inductor, (n, q) [-].
+
+        None for all of it, as wherever no inductive load follows it without a capacitor between.
+        """
+        spec = self.specification
+        bare = designs.filter_capacitance_f <= 0.0
+        if spec.application == GRID_CONNECTED or spec.power_factor == 1.0 or not bare.any():
+            return None
+        own = designs.inverter_inductance_h[:, None]
+        load = self.points.load_inductance(spec.line_frequency_hz)
+        return np.where(bare[:, None], own / (own + load), 1.0)
 
     def _evaluate_block(self, designs: Designs) -> Evaluation:
         spec, points = self.specification, self.points
@@ -219,17 +241,17 @@ class Inverter:
         """Distortion under the worst load, and with a linear load only (the same thing on the grid)."""
         spec, point = self.specification, self.points.distortion
         common = (self.tables, state, point, designs.switching_frequency_hz, dead_time)
+        limits = self.catalog.limit_table(spec.limit_table)
         if spec.application == GRID_CONNECTED:
-            limits = self.catalog.limit_table(spec.limit_table)
             strong, weak = spec.grid_inductance_min_h, spec.grid_inductance_max_h
             found = current_distortion(spec, limits, columns.behind(strong), *common)
             if weak > strong:
                 found = worse(found, current_distortion(spec, limits, columns.behind(weak), *common))
             return found, found
-        linear = voltage_distortion(spec, columns, *common, 0.0)
+        linear = voltage_distortion(spec, limits, columns, *common, 0.0)
         if spec.rectifier_share <= 0.0:
             return linear, linear
-        return voltage_distortion(spec, columns, *common, spec.rectifier_share), linear
+        return voltage_distortion(spec, limits, columns, *common, spec.rectifier_share), linear
 
     def _inductors(
         self, designs: Designs, phasors: LinePhasors, state: WaveformState, distortion: Distortion
@@ -248,7 +270,9 @@ class Inverter:
         at_losses = _phasors_at(phasors, points.losses)
         peak = self._peak_current(phasors, state)
         common = (self.catalog, designs, self.bands, self.tables)
-        first = bridge_side(*common, state, points.dc_voltage, at_losses, peak, view, around)
+        share = self._ripple_share(designs)
+        dropped = points.dc_voltage if share is None else points.dc_voltage * share
+        first = bridge_side(*common, state, dropped, at_losses, peak, view, around)
         ripple = np.sqrt(np.maximum(distortion.total**2 - distortion.low**2, 0.0)) * spec.rated_current_a
         return first, grid_side(*common, at_losses, ripple, around)
 

@@ -45,6 +45,11 @@ class OperatingPoints:
     distortion: int
     rated: int
 
+    def load_inductance(self, line_frequency_hz: float) -> Array:
+        """Inductance of a linear load, a resistor and an inductor in series; 0 where it leads (q,) [H]."""
+        impedance = self.output_voltage / self.output_current
+        return np.asarray(np.maximum(impedance.imag, 0.0) / (2.0 * np.pi * line_frequency_hz))
+
     def weights(self, weights: dict[float, float]) -> Array:
         """Weights of the load levels on the `loads` slice [-]."""
         return np.array([weights.get(float(level), 0.0) for level in self.load_level[self.loads]])
@@ -56,9 +61,9 @@ def operating_points(specification: Specification) -> OperatingPoints:
     Load levels: every one of the European, the Californian and the study's own weighting, at nominal
     voltages and the study's power factor (unity unless it says otherwise). Thermal points: rated apparent
     power at the least ac and the greatest dc voltage, at unity and at the least power factor, leading (its
-    current and the filter capacitor's add). Distortion point: rated power at nominal ac and greatest dc
-    voltage. Modulation points: nominal ac at least dc voltage, and greatest ac at nominal dc voltage, both
-    at the least power factor, lagging, which asks most of the bridge's voltage.
+    current and the filter capacitor's add). Distortion point: rated power at the study's power factor,
+    nominal ac and greatest dc voltage. Modulation points: nominal ac at least dc voltage, and greatest ac at
+    nominal dc voltage, both at the least power factor, lagging, which asks most of the bridge's voltage.
     """
     spec = specification
     levels = sorted({*EUROPEAN_WEIGHTS, *CALIFORNIAN_WEIGHTS, *spec.weights, 1.0})
@@ -69,7 +74,7 @@ def operating_points(specification: Specification) -> OperatingPoints:
     rows = [(level, spec.phase_voltage_v, lag, spec.dc_voltage_v) for level in levels]
     count = len(rows)
     rows += [(1.0, low_ac, 0.0, spec.dc_voltage_max_v), (1.0, low_ac, -angle, spec.dc_voltage_max_v)]
-    rows += [(1.0, spec.phase_voltage_v, 0.0, spec.dc_voltage_max_v)]
+    rows += [(1.0, spec.phase_voltage_v, lag, spec.dc_voltage_max_v)]
     rows += [
         (1.0, spec.phase_voltage_v, angle, spec.dc_voltage_min_v),
         (1.0, high_ac, angle, spec.dc_voltage_v),

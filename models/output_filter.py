@@ -180,6 +180,27 @@ def open_circuit_transfer(circuit: Filter, frequency_hz: Array) -> HarmonicTrans
     )
 
 
+def loaded_transfer(circuit: Filter, load: Complex, frequency_hz: Array) -> tuple[tuple[Array, Array], Array]:
+    """Transfer of the filter into an impedance, magnitudes.
+
+    Args:
+        circuit: elements with a trailing axis of length one.
+        load: impedance behind the filter, broadcastable with the frequencies [ohm].
+        frequency_hz: harmonic frequencies on the trailing axis [Hz].
+
+    Returns:
+        Currents of the bridge-side inductor and of the load [A/V], and voltage at the load [V/V].
+    """
+    omega = 2.0 * np.pi * frequency_hz
+    resistance, reactance = circuit.branch(omega)
+    branch = resistance - 1j * reactance
+    behind = 1j * omega * circuit.grid_inductance + load
+    divider = branch / (branch + behind)
+    first = 1.0 / (1j * omega * circuit.inverter_inductance + divider * behind)
+    second = first * divider
+    return (np.abs(first), np.abs(second)), np.abs(second * load)
+
+
 def output_impedance(circuit: Filter, frequency_hz: Array) -> Array:
     """Open-loop output impedance of an LC filter, L1 beside C with its damping, magnitude [ohm]."""
     omega = 2.0 * np.pi * frequency_hz

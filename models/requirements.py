@@ -16,6 +16,7 @@ from models.emission.emission_filter import Emission
 from models.evaluation import Constraint, at_least, at_most
 from models.magnetics.inductor import Inductor
 from models.operating_points import OperatingPoints
+from models.output_distortion import limit_base
 from models.output_filter import Filter, LinePhasors, resonance_hz
 from models.semiconductors.bridge_losses import BridgeLosses
 from models.semiconductors.packages import Packages
@@ -199,7 +200,8 @@ def _emission(spec: Specification, found: Findings) -> tuple[Constraint, ...]:
 def _quality(spec: Specification, catalog: Catalog, found: Findings) -> tuple[Constraint, ...]:
     worst = found.distortion
     if spec.application == GRID_CONNECTED:
-        total = catalog.limit_table(spec.limit_table).total_limit
+        limits = catalog.limit_table(spec.limit_table)
+        total = limits.total_limit * limit_base(spec, limits)
         return (
             at_most("total current distortion", "of rated current", worst.total, min(total, 1.0)),
             at_most("tightest harmonic", "of its limit", worst.worst_share, 1.0),

@@ -134,6 +134,8 @@ class Specification:
         rectifier_share: share of rated apparent power drawn by rectifier loads (stand-alone) [-].
         crest_factor: crest factor of that rectifier load's current [-].
         limit_table: name of the harmonic limit table in the catalogue [-].
+        demand_current_a: greatest demand current at the point of connection, to which some limits refer; 0
+            for the rated current [A].
         power_factor: of the delivered current at the load levels: positive lagging, negative leading [-].
         short_circuit_ratio_min, short_circuit_ratio_max: short-circuit power of the grid over rated apparent
             power; infinite for a stiff grid [-].
@@ -161,6 +163,7 @@ class Specification:
     rectifier_share: float = 0.0
     crest_factor: float = 3.0
     limit_table: str = "IEEE 1547-2018"
+    demand_current_a: float = 0.0
     emission_limit: str = ""
     power_factor: float = 1.0
     short_circuit_ratio_min: float = float("inf")
@@ -186,6 +189,11 @@ class Specification:
     def rated_current_a(self) -> float:
         """Rated rms phase current at nominal voltage [A]."""
         return self.apparent_power_va / (self.phases * self.phase_voltage_v)
+
+    @property
+    def demand_share(self) -> float:
+        """Demand current over rated current [-]."""
+        return self.demand_current_a / self.rated_current_a if self.demand_current_a > 0.0 else 1.0
 
     @property
     def base_impedance_ohm(self) -> float:

@@ -12,13 +12,13 @@ from typing import TYPE_CHECKING, Any
 from models.specification import (
     CALIFORNIAN_WEIGHTS,
     EUROPEAN_WEIGHTS,
-    GRID_CONNECTED,
     STAND_ALONE,
     DesignRules,
     Specification,
 )
 from optimizer.concepts import Concept, concepts
 from optimizer.errors import InputError, Problem
+from optimizer.limit_checks import unfitting_limits
 from optimizer.quantity import show
 from optimizer.study_checks import (
     bridges_of,
@@ -29,8 +29,8 @@ from optimizer.study_checks import (
 )
 from optimizer.study_schema import (
     CALIFORNIAN,
+    DEFAULT_LIMITS,
     EUROPEAN,
-    GRID_CONNECTED_ONLY,
     NO_EMISSION_LIMIT,
     SIDES,
     STAND_ALONE_ONLY,
@@ -173,9 +173,8 @@ class Study:
             ("search.dc_links", search.dc_links, catalog.dc_link_capacitors.column("technology")),
         )
         asked = [(f"{key}[{i}]", name, known) for key, names, known in chosen for i, name in enumerate(names)]
-        if self.specification.application == GRID_CONNECTED:
-            tables = [table.name for table in catalog.limit_tables]
-            asked.append(("application.harmonic_limits", self.specification.limit_table, tables))
+        tables = [table.name for table in catalog.limit_tables]
+        asked.append(("application.harmonic_limits", self.specification.limit_table, tables))
         if self.specification.emission_limit:
             limits = (*catalog.emission_limits.names, NO_EMISSION_LIMIT)
             asked.append(("application.emission_limit", self.specification.emission_limit, limits))
@@ -184,6 +183,7 @@ class Study:
             for key, name, known in asked
             if name not in set(known)
         ]
+        problems = problems or unfitting_limits(self.specification, catalog, str(self.path))
         if problems:
             raise InputError(*problems)
 
@@ -233,7 +233,7 @@ def _specification(content: StudyContent) -> Specification:
         application=asked["kind"],
         phases=asked["phases"],
         apparent_power_va=asked["apparent_power"],
-        power_factor_min=asked["power_factor_min"],
+        power_factor_min=min(asked["power_factor_min"], asked["power_factor"]),
         power_factor=asked["power_factor"] * (1.0 if asked["power_factor_side"] == SIDES[0] else -1.0),
         short_circuit_ratio_min=content.short_circuit_ratio["min"],
         short_circuit_ratio_max=content.short_circuit_ratio["max"],
@@ -248,7 +248,8 @@ def _specification(content: StudyContent) -> Specification:
         altitude_m=asked["altitude"],
         bridge=content.bridge["kind"],
         weights=_weights(content.weighting),
-        limit_table=asked[GRID_CONNECTED_ONLY[0].name],
+        limit_table=asked["harmonic_limits"] or DEFAULT_LIMITS[asked["kind"]],
+        demand_current_a=asked["demand_current"],
         emission_limit="" if asked["emission_limit"] == NO_EMISSION_LIMIT else asked["emission_limit"],
         rules=DesignRules(**content.rules),
         **{key.name: asked[key.name] for key in own},

@@ -94,6 +94,7 @@ RANGES = (
 
 NO_EMISSION_LIMIT = "none"
 SIDES = ("lagging", "leading")
+DEFAULT_LIMITS = {GRID_CONNECTED: "IEEE 1547-2018", STAND_ALONE: "IEC 62040-3 stand-alone output"}
 TABLES = ("application", "weighting", "bridge", "filter", "objectives", "search", "rules", "catalog")
 NAME = Text(
     "a text of letters, digits, blanks, dots, - and _ (the run folder is called so)", r"\w[\w .-]{0,79}"
@@ -119,6 +120,7 @@ APPLICATION = (
     Key("dc_voltage", SubTable(), None),
     Key("ambient", Quantity("degC", -40.0, 85.0), 40.0),
     Key("altitude", Quantity("m", -100.0, 5000.0), 1000.0),
+    Key("harmonic_limits", Text(), None),
     Key("emission_limit", Text(), NO_EMISSION_LIMIT),
 )
 SHORT_CIRCUIT = (
@@ -134,8 +136,8 @@ STAND_ALONE_ONLY = (
     Key("voltage_thd_limit_rectifier", _THD, _ASKED["voltage_thd_limit_rectifier"]),
 )
 GRID_CONNECTED_ONLY = (
-    Key("harmonic_limits", Text(), _ASKED["limit_table"]),
     Key("short_circuit_ratio", SubTable(), None),
+    Key("demand_current", Quantity("A", 0.0), 0.0),
 )
 WEIGHTING = (Key("scheme", Choice((EUROPEAN, CALIFORNIAN, CUSTOM)), EUROPEAN),)
 CUSTOM_WEIGHTING = (

@@ -17,6 +17,7 @@ class EmissionLimit:
     frequency_hz: tuple[float, ...]  # rising [Hz]
     quasi_peak_dbuv: tuple[float, ...]  # [dB over 1 uV]
     average_dbuv: tuple[float, ...]  # [dB over 1 uV]
+    power_range_va: tuple[float, ...]  # rated powers it is made for: above, up to [VA]
     origin: Mapping[str, str] = field(default_factory=dict, compare=False, repr=False)
 
     def quasi_peak_at(self, frequency_hz: ArrayLike) -> NDArray[np.float64]:

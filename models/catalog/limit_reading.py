@@ -10,7 +10,10 @@ from models.catalog.limits import LimitBand, LimitTable
 from models.catalog.reading import Problems, RawPart
 
 BASES = ("rated current", "demand current", "absolute ampere", "fundamental voltage")
-_TABLE_KEYS = ("name", "basis", "origin", "total_limit", "total_name", "odd", "even", "replaces")
+_TABLE_KEYS = (
+    "name", "basis", "origin", "total_limit", "total_name", "odd", "even", "replaces",
+    "current_range_a", "ratio_range", "phases",
+)  # fmt: skip
 _BAND_KEYS = ("orders", "limit", "over_order", "multiples", "share_of_odd")
 _MULTIPLES = ("any", "of three", "not of three")
 
@@ -40,6 +43,12 @@ def _check_table(raw: RawPart, problems: Problems) -> None:
         problems.add(raw, f"basis must be one of {', '.join(map(repr, BASES))}, got {entries.get('basis')!r}")
     if not _is_positive(entries.get("total_limit", math.inf)):
         problems.add(raw, f"total_limit must be greater than zero, got {entries['total_limit']!r}")
+    for key in ("current_range_a", "ratio_range"):
+        ends = entries.get(key, [0.0, 1.0])
+        if not (isinstance(ends, list) and len(ends) == 2 and 0.0 <= ends[0] < ends[1]):
+            problems.add(raw, f"{key} must be [above, up to], got {ends!r}")
+    if entries.get("phases", 0) not in (0, 1, 3):
+        problems.add(raw, f"phases must be 1 or 3, got {entries['phases']!r}")
     for parity in ("odd", "even"):
         for band in entries.get(parity, []):
             _check_band(raw, parity, band, problems)
@@ -76,8 +85,15 @@ def _table(raw: RawPart) -> LimitTable:
         bands=(*odd, *even),
         total_limit=float(entries.get("total_limit", math.inf)),
         total_name=str(entries.get("total_name", "")),
+        current_range_a=_ends(entries.get("current_range_a")),
+        ratio_range=_ends(entries.get("ratio_range")),
+        phases=int(entries.get("phases", 0)),
         origin={"table": entries["origin"]},
     )
+
+
+def _ends(given: list[float] | None) -> tuple[float, float]:
+    return (float(given[0]), float(given[1])) if given else (0.0, math.inf)
 
 
 def _band(parity: Any, band: Mapping[str, Any]) -> LimitBand:

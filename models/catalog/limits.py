@@ -2,6 +2,7 @@
 
 from __future__ import annotations
 
+import math
 from collections.abc import Mapping
 from dataclasses import dataclass, field
 from typing import Literal
@@ -46,7 +47,15 @@ class LimitTable:
     bands: tuple[LimitBand, ...]
     total_limit: float  # infinite where the standard has none [basis]
     total_name: str  # the standard's name of the total
+    current_range_a: tuple[float, float] = (0.0, math.inf)  # rated currents it is for: above, up to [A]
+    ratio_range: tuple[float, float] = (0.0, math.inf)  # short-circuit ratios it is made for [-]
+    phases: int = 0  # phases it is made for; 0 for any [-]
     origin: Mapping[str, str] = field(default_factory=dict, compare=False, repr=False)
+
+    @property
+    def of_voltage(self) -> bool:
+        """Whether it limits the voltage of a stand-alone inverter rather than the current into a grid."""
+        return self.basis == "fundamental voltage"
 
     def limit_of(self, order: ArrayLike) -> NDArray[np.float64]:
         """Limit of each harmonic order, infinite for orders the standard does not limit.

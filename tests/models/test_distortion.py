@@ -15,7 +15,7 @@ from hypothesis import strategies as st
 from model_fixtures import BACKUP, DEPOT, ROOFTOP
 from probe_device import At
 
-from models.catalog import Catalog
+from models.catalog import Catalog, load_catalog
 from models.distortion import (
     LOW_ORDERS,
     Lines,
@@ -194,8 +194,9 @@ def test_stand_alone_voltage_under_a_rectifier() -> None:
     circuit = Filter(*(np.array([value]) for value in (5e-4, 0.0, 1e-5, 1.0))).columns()
     at = At("single-phase full bridge", "unipolar", 0.8, dc_voltage=450.0)
     hertz, dead = np.array([40e3]), np.array([0.0])
+    limits = load_catalog().limit_table("IEC 62040-3 stand-alone output")
     found = [
-        voltage_distortion(BACKUP, circuit, at.tables, at.state(), 0, hertz, dead, share)
+        voltage_distortion(BACKUP, limits, circuit, at.tables, at.state(), 0, hertz, dead, share)
         for share in (0.0, 0.5, 1.0)
     ]
     assert float(found[0].low[0]) == 0.0
@@ -213,8 +214,9 @@ def test_switching_ripple_of_an_unloaded_filter_against_the_oracle(name: str) ->
     hertz = ratio * 50.0
     circuit = Filter(*(np.array([value]) for value in (8e-4, 0.0, 4e-6, 0.3))).columns()
     at = At("single-phase full bridge", name, 0.72, dc_voltage=BACKUP.dc_voltage_max_v)
+    limits = load_catalog().limit_table("IEC 62040-3 stand-alone output")
     found = voltage_distortion(
-        BACKUP, circuit, at.tables, at.state(), 0, np.array([hertz]), np.array([0.0]), 0.0
+        BACKUP, limits, circuit, at.tables, at.state(), 0, np.array([hertz]), np.array([0.0]), 0.0
     )
     exact = LinePeriod(SCHEMES[name], 0.72, ratio)
     orders = np.arange(ratio // 2, 12 * ratio)

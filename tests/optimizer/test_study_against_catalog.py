@@ -70,6 +70,54 @@ def test_unknown_names_are_all_reported_with_the_nearest(catalog):
     assert len(lines) == 4
 
 
-def test_a_stand_alone_study_asks_for_no_limit_table(catalog):
-    study = Study.read(STUDIES / "backup_3kva.toml")
-    replace(study, specification=replace(study.specification, limit_table="none")).check_against(catalog)
+LIMITS = [
+    (
+        "rooftop_5kw",
+        {"limit_table": "EN 50160 supply voltage"},
+        "limits of the current; these are limits of the voltage",
+    ),
+    (
+        "backup_3kva",
+        {"limit_table": "IEEE 1547-2018"},
+        "limits of the voltage; these are limits of the current",
+    ),
+    (
+        "rooftop_5kw",
+        {"limit_table": "IEC 61000-3-2 class A"},
+        "limits for 21.7 A a phase; these are for up to 16 A",
+    ),
+    (
+        "rooftop_5kw",
+        {"limit_table": "IEC 61000-3-12 balanced three-phase Rsce 33"},
+        "limits for phases = 1; these are for 3",
+    ),
+    (
+        "rooftop_5kw",
+        {
+            "limit_table": "IEEE 519-2022 Isc/IL below 20",
+            "short_circuit_ratio_min": 30.0,
+            "short_circuit_ratio_max": 60.0,
+        },
+        "limits for a short-circuit ratio above 30 up to 60; these are for up to 20",
+    ),
+    (
+        "rooftop_5kw",
+        {"emission_limit": "CISPR 11 class A above 20 kVA"},
+        "a limit for 5 kVA; this one is for above 20 kVA",
+    ),
+    ("rooftop_5kw", {"emission_limit": "CISPR 11 class C"}, 'expected a name in the catalogue (nearest: "CISPR 11 class B")'),
+]  # fmt: skip
+
+
+@pytest.mark.parametrize(("name", "changed", "words"), LIMITS)
+def test_limits_made_for_something_else(catalog, name, changed, words):
+    study = Study.read(STUDIES / f"{name}.toml")
+    other = replace(study, specification=replace(study.specification, **changed))
+    with pytest.raises(InputError) as told:
+        other.check_against(catalog)
+    assert words in str(told.value)
+
+
+def test_limits_that_fit(catalog):
+    for name in ("rooftop_5kw", "depot_10kw_three_phase", "backup_3kva"):
+        Study.read(STUDIES / f"{name}.toml").check_against(catalog)

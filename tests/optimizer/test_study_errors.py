@@ -64,7 +64,7 @@ apparent_power = "0 VA"
 ac_voltage = "230 A"
 line_frequency = "50 Hz"
 dc_voltage = { min = "450 V", nominal = "400 V", max = "300 V" }
-harmonic_limits = "IEEE 1547-2018"
+demand_current = "5 A"
 [bridge]
 kind = "single-phase full bridge"
 [search]
@@ -80,7 +80,7 @@ packing_factor = "45 kg"
         "application.ac_voltage",
         "search.populaton",
         "rules.packing_factor",
-        "application.harmonic_limits",
+        "application.demand_current",
         "application.dc_voltage.nominal",
         "application.dc_voltage.max",
         "bridge.kind",

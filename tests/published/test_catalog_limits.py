@@ -81,3 +81,11 @@ def test_voltage_compatibility_levels() -> None:
     assert limits.limit_of(even) == pytest.approx((0.25 * 10.0 / even + 0.25) / 100.0)
     assert limits.limit_of([27, 33, 39, 45]) == pytest.approx(0.002)
     assert limits.total_limit == pytest.approx(0.08)
+
+
+def test_supply_voltage_characteristics() -> None:
+    """EN 50160, low voltage (from memory): orders 3, 5, 7, 11, 13 and the total."""
+    limits = CAT.limit_table("EN 50160 supply voltage")
+    assert limits.limit_of([3, 5, 7, 11, 13]) == pytest.approx([0.05, 0.06, 0.05, 0.035, 0.03])
+    assert limits.limit_of([2, 4]) == pytest.approx([0.02, 0.01])
+    assert limits.total_limit == pytest.approx(0.08)

@@ -3,6 +3,7 @@
 from __future__ import annotations
 
 import math
+from types import SimpleNamespace
 from typing import Any
 
 import numpy as np
@@ -10,7 +11,7 @@ import pytest
 from check_rows import CHECKS, assert_meets, lag_of, params, starting
 from scipy.optimize import minimize_scalar
 
-from models.capacitors import slow_ripple_capacitance
+from models.capacitors import bank_life, slow_ripple_capacitance
 from models.catalog import Catalog
 from models.waveforms.bridges import FULL_BRIDGE, SIX_SWITCH_BRIDGE
 from models.waveforms.dc_link_current import (
@@ -86,6 +87,19 @@ def test_capacitance_for_double_frequency_ripple() -> None:
     current = np.array([asked["P_W"] / (math.sqrt(2.0) * asked["Vdc_V"])])
     found = slow_ripple_capacitance(current, 2.0 * asked["f_Hz"], asked["dV_pp_V"])
     assert_meets(row, float(found[0]) * 1e6)
+
+
+@pytest.mark.parametrize("row", params(["REL-10K-105-65", "REL-10K-105-75"]))
+def test_life_by_the_ten_kelvin_rule(row: dict[str, Any]) -> None:
+    """A unit of the row's rated life at its rated ripple, in air of the row's temperature."""
+    asked = row["inputs"]
+    unit: Any = SimpleNamespace(
+        technology=np.array(["electrolytic"]),
+        rated_life_h=np.array([asked["L0_h"]]),
+        life_temperature_c=np.array([asked["T0_C"]]),
+    )
+    found = bank_life(unit, np.ones((1, 1)), np.ones(1), asked["T_C"], np.ones(1))
+    assert_meets(row, float(found[0]))
 
 
 def test_energy_density_of_film_units_is_of_the_published_order(catalog: Catalog) -> None:

@@ -11,6 +11,9 @@ from models.catalog.gathered import Gathered
 from models.catalog.parts import AcCapacitor
 
 Array = NDArray[np.float64]
+RATED_RISE_K = (10.0, 5.0)  # core over air at rated ripple, film, electrolytic [K], common practice
+FILM_VOLTAGE_EXPONENT = 7.0  # of the life of metallised film over voltage, common practice, no source
+LONGEST_LIFE_H = 1e6  # nobody vouches for more
 
 
 @dataclass(frozen=True)
@@ -97,8 +100,8 @@ def switching_ripple_capacitance(current_rms: Array, frequency: Array, ripple: f
 
 @dataclass(frozen=True)
 class DcLink:
-    """Dc-link bank (n,), loss (n, p): units in series and parallel [-], capacitance [F], loss [W], volume
-    [m3], ...
+    """Dc-link bank (n,), loss (n, p): units in series and parallel [-], capacitance [F], loss [W], life [h],
+    volume [m3], ...
     """
 
     series: Array
@@ -106,6 +109,7 @@ class DcLink:
     capacitance: Array
     loss: Array
     ripple_share: Array
+    life: Array
     volume: Array
     mass: Array
     price: Array
@@ -121,6 +125,8 @@ def dc_link(
     slow_rms: Array,
     fast_rms: Array,
     worst: int,
+    air_c: float,
+    time_share: Array,
 ) -> DcLink:
     """Size the bank and evaluate its loss.
 
@@ -132,6 +138,8 @@ def dc_link(
         needed: least bank capacitance (n,) [F].
         slow_rms, fast_rms: double-line-frequency and switching-frequency rms current (n, p) [A].
         worst: operating point that sets the ripple current [-].
+        air_c: air around the bank [degC].
+        time_share: share of the operating time at the first operating points [-].
     """
     series = np.ceil(dc_voltage_max / (voltage_use * unit.voltage_rating_v) - 1e-9)
     heating = np.sqrt(slow_rms**2 + (fast_rms / unit.ripple_multiplier_high[:, None]) ** 2)
@@ -142,16 +150,47 @@ def dc_link(
     esr = unit.unit_esr_low_ohm[:, None] * slow_rms**2 + unit.unit_esr_high_ohm[:, None] * fast_rms**2
     balancing = np.where(series > 1.0, balancing_current * dc_voltage, 0.0)
     volume = count * unit.unit_volume_m3
+    use = dc_voltage / (series * unit.voltage_rating_v)
+    working = heating[:, : len(time_share)] / (parallel * unit.unit_ripple_a)[:, None]
     return DcLink(
         series=series,
         parallel=parallel,
         capacitance=unit.unit_capacitance_f * parallel / series,
         loss=esr * (series / parallel)[:, None] + balancing[:, None],
         ripple_share=heating[:, worst] / (parallel * unit.unit_ripple_a),
+        life=bank_life(unit, working, use, air_c, time_share),
         volume=volume,
         mass=volume * unit.density_kg_m3,
         price=count * unit.unit_price,
     )
+
+
+def bank_life(
+    unit: Gathered, ripple_share: Array, voltage_use: Array, air_c: float, time_share: Array
+) -> Array:
+    """Life of a bank's capacitors by the 10-kelvin rule, with self-heating and (film) voltage [h].
+
+    L = L_0 2^((T_0 - T)/10) (V_0/V)^n with core temperatures T = air + rise (I/I_rated)^2; life used up adds
+    over the load levels (linear damage).
+
+    Args:
+        unit: catalogue columns (n,).
+        ripple_share: ripple current over the rated one (n, p) [-].
+        voltage_use: working over rated voltage (n,) [-].
+        air_c: [degC].
+        time_share: of the load levels, any sum (p,) [-].
+
+    Source: Arrhenius rule of capacitor makers; rise at rated ripple and voltage exponent are common practice,
+        no source.
+    """
+    film = unit.technology == "film"
+    rise = np.where(film, *RATED_RISE_K)[:, None]
+    core = air_c + rise * ripple_share**2
+    warmer = unit.life_temperature_c[:, None] + rise - core
+    voltage = np.where(film, np.maximum(voltage_use, 0.1) ** -FILM_VOLTAGE_EXPONENT, 1.0)[:, None]
+    hours = unit.rated_life_h[:, None] * 2.0 ** (np.clip(warmer, -200.0, 200.0) / 10.0) * voltage
+    share = time_share / time_share.sum()
+    return np.minimum(1.0 / (share / hours).sum(-1), LONGEST_LIFE_H)
 
 
 def in_series(bank: DcLink, count: int) -> DcLink:

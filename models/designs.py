@@ -11,6 +11,9 @@ from numpy.typing import NDArray
 Floats = NDArray[np.float64]
 Ints = NDArray[np.int64]
 T = TypeVar("T")
+COOLING = ("natural", "forced", "cold plate")
+NATURAL, FORCED, COLD_PLATE = range(3)
+"""What takes the heat: a heatsink in still air, one behind a fan, a plate with a coolant."""
 
 
 @dataclass(frozen=True, kw_only=True)
@@ -53,7 +56,7 @@ class Designs:
             [F].
         inverter_inductor, grid_inductor: their builds.
         dc_link: index into the catalogue's dc-link capacitors [-].
-        forced_cooling: 1 where a fan drives the heatsink, 0 for natural convection [-].
+        cooling: index into COOLING [-].
         sink_resistance_k_per_w: heatsink to ambient, at the sink curve's reference rise [K/W].
     """
 
@@ -72,7 +75,7 @@ class Designs:
     inverter_inductor: InductorDesigns
     grid_inductor: InductorDesigns
     dc_link: Ints
-    forced_cooling: Ints
+    cooling: Ints
     sink_resistance_k_per_w: Floats
 
     def __len__(self) -> int:

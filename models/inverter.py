@@ -20,8 +20,8 @@ from models.capacitors import (
 )
 from models.catalog.gathered import Gathered
 from models.catalog.parts import AcCapacitor, Catalog
-from models.cooling import SinkCurve, SinkPoint, sink_curve_forced, sink_curve_natural
-from models.designs import Designs
+from models.cooling import SinkCurve, SinkPoint, sink_curve_cold_plate, sink_curve_forced, sink_curve_natural
+from models.designs import COLD_PLATE, FORCED, Designs
 from models.distortion import Distortion, worse
 from models.emission.emission_filter import Emission, EmissionModel
 from models.evaluation import Evaluation, joined
@@ -86,8 +86,8 @@ class Inverter:
         return EmissionModel(self.specification, self.catalog, self.bridge, self.tables)
 
     @cached_property
-    def sinks(self) -> tuple[SinkCurve, SinkCurve]:
-        """Least-volume heatsinks over thermal resistance: natural, forced."""
+    def sinks(self) -> tuple[SinkCurve, SinkCurve, SinkCurve]:
+        """Least-volume heatsinks over thermal resistance, in the order of COOLING."""
         spec, price = self.specification, self.catalog.cost.heatsink_price_per_kg
         natural = sink_curve_natural(ambient_c=spec.ambient_c, altitude_m=spec.altitude_m, price_per_kg=price)
         forced = sink_curve_forced(
@@ -96,7 +96,7 @@ class Inverter:
             altitude_m=spec.altitude_m,
             price_per_kg=price,
         )
-        return natural, forced
+        return natural, forced, sink_curve_cold_plate()
 
     @cached_property
     def ac_capacitor(self) -> AcCapacitor:
@@ -213,6 +213,7 @@ class Inverter:
             ac_capacitor=capacitors[0],
             dc_link=capacitors[1],
             ripple_frequency=designs.switching_frequency_hz * self.tables.main_carrier[designs.modulation],
+            linear_limit=self.tables.linear_limit[designs.modulation],
             resonance=resonance_hz(circuit),
             emission=emission,
         )
@@ -220,20 +221,23 @@ class Inverter:
         return roll_up(spec, self.catalog, points, findings, constraints)
 
     def _sink(self, designs: Designs) -> SinkPoint:
-        natural, forced = (curve.at(designs.sink_resistance_k_per_w) for curve in self.sinks)
-        driven = designs.forced_cooling == 1
+        kinds = [curve.at(designs.sink_resistance_k_per_w) for curve in self.sinks]
         return SinkPoint(
             **{
-                name: np.where(driven, getattr(forced, name), getattr(natural, name))
-                for name in vars(natural)
+                name: np.choose(designs.cooling, [getattr(kind, name) for kind in kinds])
+                for name in vars(kinds[0])
             }
         )
 
     def _rise(self, designs: Designs, power: Array, rows: NDArray[np.int64] | slice) -> Array:
-        natural, forced = self.sinks
-        resistance = designs.sink_resistance_k_per_w[rows, None]
-        driven = (designs.forced_cooling[rows] == 1)[:, None]
-        return np.where(driven, forced.rise(power, resistance), natural.rise(power, resistance))
+        """Heatsink over ambient [K]; a cold plate counts from its coolant."""
+        natural, forced, plate = self.sinks
+        resistance, kind = designs.sink_resistance_k_per_w[rows, None], designs.cooling[rows, None]
+        rise = np.where(kind == FORCED, forced.rise(power, resistance), natural.rise(power, resistance))
+        if np.any(kind == COLD_PLATE):
+            over_air = self.specification.coolant_c - self.specification.ambient_c
+            rise = np.where(kind == COLD_PLATE, plate.rise(power, resistance) + over_air, rise)
+        return rise
 
     def _distortion(
         self, columns: Filter, state: WaveformState, designs: Designs, dead_time: Array
@@ -261,7 +265,7 @@ class Inverter:
         around = Surroundings(
             spec.line_frequency_hz,
             spec.ambient_c + rules.internal_air_rise,
-            np.where(designs.forced_cooling == 1, rules.forced_inductor_rise_factor, 1.0),
+            np.where(designs.cooling == FORCED, rules.forced_inductor_rise_factor, 1.0),
             float(self.catalog.cost.inductor_labour_at(spec.apparent_power_va)),
         )
         count = points.losses.stop
@@ -328,6 +332,8 @@ class Inverter:
             slow,
             fast,
             worst,
+            spec.ambient_c + rules.internal_air_rise,
+            self.points.weights(spec.weights),
         )
         return film, in_series(half, halves)
 

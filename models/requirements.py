@@ -37,6 +37,7 @@ class Findings:
     designs: Designs
     circuit: Filter
     ripple_frequency: Array
+    linear_limit: Array
     phasors: LinePhasors
     state: WaveformState
     packages: tuple[Packages, ...]
@@ -183,6 +184,7 @@ def _filter(spec: Specification, found: Findings) -> tuple[Constraint, ...]:
         ),
         at_most("filter capacitor current", "of its limit", found.ac_capacitor.current_share, 1.0),
         at_most("dc-link capacitor count", "", link.series * link.parallel, rules.dc_link_units_limit),
+        at_least("dc-link life", "h", link.life, rules.dc_link_life),
     )
 
 

@@ -8,6 +8,8 @@ import numpy as np
 from numpy.typing import NDArray
 
 from models.catalog.parts import Catalog
+from models.cooling import auxiliary_power
+from models.designs import COLD_PLATE
 from models.evaluation import Constraint, Evaluation
 from models.operating_points import OperatingPoints
 from models.requirements import Findings
@@ -90,9 +92,26 @@ def _losses(
         "damping": damping,
         "dc_link": found.dc_link.loss[:, loads],
         **_emission_loss(spec, loads, found),
-        "fan": found.sink.fan_power_w[:, None] * running,
+        "fan": found.sink.fan_power_w[:, None] * running + _pumping(found, bridge.heat[:, loads]),
         "auxiliary": auxiliary,
     }
+
+
+def _dc_voltage_needed(spec: Specification, points: OperatingPoints, found: Findings) -> Array:
+    """Dc voltage that the worst ac voltage and the filter's drop take at the modulation limit (n,) [V]."""
+    index = found.state.modulation_index[:, points.modulation] * points.dc_voltage[points.modulation]
+    return index.max(-1) / (found.linear_limit * (1.0 - spec.rules.modulation_reserve))
+
+
+def _reactive_share(spec: Specification, found: Findings) -> Array:
+    """Reactive power of the filter capacitors at nominal voltage over rated power (n,) [-]."""
+    capacitance = found.designs.filter_capacitance_f + found.designs.damping_capacitance_f
+    return 2.0 * np.pi * spec.line_frequency_hz * capacitance * spec.base_impedance_ohm
+
+
+def _pumping(found: Findings, heat: Array) -> Array:
+    """Power of pump and air-side exchanger behind cold plates (n, p) [W]."""
+    return np.where((found.designs.cooling == COLD_PLATE)[:, None], auxiliary_power(heat), 0.0)
 
 
 def _damping_loss(spec: Specification, found: Findings, line_current: Array, ripple: Array) -> Array:
@@ -189,6 +208,9 @@ def _details(spec: Specification, points: OperatingPoints, found: Findings) -> d
     details = {
         "modulation_index_rated": state.modulation_index[:, points.rated],
         "modulation_index_greatest": state.modulation_index[:, points.modulation].max(-1),
+        "bridge_voltage_rated_v": np.abs(found.phasors.bridge_voltage[:, points.rated]),
+        "dc_voltage_needed_v": _dc_voltage_needed(spec, points, found),
+        "filter_reactive_share": _reactive_share(spec, found),
         "ripple_peak_to_peak_a": state.peak_ripple[:, points.distortion],
         "ripple_share": state.peak_ripple[:, points.distortion] / (np.sqrt(2.0) * spec.rated_current_a),
         "resonance_hz": np.where(found.designs.filter_capacitance_f > 0.0, found.resonance, 0.0),
@@ -204,6 +226,7 @@ def _details(spec: Specification, points: OperatingPoints, found: Findings) -> d
         "dc_link_series": link.series,
         "dc_link_parallel": link.parallel,
         "dc_link_ripple_share": link.ripple_share,
+        "dc_link_life_h": link.life,
         "distortion_low_order": found.distortion.low,
         "tightest_harmonic_order": found.distortion.worst_order,
         "tightest_harmonic_share": found.distortion.worst_share,

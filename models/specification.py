@@ -75,6 +75,9 @@ class DesignRules:
         0.01, "", "switching dc voltage ripple, peak to peak over nominal"
     )
     dc_voltage_use: float = rule(0.90, "", "greatest dc voltage over the rating of the dc-link capacitors")
+    dc_link_life: float = rule(
+        40e3, "", "least life of the dc-link capacitors at the hottest ambient and the load weights [h]"
+    )
     dc_balancing_current: float = rule(
         0.002, "A", "current in the balancing resistors of series dc-link capacitors"
     )
@@ -128,6 +131,7 @@ class Specification:
         line_frequency_hz: [Hz].
         dc_voltage_min_v, dc_voltage_v, dc_voltage_max_v: least, nominal and greatest dc voltage [V].
         ambient_c: hottest air at the heatsink [degC].
+        coolant_c: hottest coolant at a cold plate [degC].
         altitude_m: height above sea level [m].
         bridge: name of the bridge [-].
         weights: load level -> weight of the weighted efficiency [-].
@@ -160,6 +164,7 @@ class Specification:
     altitude_m: float
     bridge: str
     weights: dict[float, float] = field(default_factory=lambda: dict(EUROPEAN_WEIGHTS))
+    coolant_c: float = 45.0
     rectifier_share: float = 0.0
     crest_factor: float = 3.0
     limit_table: str = "IEEE 1547-2018"

@@ -116,7 +116,8 @@ def evaluate(
         for note in given.notes:
             typer.echo(f"Left out of {designs.name}, {note}", err=True)
         tables.append(evaluated_table(asked, inverter, given))
-        spectra.append(spectrum_table(asked, inverter, given))
+        if spectrum is not None:
+            spectra.append(spectrum_table(asked, inverter, given))
     table = joined(tables)
     if spectrum is not None:
         write_whole(spectrum, written_table(joined(spectra), "csv"))

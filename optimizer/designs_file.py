@@ -13,11 +13,11 @@ from typing import Any
 
 import numpy as np
 
-from models.designs import Designs, InductorDesigns
+from models.designs import COOLING, Designs, InductorDesigns
 from models.inverter import Inverter
 from models.waveforms.leg_commutations import INNER
 from optimizer.errors import InputError, Problem
-from optimizer.left_out import filled_in, may_be_left_out
+from optimizer.left_out import INDUCTOR_PARTS, filled_in, left_out
 
 MOST_ROWS = 1_000_000
 INNER_COLUMNS = ("inner_device", "inner_die_area_mm2")  # which only three-level bridges have
@@ -63,7 +63,7 @@ def columns(inverter: Inverter) -> tuple[Column, ...]:
         _positive("damping_resistance_ohm", zero=True, default=0.0),
         _positive("damping_capacitance_f", zero=True, default=0.0),
         _choice("dc_link", catalog.dc_link_capacitors.names),
-        _choice("cooling", ("natural", "forced"), default=0),
+        _choice("cooling", COOLING, default=0),
         _positive("sink_resistance_k_per_w"),
         *_inductor_columns(inverter, "inverter_inductor", None),
         *_inductor_columns(inverter, "grid_inductor", 0),
@@ -164,9 +164,9 @@ def read_designs(
         if ((row.get(BRIDGE) or "").strip() or own_bridge or wanted_bridge) == wanted_bridge
     ]
     everything = columns(inverter)
-    left_out = _left_out(header)
-    wanted = [column for column in everything if column.name not in left_out]
-    problems = _header_problems(path, header, everything, {LABEL, *also_known}, left_out)
+    lacking = left_out(header)
+    wanted = [column for column in everything if column.name not in lacking]
+    problems = _header_problems(path, header, everything, {LABEL, *also_known}, lacking)
     if problems:
         raise InputError(*problems)
     values: dict[str, list[Any]] = {column.name: [] for column in wanted}
@@ -174,23 +174,36 @@ def read_designs(
         for column in wanted:
             cell = (row.get(column.name) or "").strip()
             values[column.name].append(_cell(path, number, column, cell, problems))
+        if not problems:
+            more = _grid_side_problems(row, header, values)
+            problems += [problem.at(str(path), f"row {number}, {problem.key}") for problem in more]
     if problems:
         raise InputError(*problems)
     labels = tuple((row.get(LABEL) or "").strip() or f"row {number}" for number, row in numbered)
     arrays = {name: np.array(column) for name, column in values.items()}
-    complete, notes, faults = filled_in(arrays, left_out, inverter)
+    complete, notes, faults = filled_in(arrays, lacking, inverter)
     if faults:
-        raise InputError(*(Problem("no such column", fault, file=str(path)) for fault in faults))
+        raise InputError(*(problem.at(str(path), problem.key) for problem in faults))
     return HandDesigns(labels, _designs(complete), notes)
 
 
-def _left_out(header: Sequence[str]) -> tuple[str, ...]:
-    """Columns that the file lacks and something can stand in for; an inductor's only all together."""
-    lacking = [name for name in may_be_left_out() if name not in header]
-    inductor = [name for name in may_be_left_out() if name.startswith("inverter_inductor_")]
-    if any(name in header for name in inductor):
-        return tuple(name for name in lacking if name not in inductor)
-    return tuple(lacking)
+def _grid_side_problems(
+    row: Mapping[str, str], header: Sequence[str], values: Mapping[str, Sequence[Any]]
+) -> list[Problem]:
+    """A grid-side inductance needs a capacitor before it, and its parts where the file has their columns."""
+    inductance, capacitance = values["grid_inductance_h"][-1], values["filter_capacitance_f"][-1]
+    if not inductance:
+        return []
+    problems = []
+    if not capacitance:
+        expected = "0 where filter_capacitance_f is 0: both are one then, inverter_inductance_h"
+        problems.append(Problem(f"{inductance:g}", expected, key="grid_inductance_h"))
+    parts = [f"grid_inductor_{part}" for part in INDUCTOR_PARTS]
+    if any(name in header for name in parts):
+        missing = [name for name in parts if not (row.get(name) or "").strip()]
+        expected = "what the grid-side inductor is made of, since it has an inductance"
+        problems += [Problem("nothing", expected, key=name) for name in missing]
+    return problems
 
 
 def _rows(path: Path) -> tuple[list[dict[str, str]], list[str]]:
@@ -269,6 +282,10 @@ _RESULT_NAMES = {
     "dc_link_series",
     "dc_link_parallel",
     "dc_link_ripple_share",
+    "dc_link_life_h",
+    "bridge_voltage_rated_v",
+    "dc_voltage_needed_v",
+    "filter_reactive_share",
 }
 _RESULT_ENDS = ("_flux_t", "_gap_m", "_window_fill", "_inductance_left", "_temperature_c", "_resistance_ohm")
 
@@ -308,7 +325,7 @@ def _designs(values: Mapping[str, Any]) -> Designs:
         inverter_inductor=_inductor(values, "inverter_inductor"),
         grid_inductor=_inductor(values, "grid_inductor"),
         dc_link=values["dc_link"],
-        forced_cooling=values["cooling"],
+        cooling=values["cooling"],
         sink_resistance_k_per_w=values["sink_resistance_k_per_w"],
     )
 

@@ -47,32 +47,35 @@ def _over_load(result: Evaluation) -> pd.DataFrame:
 
 
 def spectrum_table(study: Study, inverter: Inverter, given: HandDesigns) -> pd.DataFrame:
-    """One row a design and line: low orders, then switching sidebands.
+    """One row a design and line: the fundamental, low orders, switching sidebands.
 
-    Columns: order and frequency; rms of the bridge's phase voltage [V] (of switching lines); rms over rated
-    current or voltage of what the filter puts out [%], and its limit [%].
+    Columns: order and frequency; rms per phase of bridge voltage, current of the bridge-side inductor,
+    current and voltage of grid or load; what the distortion limits look at, over rated current (grid) or
+    rated voltage of the worst load (stand-alone) [%], and its limit [%].
 
     Args:
         study, inverter, given: as in `evaluated_table`.
     """
-    found = inverter.evaluate(given.designs).distortion
-    switched, low = inverter.bridge_lines(given.designs), found.lines.order.shape[1]
-    low -= switched.shape[1]
-    volts = np.concatenate([np.full((len(switched), low), np.nan), switched], axis=-1)
-    shown = np.concatenate([np.ones((len(switched), low), dtype=bool), found.lines.listed[:, low:]], axis=-1)
-    limit = np.where(np.isfinite(found.line_limit), 100.0 * found.line_limit, np.nan)
-    labels = np.repeat(np.array(given.labels, dtype=object)[:, None], shown.shape[1], axis=1)
-    table = pd.DataFrame(
-        {
-            LABEL: labels[shown],
-            "order": found.lines.order[shown],
-            "frequency_hz": study.specification.line_frequency_hz * found.lines.order[shown],
-            "bridge_voltage_v": volts[shown],
-            "output_percent": 100.0 * found.lines.amplitude[shown],
-            "limit_percent": limit[shown],
-        }
-    )
-    return table.sort_values([LABEL, "order"], kind="stable", ignore_index=True)
+    lines = inverter.spectrum(given.designs)
+    held = inverter.evaluate(given.designs).distortion
+    none = np.full((len(given.designs), 1), np.nan)
+    limit = np.where(np.isfinite(held.line_limit), 100.0 * held.line_limit, np.nan)
+    labels = np.repeat(np.array(given.labels, dtype=object)[:, None], lines.order.shape[1], axis=1)
+    columns = {
+        LABEL: labels,
+        "order": lines.order,
+        "frequency_hz": study.specification.line_frequency_hz * lines.order,
+        "bridge_voltage_v": lines.bridge_voltage,
+        "inverter_current_a": lines.inverter_current,
+        "output_current_a": lines.output_current,
+        "output_voltage_v": lines.output_voltage,
+        "output_percent": np.concatenate([none, 100.0 * held.lines.amplitude], axis=-1),
+        "limit_percent": np.concatenate([none, limit], axis=-1),
+    }
+    table = pd.DataFrame({name: values[lines.listed] for name, values in columns.items()})
+    table["place"] = np.repeat(np.arange(len(given.labels)), lines.listed.sum(-1))
+    table = table.sort_values(["place", "order"], kind="stable", ignore_index=True)
+    return table.drop(columns="place")
 
 
 def joined(tables: list[pd.DataFrame]) -> pd.DataFrame:

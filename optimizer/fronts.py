@@ -13,7 +13,7 @@ import pandas as pd
 from numpy.typing import NDArray
 
 from models.catalog.parts import Catalog
-from models.designs import Designs, InductorDesigns
+from models.designs import COOLING, Designs, InductorDesigns
 from models.evaluation import Constraint, Evaluation
 from models.inverter import Inverter
 from models.waveforms.leg_commutations import INNER
@@ -192,7 +192,7 @@ def choices(inverter: Inverter, designs: Designs) -> dict[str, Any]:
         "damping_resistance_ohm": designs.damping_resistance_ohm,
         "damping_capacitance_f": designs.damping_capacitance_f,
         "dc_link": np.array(catalog.dc_link_capacitors.names)[designs.dc_link],
-        "cooling": np.where(designs.forced_cooling == 1, "forced", "natural"),
+        "cooling": np.array(COOLING)[designs.cooling],
         "sink_resistance_k_per_w": designs.sink_resistance_k_per_w,
         **_inductor_columns(catalog, "inverter_inductor", designs.inverter_inductor),
         **(

@@ -12,7 +12,7 @@ from functools import cached_property
 import numpy as np
 from numpy.typing import NDArray
 
-from models.designs import Designs, InductorDesigns
+from models.designs import COOLING, Designs, InductorDesigns
 from models.inverter import Inverter
 from models.magnetics.sizing import CoreLadder, core_ladder, size_inductor
 from models.output_filter import NO_CAPACITANCE
@@ -245,7 +245,7 @@ class SearchSpace:
             inverter_inductor=first,
             grid_inductor=second,
             dc_link=self.dc_links[choose["dc link"]],
-            forced_cooling=self._forced[choose["cooling"]],
+            cooling=self._cooling[choose["cooling"]],
             sink_resistance_k_per_w=values["sink_resistance"],
         )
 
@@ -296,8 +296,8 @@ class SearchSpace:
         return np.array([place for place, scheme in enumerate(schemes) if scheme.name in wanted])
 
     @cached_property
-    def _forced(self) -> Ints:
-        return np.array([int(kind == "forced") for kind in self.study.search.cooling])
+    def _cooling(self) -> Ints:
+        return np.array([COOLING.index(kind) for kind in self.study.search.cooling])
 
     def _ripple_scale(self, tables: WaveformTables) -> Array:
         """Greatest peak-to-peak ripple of every scheme at greatest dc voltage (s,) [V_dc/(L f_s)]."""

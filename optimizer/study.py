@@ -61,7 +61,7 @@ class SearchSettings:
         device_classes: classes of semiconductors; each gets a front of its own.
         core_materials, conductors: names out of the catalogue; empty means all of it.
         dc_links: technologies of dc-link capacitors.
-        cooling: "natural", "forced" or both.
+        cooling: names out of models.designs.COOLING.
         ranges: search ranges in SI units by name, as study_schema.RANGES declares them; without
             grid_inductance_ratio for an LC filter.
         population: candidates per generation and class [-].
@@ -245,6 +245,7 @@ def _specification(content: StudyContent) -> Specification:
         dc_voltage_v=content.dc_voltage["nominal"],
         dc_voltage_max_v=content.dc_voltage["max"],
         ambient_c=asked["ambient"],
+        coolant_c=asked["coolant"],
         altitude_m=asked["altitude"],
         bridge=content.bridge["kind"],
         weights=_weights(content.weighting),

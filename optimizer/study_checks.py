@@ -72,6 +72,15 @@ def _check_application_keys(reading: Reading, content: StudyContent) -> None:
             reading.note(join("application", key.name), f'no such key where application.kind is "{kind}"')
 
 
+def _check_power_factor(reading: Reading, content: StudyContent) -> None:
+    factor, least = content.application.get("power_factor"), content.application.get("power_factor_min")
+    if factor is None or least is None or least <= factor:
+        return
+    place = "application.power_factor_min"
+    if reading.has(place):
+        reading.note(place, f"at most application.power_factor, {factor:g}", f"{least:g}")
+
+
 def _check_dc_order(reading: Reading, content: StudyContent) -> None:
     for lower, upper in (("min", "nominal"), ("nominal", "max")):
         low, high = content.dc_voltage.get(lower), content.dc_voltage.get(upper)
@@ -217,6 +226,7 @@ def _check_catalog_files(reading: Reading, content: StudyContent) -> None:
 
 CHECKS: tuple[Callable[[Reading, StudyContent], None], ...] = (
     _check_application_keys,
+    _check_power_factor,
     _check_dc_order,
     _check_dc_reaches_ac,
     _check_bridge,

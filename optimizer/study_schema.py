@@ -11,6 +11,7 @@ from collections.abc import Mapping
 from dataclasses import dataclass, fields
 from typing import Any
 
+from models.designs import COOLING
 from models.specification import GRID_CONNECTED, STAND_ALONE, DesignRules, Specification
 from models.waveforms.bridges import BRIDGES
 from optimizer.study_table import Choice, Key, Kind, Quantity, Reading, Several, SubTable, Text, Whole
@@ -18,7 +19,6 @@ from optimizer.study_table import Choice, Key, Kind, Quantity, Reading, Several,
 OBJECTIVES = ("weighted loss", "volume", "price", "mass", "distortion")
 DEFAULT_CLASSES = ("silicon IGBT", "superjunction MOSFET", "SiC MOSFET", "GaN HEMT")
 DC_LINKS = ("electrolytic", "film")
-COOLING = ("natural", "forced")
 LCL, LC, ONLY_L = "LCL", "LC", "L"
 SERIES_R, PARALLEL_RC = "series resistor", "parallel R-C"
 GRID_RATIO = "grid_inductance_ratio"
@@ -119,6 +119,7 @@ APPLICATION = (
     Key("line_frequency", Quantity("Hz", 10.0, 1e3)),
     Key("dc_voltage", SubTable(), None),
     Key("ambient", Quantity("degC", -40.0, 85.0), 40.0),
+    Key("coolant", Quantity("degC", -40.0, 120.0), 45.0),
     Key("altitude", Quantity("m", -100.0, 5000.0), 1000.0),
     Key("harmonic_limits", Text(), None),
     Key("emission_limit", Text(), NO_EMISSION_LIMIT),
@@ -167,7 +168,7 @@ SEARCH = (
     Key("core_materials", Several(Text()), ()),
     Key("conductors", Several(Text()), ()),
     Key("dc_links", Several(Choice(DC_LINKS)), DC_LINKS),
-    Key("cooling", Several(Choice(COOLING)), COOLING),
+    Key("cooling", Several(Choice(COOLING)), COOLING[:2]),
     Key("population", Whole(8, 10_000), 100),
     Key("generations", Whole(1, 100_000), 200),
     Key("ranges", SubTable(), None),

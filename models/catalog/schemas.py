@@ -125,16 +125,11 @@ _DEVICE_ZERO = frozenset(
         "threshold_hot_v",
         "recovery_energy_j_per_av",
         "recovery_charge_25_c_per_a",
-        "turn_on_temperature_coefficient_per_k",
-        "turn_off_temperature_coefficient_per_k",
-        "recovery_temperature_coefficient_per_k",
         "output_charge_c_per_m2",
         "output_energy_j_per_m2",
         "output_charge_voltage_exponent",
         "gate_unit_power_w",
-        "turn_on_constant_share",
-        "turn_off_constant_share",
-        "recovery_constant_share",
+        *(f"{name}_constant_share" for name in ("turn_on", "turn_off", "recovery")),
     }
 )
 
@@ -144,8 +139,20 @@ SCHEMAS: tuple[Schema, ...] = (
         Device,
         rules=DEVICE_RULES,
         zero_allowed=_DEVICE_ZERO,
-        signed=frozenset({"gate_off_v"}),
-        at_most_one=frozenset({"voltage_use_limit", "turn_on_share"}),
+        # turn-on of some unipolar parts gets cheaper with temperature
+        signed=frozenset(
+            {
+                "gate_off_v",
+                *(f"{name}_temperature_coefficient_per_k" for name in ("turn_on", "turn_off", "recovery")),
+            }
+        ),
+        at_most_one=frozenset(
+            {
+                "voltage_use_limit",
+                "turn_on_share",
+                *(f"{name}_constant_share" for name in ("turn_on", "turn_off", "recovery")),
+            }
+        ),
         curves=curve_quantities,
         unbounded=frozenset({"greatest_switching_frequency_hz"}),
         choices={"device_class": DEVICE_CLASSES},
@@ -201,6 +208,8 @@ SCHEMAS: tuple[Schema, ...] = (
     Schema(
         "emission_limits",
         EmissionLimit,
+        zero_allowed=frozenset({"power_range_va"}),
+        unbounded=frozenset({"power_range_va"}),
         checks=(same_length("frequency_hz", "quasi_peak_dbuv", "average_dbuv"), rising("frequency_hz")),
     ),
 )

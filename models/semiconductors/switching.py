@@ -82,6 +82,18 @@ def overlap_turn_on_energy(device: Any) -> Array:
     )
 
 
+def overlap_constant_share(device: Any) -> Array:
+    """Part of the turn-on energy without output charge, at rated current, that is there without current [-].
+
+    The contained output charge is such a part too: it is counted first, and what the sheet's constant part
+    has beyond it is left.
+    """
+    overlap = overlap_turn_on_energy(device)
+    contained = device.turn_on_energy_j_per_av - overlap
+    rest = device.turn_on_constant_share * device.turn_on_energy_j_per_av - contained
+    return np.maximum(rest, 0.0) / np.where(overlap > 0.0, overlap, 1.0)
+
+
 def charge_left(valley: Array, node_charge: Array, dead_time: Array) -> Array:
     """Share of the output-charge loss that a turn-on still costs [-].
 
@@ -172,7 +184,7 @@ def leg_switching(
     )
     if any(np.any(constant) for constant in constants):
         hard_count, all_count = hard.sum(-1), shares.sum(-1)
-        turned_on = turned_on + constants[0] * (hard_count - turned_on)
+        turned_on = turned_on + overlap_constant_share(device) * (hard_count - turned_on)
         turned_off = turned_off + constants[1] * (2.0 * all_count - hard_count - turned_off)
         recovering = recovering + constants[2] * (hard_count - recovering)
     charged = np.zeros_like(turned_on)

@@ -84,6 +84,8 @@ def bank(catalog: Catalog, unit: int, **changed: Any) -> DcLink:
         "slow_rms": np.array([[2.0, 9.0]]),
         "fast_rms": np.array([[1.0, 6.0]]),
         "worst": 1,
+        "air_c": 55.0,
+        "time_share": np.array([1.0]),
     } | changed
     return dc_link(Gathered(catalog.dc_link_capacitors, np.array([unit])), **values)
 
@@ -127,3 +129,26 @@ def test_no_current_leaves_one_unit_wide_bank_and_no_loss(catalog: Catalog) -> N
     assert found.series == 1.0
     assert np.all(found.loss == 0.0)
     assert found.volume == pytest.approx(catalog.dc_link_capacitors[0].unit_volume_m3)
+
+
+def test_life_halves_with_ten_kelvin_and_falls_with_ripple(catalog: Catalog) -> None:
+    """10-kelvin rule: 10 K more of air halve the life."""
+    warm, cool = bank(catalog, 0, air_c=65.0), bank(catalog, 0, air_c=55.0)
+    assert cool.life == pytest.approx(2.0 * warm.life)
+    calm = bank(catalog, 0, slow_rms=np.array([[0.1, 9.0]]), fast_rms=np.array([[0.1, 6.0]]))
+    assert calm.life > cool.life
+
+
+def test_damage_adds_over_load_levels(catalog: Catalog) -> None:
+    """Half the time at each of two levels: between the lives of both."""
+    one, other = (
+        bank(catalog, 0, slow_rms=np.full((1, 2), slow), needed=np.array([1e-2])) for slow in (2.0, 12.0)
+    )
+    both = bank(
+        catalog,
+        0,
+        slow_rms=np.array([[2.0, 12.0]]),
+        time_share=np.array([0.5, 0.5]),
+        needed=np.array([1e-2]),
+    )
+    assert min(one.life, other.life) <= both.life <= max(one.life, other.life)

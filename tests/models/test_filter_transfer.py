@@ -18,6 +18,7 @@ from models.output_filter import (
     Filter,
     grid_transfer,
     line_phasors,
+    loaded_transfer,
     open_circuit_transfer,
     output_impedance,
     resonance_hz,
@@ -58,6 +59,29 @@ def test_grid_transfer_is_the_nodal_solution(
     found = grid_transfer(circuit(first, second, capacitance, damping).columns(), np.array([[hertz]]))
     for name, expected in nodal(first, second, capacitance, damping, hertz).items():
         assert getattr(found, name)[0, 0] == pytest.approx(abs(expected), rel=1e-6), name
+
+
+@given(HENRY, HENRY, FARAD, OHM, st.floats(0.1, 100.0), st.floats(-100.0, 100.0), st.floats(40.0, 2e6))
+def test_loaded_transfer_is_the_nodal_solution(
+    first: float,
+    second: float,
+    capacitance: float,
+    damping: float,
+    load: float,
+    reactance: float,
+    hertz: float,
+) -> None:
+    """Two node equations, at the capacitor's branch and at the load, solved as a matrix."""
+    s, impedance = 2j * np.pi * hertz, load + 1j * reactance
+    one, two, branch = 1.0 / (s * first), 1.0 / (s * second), 1.0 / (damping + 1.0 / (s * capacitance))
+    matrix = np.array([[one + two + branch, -two], [-two, two + 1.0 / impedance]])
+    middle, end = np.linalg.solve(matrix, np.array([one, 0.0]))
+    (inverter, output), voltage = loaded_transfer(
+        circuit(first, second, capacitance, damping).columns(), np.array([[impedance]]), np.array([[hertz]])
+    )
+    assert inverter[0, 0] == pytest.approx(abs((1.0 - middle) * one), rel=1e-6)
+    assert output[0, 0] == pytest.approx(abs(end / impedance), rel=1e-6)
+    assert voltage[0, 0] == pytest.approx(abs(end), rel=1e-6)
 
 
 @given(HENRY, FARAD, OHM, st.floats(40.0, 2e6))

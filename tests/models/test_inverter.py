@@ -13,10 +13,11 @@ from hypothesis import strategies as st
 from model_fixtures import ROOFTOP, Draw, Spaces
 
 from models.catalog import Catalog
-from models.designs import Designs
+from models.designs import COLD_PLATE, FORCED, Designs
 from models.evaluation import Evaluation
 from models.inverter import BLOCK, Inverter
 from optimizer.space import SearchSpace
+from optimizer.study import Study
 
 SIC = ("rooftop_5kw", "SiC MOSFET")
 
@@ -245,3 +246,23 @@ def test_no_capacitor_for_such_a_voltage(catalog: Catalog) -> None:
 def test_unknown_bridge(catalog: Catalog) -> None:
     with pytest.raises(KeyError, match="half bridge"):
         _ = Inverter(replace(ROOFTOP, bridge="half bridge"), catalog).bridge
+
+
+def test_cold_plate_counts_from_its_coolant(studies: dict[str, Study], catalog: Catalog, draw: Draw) -> None:
+    """The same designs on a plate of 45 degC coolant instead of a sink in 60 degC air: cooler, smaller, no
+    fan, and a pump that takes its share of the heat.
+    """
+    study = studies["depot_10kw_three_phase"]
+    hot = replace(study.specification, ambient_c=60.0, coolant_c=45.0)
+    space = SearchSpace(replace(study, specification=hot), Inverter(hot, catalog), "SiC MOSFET")
+    designs = draw(space, 40, 8)
+    inverter = space.inverter
+    on_plate = inverter.evaluate(replace(designs, cooling=np.full(40, COLD_PLATE)))
+    in_air = inverter.evaluate(replace(designs, cooling=np.full(40, FORCED)))
+    plate_c, air_c = (one.details["sink_temperature_c"] for one in (on_plate, in_air))
+    assert np.all(plate_c > 45.0)
+    assert np.median(air_c - plate_c) > 10.0
+    rated = on_plate.rated
+    assert np.all(on_plate.losses["fan"][:, rated] > 0.0)
+    assert np.all(on_plate.losses["fan"][:, 0] < on_plate.losses["fan"][:, rated])
+    assert np.median(on_plate.volumes["heatsink"]) < np.median(in_air.volumes["heatsink"])

@@ -55,6 +55,31 @@ def test_own_weights_bring_their_levels() -> None:
     assert points.weights(spec.weights).sum() == pytest.approx(1.0)
 
 
+@pytest.mark.parametrize("factor", [0.8, -0.8, 1.0])
+def test_power_factor_of_the_load_levels(factor: float) -> None:
+    """Active power is S cos(phi) at every level; lagging currents have a negative imaginary part."""
+    spec = replace(DEPOT, power_factor=factor, power_factor_min=0.8)
+    points = operating_points(spec)
+    own = [*range(*points.loads.indices(99)), points.distortion]
+    active = (spec.phases * points.output_voltage * np.conj(points.output_current)).real
+    assert active[own] == pytest.approx(points.load_level[own] * spec.apparent_power_va * abs(factor))
+    imaginary = points.output_current.imag[own]
+    assert np.all(np.sign(np.round(imaginary, 9)) == (0.0 if factor == 1.0 else -np.sign(factor)))
+
+
+def test_inductance_of_a_lagging_load() -> None:
+    """230 V, 3 kVA, cos(phi) = 0.8: |Z| = 17.63 ohm, X = 0.6 |Z| = 10.58 ohm, 33.7 mH at 50 Hz; at half load
+    twice of it.
+    """
+    points = operating_points(replace(BACKUP, power_factor=0.8, power_factor_min=0.8))
+    found = points.load_inductance(50.0)
+    assert found[points.rated] == pytest.approx(33.68e-3, rel=1e-3)
+    half = list(points.load_level[points.loads]).index(0.5)
+    assert found[half] == pytest.approx(2.0 * found[points.rated])
+    leading = operating_points(replace(BACKUP, power_factor=-0.8, power_factor_min=0.8))
+    assert leading.load_inductance(50.0)[leading.loads] == pytest.approx(0.0)
+
+
 def worst_bridge_current(spec: Specification, share: float) -> float:
     """Greatest bridge current over all power factors that the specification asks for, both ways, and both
     ac voltages.

@@ -52,7 +52,7 @@ def test_every_requirement_is_violated_by_some_candidate_and_met_by_another(
         "filter resonance over line frequency", "grid-side inductor gap", "inverter-side inductor gap",
         "filter reactance", "inverter-side inductor flux density", "grid-side inductor flux density",
         "inverter-side inductor window fill", "grid-side inductor window fill",
-        "switching frequency over the device's greatest",
+        "switching frequency over the device's greatest", "dc-link life",
     }  # fmt: skip
 
 
@@ -136,3 +136,13 @@ def test_filter_capacitor_is_judged_at_its_greatest_line_current(
         for volts in (240.0, 270.0)
     ]
     assert np.all(shares[1] > shares[0] * 1.05)
+
+
+def test_hot_air_uses_up_the_dc_link(rooftop: SearchSpace, draw: Draw, catalog: Catalog) -> None:
+    """In air of 85 degC the 10-kelvin rule leaves electrolytic units of 3000 h at 105 degC some 10,000 h."""
+    hot = replace(rooftop.inverter.specification, ambient_c=75.0)
+    found = Inverter(hot, catalog).evaluate(draw(rooftop, 60, 6))
+    life = found.details["dc_link_life_h"]
+    assert np.any(life < 25e3)
+    (entry,) = (one for one in found.constraints if one.name == "dc-link life")
+    assert np.array_equal(entry.margin < 0.0, life < hot.rules.dc_link_life)

@@ -63,8 +63,8 @@ def test_fan_runs_from_its_load_on(spaces: Spaces, draw: Draw) -> None:
         found = space.inverter.evaluate(designs)
         start = space.inverter.specification.rules.fan_load_start
         assert np.all(found.losses["fan"][:, found.load_level < start] == 0.0)
-        assert np.all(found.losses["fan"][designs.forced_cooling == 0] == 0.0)
-        assert np.all(found.losses["fan"][designs.forced_cooling == 1][:, found.load_level >= start] > 0.0)
+        assert np.all(found.losses["fan"][designs.cooling == 0] == 0.0)
+        assert np.all(found.losses["fan"][designs.cooling == 1][:, found.load_level >= start] > 0.0)
 
 
 def test_damping_loss_from_the_capacitor_branch(spaces: Spaces, draw: Draw) -> None:
@@ -81,3 +81,20 @@ def test_damping_loss_from_the_capacitor_branch(spaces: Spaces, draw: Draw) -> N
         ripple = LinePeriod(scheme, index, 123, ripple_unit=unit).ripple_mean_square
         expected = 3.0 * designs.damping_resistance_ohm[row] * (line[row] ** 2 + ripple)
         assert found.losses["damping"][row, found.rated] == pytest.approx(expected, rel=0.02)
+
+
+def test_voltage_drop_and_headroom(spaces: Spaces, draw: Draw) -> None:
+    """The bridge must make at least what the terminals ask for, less what the capacitor lifts; the dc voltage
+    needed is at most the least one exactly where the modulation index stays within its limit at that point.
+    """
+    space = spaces["rooftop_5kw", "SiC MOSFET"]
+    spec = space.inverter.specification
+    found = space.inverter.evaluate(draw(space, 100, 9))
+    assert np.all(found.details["bridge_voltage_rated_v"] > 0.95 * spec.phase_voltage_v)
+    peak = np.sqrt(2.0) * spec.phase_voltage_v
+    needed = found.details["dc_voltage_needed_v"]
+    assert np.all(needed > 0.95 * peak)
+    (entry,) = (one for one in found.constraints if one.name == "modulation index")
+    assert np.all(entry.margin[needed <= spec.dc_voltage_min_v] >= 0.0)
+    share = found.details["filter_reactive_share"]
+    assert np.all((share > 0.0) & (share <= 0.0801))

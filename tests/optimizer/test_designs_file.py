@@ -57,7 +57,7 @@ def test_json_and_csv_hold_every_row(given, rooftop):
         (lambda text: text.replace("switching_frequency_hz", "switching_frequency_khz"),
          r"given a column 'switching_frequency_khz', expected a known column \(the nearest is switching_frequency_hz\)"),
         (lambda text: text.replace("SiC 650 V", "SiC 65 V", 1), r"row \d+, device: given 'SiC 65 V', expected .* the nearest is 'SiC 650 V'"),
-        (lambda text: text.replace(",natural,", ",lukewarm,", 1), r"row \d+, cooling: given 'lukewarm', expected one of the 2 names"),
+        (lambda text: text.replace(",natural,", ",lukewarm,", 1), r"row \d+, cooling: given 'lukewarm', expected one of the 3 names"),
         (lambda text: "", "given no rows, expected a header and 1 to"),
         (lambda text: text.splitlines()[0] + "\n", "given no rows"),
     ],
@@ -73,6 +73,51 @@ def test_bad_numbers_are_told(given, table, rooftop, cell):
     broken.iloc[0, broken.columns.get_loc("die_area_mm2")] = cell
     with pytest.raises(InputError, match="row 2, die_area_mm2: given .*, expected a number above 0"):
         read_designs(given(lambda _: broken.to_csv(index=False)), prepared_inverter(rooftop))
+
+
+GRID_SIDE = ["core_material", "core", "stack", "turns", "conductor", "copper_area_mm2"]
+
+
+def test_inductors_left_out_are_sized(given, table, rooftop):
+    """Both sides without parts: same inductance, an ordinary build of its own, told in a note."""
+    lean = table.drop(
+        columns=[f"{side}_inductor_{part}" for side in ("inverter", "grid") for part in GRID_SIDE]
+    )
+    inverter = prepared_inverter(rooftop)
+    read = read_designs(given(lambda _: lean.to_csv(index=False)), inverter)
+    told = " ".join(read.notes)
+    assert "inverter-side inductor: sized by the rules of the search" in told
+    assert "grid-side inductor: sized by the rules of the search" in told
+    found = evaluated_table(rooftop, inverter, read)
+    for side in ("inverter", "grid"):
+        assert (found[f"margin: {side}-side inductor flux density"] > -0.05).all()
+        assert (found[f"{side}_inductor_core_material"] == "amorphous tape 25 um").all()
+    np.testing.assert_allclose(found.loss_conduction_w, table.loss_conduction_w, rtol=1e-6)
+    np.testing.assert_allclose(found.loss_switching_w, table.loss_switching_w, rtol=1e-6)
+
+
+@pytest.mark.parametrize(
+    ("column", "cell", "told"),
+    [
+        (
+            "filter_capacitance_f",
+            "0",
+            r"row 2, grid_inductance_h: given .*, expected 0 where filter_capacitance_f",
+        ),
+        ("grid_inductor_core", "", "row 2, grid_inductor_core: given nothing, expected what the grid-side"),
+    ],
+)
+def test_a_grid_side_that_does_not_fit_is_told(given, table, rooftop, column, cell, told):
+    broken = table.copy().astype({column: object})
+    broken.iloc[0, broken.columns.get_loc(column)] = cell
+    with pytest.raises(InputError, match=told):
+        read_designs(given(lambda _: broken.to_csv(index=False)), prepared_inverter(rooftop))
+
+
+def test_die_area_may_not_be_left_out_where_it_is_a_choice(given, table, rooftop):
+    path = given(lambda _: table.drop(columns="die_area_mm2").to_csv(index=False))
+    with pytest.raises(InputError, match=r"die_area_mm2: given no such column, expected a column of areas"):
+        read_designs(path, prepared_inverter(rooftop))
 
 
 def test_missing_and_binary_files(tmp_path, rooftop):

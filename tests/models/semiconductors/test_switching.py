@@ -137,6 +137,47 @@ def test_contained_output_charge_is_not_paid_twice() -> None:
     assert overlap_turn_on_energy(none) == 0.0
 
 
+@pytest.mark.parametrize(
+    ("part", "name", "energy"),
+    [
+        ("turn_on_hot", "turn_on", 3e-8),
+        ("turn_off_hot", "turn_off", 1e-8),
+        ("recovery_hot", "recovery", 5e-9),
+    ],
+)
+@pytest.mark.parametrize("share", [0.0, 0.2, 0.7])
+def test_constant_part_of_an_energy(part: str, name: str, energy: float, share: float) -> None:
+    """E f [(1 - c) (I/I_ref)^k + c] with k = 1 over a sine of twice the rated current: mean 2 x 2/pi."""
+    changed = {f"{name}_current_exponent": 1.0, f"{name}_constant_share": share}
+    found = switched(peak=40.0, **changed)
+    mean = (1.0 - share) * 4.0 / math.pi + share
+    assert getattr(found, part)[0, 0] == pytest.approx(energy * 400.0 * 20.0 * 20e3 * mean, rel=1e-5)
+
+
+@pytest.mark.parametrize("share", [0.1, 0.4])
+def test_constant_part_and_contained_output_charge_make_the_sheet_curve(share: float) -> None:
+    """Q V = 5e-3 x 1e-5 x 400 = 20 uJ of the sheet's 240 uJ at 20 A: overlap and charge together follow the
+    sheet's curve (1 - c) I/I_ref + c, here over a sine; c = 0.1 gives 24 uJ without current.
+    """
+    found = switched(
+        turn_on_includes_output_charge=True, turn_on_current_exponent=1.0, turn_on_constant_share=share
+    )
+    mean = 240e-6 * ((1.0 - share) * 2.0 / math.pi + share)
+    assert found.turn_on_hot[0, 0] + found.output_charge[0, 0] == pytest.approx(mean * 20e3, rel=1e-5)
+
+
+def test_reversed_currents_turn_off_twice_and_never_on() -> None:
+    """Ripple far above the peak current: two turn-offs a period, each with its constant part."""
+    found = switched(
+        peak=1e-6, offset=10.0, turn_off_current_exponent=1.0, turn_off_constant_share=0.3,
+        turn_on_constant_share=0.3, recovery_constant_share=0.3,
+    )  # fmt: skip
+    each = 1e-8 * 400.0 * 20.0 * (0.7 * 10.0 / 20.0 + 0.3)
+    assert found.turn_off_hot[0, 0] == pytest.approx(2.0 * each * 20e3, rel=1e-5)
+    assert found.turn_on_hot[0, 0] == pytest.approx(0.0, abs=1e-9)
+    assert found.recovery_hot[0, 0] == pytest.approx(0.0, abs=1e-5)
+
+
 def test_gate_drive() -> None:
     found = gate_drive_loss(device(PART), np.array([[1e-5]]), np.array([[100e3]]))
     assert found == pytest.approx(4e-8 * 20.0 * 100e3)

@@ -105,7 +105,11 @@ LIMITS = [
         {"emission_limit": "CISPR 11 class A above 20 kVA"},
         "a limit for 5 kVA; this one is for above 20 kVA",
     ),
-    ("rooftop_5kw", {"emission_limit": "CISPR 11 class C"}, 'expected a name in the catalogue (nearest: "CISPR 11 class B")'),
+    (
+        "rooftop_5kw",
+        {"emission_limit": "CISPR 11 class C"},
+        'expected a name in the catalogue (nearest: "CISPR 11 class B")',
+    ),
 ]  # fmt: skip
 
 

@@ -182,7 +182,8 @@ def voltage_distortion(
 
     Switching ripple is that of the unloaded filter; the rectifier load's harmonic currents meet the output
     impedance as the voltage loop leaves it, and add to the dead-time error's harmonics of the same order in
-    the worst phase.
+    the worst phase. The table's limits of single harmonics hold under linear load; a rectifier load is judged
+    by the total, as IEC 62040-3 has it (from memory).
 
     Args:
         as in `current_distortion`, limits of the voltage; rectifier_share: share of rated apparent power that
@@ -198,7 +199,9 @@ def voltage_distortion(
     left = loop_left(low_hz, spec.rules.voltage_loop_share * frequency[:, None])
     slow = (load * output_impedance(circuit, low_hz) + error) * left
     lines = _lines(spec, orders, slow / base, hertz, switched / base, listed)
-    return summarise(lines, limits.limit_of(np.arange(HIGHEST_ORDER + 1)), spec.rules.voltage_sideband_limit)
+    single = limits.limit_of(np.arange(HIGHEST_ORDER + 1))
+    table = single if rectifier_share == 0.0 else np.full_like(single, np.inf)
+    return summarise(lines, table, spec.rules.voltage_sideband_limit)
 
 
 def _dead_time_error(

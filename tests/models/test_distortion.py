@@ -115,8 +115,7 @@ RATIO = {1: 401, 3: 405}
 def test_switching_distortion_of_the_current_against_the_oracle(
     catalog: Catalog, name: str, resonance_share: float
 ) -> None:
-    """All exact lines around the carrier multiples through the filter: total within 3 %, and not below by
-    more than 1 %.
+    """All exact lines around the carrier multiples through the filter: total within 2 %.
 
     The rest lines stand at the carrier multiples while what they stand for lies on both sides: a small part
     of the difference.
@@ -153,7 +152,7 @@ def test_switching_distortion_of_the_current_against_the_oracle(
     )
     expected = float(np.sqrt(np.sum(amperes**2))) / spec.rated_current_a
     assert float(found.low[0]) == 0.0
-    assert 0.99 * expected <= float(found.total[0]) <= 1.03 * expected
+    assert 0.985 * expected <= float(found.total[0]) <= 1.02 * expected
 
 
 def test_dead_time_alone(catalog: Catalog) -> None:
@@ -224,4 +223,4 @@ def test_switching_ripple_of_an_unloaded_filter_against_the_oracle(name: str) ->
     volts = lines * BACKUP.dc_voltage_max_v / np.sqrt(2.0)
     left = volts * open_circuit_transfer(circuit, orders[None] * 50.0).capacitor_voltage[0]
     expected = float(np.sqrt(np.sum(left**2))) / BACKUP.phase_voltage_v
-    assert 0.99 * expected <= float(found.total[0]) <= 1.03 * expected
+    assert 0.985 * expected <= float(found.total[0]) <= 1.02 * expected

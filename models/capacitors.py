@@ -9,6 +9,7 @@ from numpy.typing import NDArray
 
 from models.catalog.gathered import Gathered
 from models.catalog.parts import AcCapacitor
+from models.uncertainty import NOMINAL, ModelFactors
 
 Array = NDArray[np.float64]
 RATED_RISE_K = (10.0, 5.0)  # core over air at rated ripple, film, electrolytic [K], common practice
@@ -41,6 +42,7 @@ def ac_filter_capacitor(
     line_frequency_hz: float,
     ripple_frequency: Array,
     greatest_current: Array,
+    factors: ModelFactors = NOMINAL,
 ) -> AcFilterCapacitor:
     """Evaluate the filter capacitors.
 
@@ -52,6 +54,7 @@ def ac_filter_capacitor(
         ripple_mean_square: (n, p) [A2].
         line_frequency_hz: [Hz]; ripple_frequency: (n,) [Hz].
         greatest_current: rms current at its worst operating point (n,) [A].
+        factors: on what the models say.
 
     The dielectric loss is I^2 tan(delta)/(omega C) for each of the two current parts. A filter without
     capacitor has none of all this.
@@ -62,7 +65,7 @@ def ac_filter_capacitor(
     ripple = np.where(there[:, None], ripple_mean_square, 0.0) / (2.0 * np.pi * ripple_frequency[:, None] * c)
     volume = phases * capacitance * kind.volume_m3_per_f
     return AcFilterCapacitor(
-        loss=phases * kind.loss_tangent * (line + ripple),
+        loss=phases * kind.loss_tangent * factors.capacitor_loss[:, None] * (line + ripple),
         current_share=np.where(there, greatest_current, 0.0) / (c[:, 0] * kind.current_a_per_f),
         volume=volume,
         mass=volume * kind.density_kg_m3,
@@ -127,6 +130,7 @@ def dc_link(
     worst: int,
     air_c: float,
     time_share: Array,
+    factors: ModelFactors = NOMINAL,
 ) -> DcLink:
     """Size the bank and evaluate its loss.
 
@@ -140,6 +144,7 @@ def dc_link(
         worst: operating point that sets the ripple current [-].
         air_c: air around the bank [degC].
         time_share: share of the operating time at the first operating points [-].
+        factors: on what the models say.
     """
     series = np.ceil(dc_voltage_max / (voltage_use * unit.voltage_rating_v) - 1e-9)
     heating = np.sqrt(slow_rms**2 + (fast_rms / unit.ripple_multiplier_high[:, None]) ** 2)
@@ -147,6 +152,7 @@ def dc_link(
     for_ripple = np.ceil(heating[:, worst] / unit.unit_ripple_a - 1e-9)
     parallel = np.maximum(np.maximum(for_charge, for_ripple), 1.0)
     count = series * parallel
+    lossy = factors.capacitor_loss
     esr = unit.unit_esr_low_ohm[:, None] * slow_rms**2 + unit.unit_esr_high_ohm[:, None] * fast_rms**2
     balancing = np.where(series > 1.0, balancing_current * dc_voltage, 0.0)
     volume = count * unit.unit_volume_m3
@@ -156,9 +162,10 @@ def dc_link(
         series=series,
         parallel=parallel,
         capacitance=unit.unit_capacitance_f * parallel / series,
-        loss=esr * (series / parallel)[:, None] + balancing[:, None],
+        loss=esr * (series / parallel * lossy)[:, None] + balancing[:, None],
         ripple_share=heating[:, worst] / (parallel * unit.unit_ripple_a),
-        life=bank_life(unit, working, use, air_c, time_share),
+        life=bank_life(unit, working * np.sqrt(lossy)[:, None], use, air_c, time_share)
+        * factors.dc_link_life,
         volume=volume,
         mass=volume * unit.density_kg_m3,
         price=count * unit.unit_price,

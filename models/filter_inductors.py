@@ -14,6 +14,7 @@ from models.magnetics.core_bands import CoreBands
 from models.magnetics.core_loss import steinmetz_loss, switched_loss
 from models.magnetics.inductor import Inductor, InductorDuty, inductor, where_present
 from models.output_filter import LinePhasors
+from models.uncertainty import NOMINAL, ModelFactors
 from models.waveforms.spectrum import CARRIER_GROUPS
 from models.waveforms.state import WaveformState
 from models.waveforms.tables import WaveformTables
@@ -26,13 +27,14 @@ GROUPS = np.arange(1.0, CARRIER_GROUPS + 1)
 @dataclass(frozen=True)
 class Surroundings:
     """What both inductors share: line frequency [Hz], air around them [degC], rise factor (n,) [-], labour
-    [currency].
+    [currency], factors on what the models say.
     """
 
     line_frequency_hz: float
     ambient_c: float
     rise_factor: Array
     labour: float
+    factors: ModelFactors = NOMINAL
 
 
 @dataclass(frozen=True)
@@ -103,6 +105,7 @@ def bridge_side(
             line_frequency_hz=around.line_frequency_hz,
             ambient_c=around.ambient_c,
             rise_factor=around.rise_factor,
+            factors=around.factors,
         ),
         around.labour,
     )
@@ -149,6 +152,7 @@ def grid_side(
             line_frequency_hz=around.line_frequency_hz,
             ambient_c=around.ambient_c,
             rise_factor=around.rise_factor,
+            factors=around.factors,
         ),
         around.labour,
     )

@@ -35,6 +35,7 @@ from models.requirements import Findings, requirements
 from models.roll_up import roll_up
 from models.semiconductors.bridge_losses import BridgeLosses, Cooling, bridge_losses
 from models.specification import GRID_CONNECTED, Specification
+from models.uncertainty import NOMINAL, ModelFactors, as_built
 from models.waveforms.bridges import BRIDGES, Bridge
 from models.waveforms.dc_link_current import rail_rms
 from models.waveforms.state import WaveformState, waveform_state
@@ -107,11 +108,12 @@ class Inverter:
             raise ValueError(f"no ac capacitor class of the catalogue is rated for {voltage:.0f} V ac")
         return min(fitting, key=lambda kind: kind.volume_m3_per_f)
 
-    def evaluate(self, designs: Designs) -> Evaluation:
+    def evaluate(self, designs: Designs, factors: ModelFactors = NOMINAL) -> Evaluation:
         """Evaluate candidates, in blocks that stay in cache.
 
         Args:
             designs: candidates (n,).
+            factors: on parts and models, as they may turn out (n,) or (1,).
 
         Returns:
             Losses, sizes, prices, distortion and constraint margins; nothing in it is NaN or infinite for
@@ -119,8 +121,9 @@ class Inverter:
         """
         starts = range(0, len(designs), BLOCK)
         if len(starts) <= 1:
-            return self._evaluate_block(designs)
-        return joined([self._evaluate_block(designs.take(slice(start, start + BLOCK))) for start in starts])
+            return self._evaluate_block(designs, factors)
+        blocks = (slice(start, start + BLOCK) for start in starts)
+        return joined([self._evaluate_block(designs.take(rows), factors.of(rows)) for rows in blocks])
 
     def emission_at(self, designs: Designs, multiples: NDArray[np.int64]) -> Emission:
         """Conducted emission of candidates at carrier multiples of one's own choice (n, k) [-].
@@ -174,14 +177,15 @@ class Inverter:
         load = self.points.load_inductance(spec.line_frequency_hz)
         return np.where(bare[:, None], own / (own + load), 1.0)
 
-    def _evaluate_block(self, designs: Designs) -> Evaluation:
+    def _evaluate_block(self, given: Designs, factors: ModelFactors) -> Evaluation:
         spec, points = self.specification, self.points
+        designs = as_built(given, factors)
         circuit = _circuit(designs)
         columns = circuit.columns()
         phasors, state = self._waveforms(designs, columns)
         packages = self.packages.of(designs)
         losing = _at_points(state, points.losses)
-        sink = self._sink(designs)
+        sink, cooled = self._sink(designs), designs.sink_resistance_k_per_w * factors.sink_resistance
         losses = bridge_losses(
             packages,
             designs.switching_frequency_hz,
@@ -189,16 +193,18 @@ class Inverter:
             self.tables,
             losing,
             points.dc_voltage[points.losses],
-            Cooling(spec.ambient_c, lambda power, rows: self._rise(designs, power, rows)),
+            Cooling(spec.ambient_c, lambda power, rows: self._rise(designs.cooling, cooled, power, rows)),
+            factors,
         )
-        distortion, linear = self._distortion(columns, state, designs, packages[0].device.dead_time_s[:, 0])
+        dead_time = packages[0].device.dead_time_s[:, 0] * factors.dead_time_error
+        distortion, linear = self._distortion(columns, state, designs, dead_time)
         emission = (
-            self.emission.evaluate(designs, columns, state, points.distortion, packages)
+            self.emission.evaluate(designs, columns, state, points.distortion, packages, factors)
             if spec.emission_limit
             else None
         )
-        inductors = self._inductors(designs, phasors, state, distortion)
-        capacitors = self._capacitors(designs, phasors, losing)
+        inductors = self._inductors(designs, phasors, state, distortion, factors)
+        capacitors = self._capacitors(designs, phasors, losing, factors)
         findings = Findings(
             designs=designs,
             circuit=circuit,
@@ -216,6 +222,7 @@ class Inverter:
             linear_limit=self.tables.linear_limit[designs.modulation],
             resonance=resonance_hz(circuit),
             emission=emission,
+            factors=factors,
         )
         constraints = requirements(spec, self.catalog, self.tables, points, findings)
         return roll_up(spec, self.catalog, points, findings, constraints)
@@ -229,10 +236,12 @@ class Inverter:
             }
         )
 
-    def _rise(self, designs: Designs, power: Array, rows: NDArray[np.int64] | slice) -> Array:
+    def _rise(
+        self, cooling: NDArray[np.int64], to_ambient: Array, power: Array, rows: NDArray[np.int64] | slice
+    ) -> Array:
         """Heatsink over ambient [K]; a cold plate counts from its coolant."""
         natural, forced, plate = self.sinks
-        resistance, kind = designs.sink_resistance_k_per_w[rows, None], designs.cooling[rows, None]
+        resistance, kind = to_ambient[rows, None], cooling[rows, None]
         rise = np.where(kind == FORCED, forced.rise(power, resistance), natural.rise(power, resistance))
         if np.any(kind == COLD_PLATE):
             over_air = self.specification.coolant_c - self.specification.ambient_c
@@ -258,15 +267,22 @@ class Inverter:
         return voltage_distortion(spec, limits, columns, *common, spec.rectifier_share), linear
 
     def _inductors(
-        self, designs: Designs, phasors: LinePhasors, state: WaveformState, distortion: Distortion
+        self,
+        designs: Designs,
+        phasors: LinePhasors,
+        state: WaveformState,
+        distortion: Distortion,
+        factors: ModelFactors,
     ) -> tuple[Inductor, Inductor]:
         spec, points = self.specification, self.points
         rules = spec.rules
         around = Surroundings(
             spec.line_frequency_hz,
             spec.ambient_c + rules.internal_air_rise,
-            np.where(designs.cooling == FORCED, rules.forced_inductor_rise_factor, 1.0),
+            np.where(designs.cooling == FORCED, rules.forced_inductor_rise_factor, 1.0)
+            * factors.inductor_rise,
             float(self.catalog.cost.inductor_labour_at(spec.apparent_power_va)),
+            factors,
         )
         count = points.losses.stop
         spread = (np.arange(count) >= points.thermal.start).astype(np.int64)
@@ -278,7 +294,13 @@ class Inverter:
         dropped = points.dc_voltage if share is None else points.dc_voltage * share
         first = bridge_side(*common, state, dropped, at_losses, peak, view, around)
         ripple = np.sqrt(np.maximum(distortion.total**2 - distortion.low**2, 0.0)) * spec.rated_current_a
-        return first, grid_side(*common, at_losses, ripple, around)
+        second = grid_side(*common, at_losses, ripple, around)
+        # a core that makes more inductance than wanted has not run out of turns
+        reached = (factors.inverter_inductance, factors.grid_inductance)
+        return (
+            replace(first, inductance_share=first.inductance_share * reached[0]),
+            replace(second, inductance_share=second.inductance_share * reached[1]),
+        )
 
     def _peak_current(self, phasors: LinePhasors, state: WaveformState) -> Array:
         """Greatest current of the bridge-side inductor, half the greatest ripple on top [A]."""
@@ -290,7 +312,7 @@ class Inverter:
         return spec.rules.surge_current_factor * current + 0.5 * state.peak_ripple[:, points.distortion]
 
     def _capacitors(
-        self, designs: Designs, phasors: LinePhasors, state: WaveformState
+        self, designs: Designs, phasors: LinePhasors, state: WaveformState, factors: ModelFactors
     ) -> tuple[AcFilterCapacitor, DcLink]:
         spec, points, rules = self.specification, self.points, self.specification.rules
         frequency = designs.switching_frequency_hz
@@ -307,6 +329,7 @@ class Inverter:
             spec.line_frequency_hz,
             frequency * self.tables.main_carrier[designs.modulation],
             greatest,
+            factors,
         )
         # a three-level leg's link is two halves in series, each of which carries its own rail's current
         halves = self.bridge.levels - 1
@@ -334,6 +357,7 @@ class Inverter:
             worst,
             spec.ambient_c + rules.internal_air_rise,
             self.points.weights(spec.weights),
+            factors,
         )
         return film, in_series(half, halves)
 

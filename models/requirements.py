@@ -21,6 +21,7 @@ from models.output_filter import Filter, LinePhasors, resonance_hz
 from models.semiconductors.bridge_losses import BridgeLosses
 from models.semiconductors.packages import Packages
 from models.specification import GRID_CONNECTED, DesignRules, Specification
+from models.uncertainty import ModelFactors
 from models.waveforms.leg_commutations import CLAMP, OUTER
 from models.waveforms.state import WaveformState
 from models.waveforms.tables import WaveformTables
@@ -50,6 +51,7 @@ class Findings:
     dc_link: DcLink
     resonance: Array
     emission: Emission | None
+    factors: ModelFactors
 
 
 def requirements(

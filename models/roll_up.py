@@ -77,6 +77,7 @@ def _losses(
     running = points.load_level[loads] >= spec.rules.fan_load_start
     shape = damping.shape
     auxiliary = np.full(shape, float(catalog.cost.auxiliary_power_at(spec.apparent_power_va)))
+    auxiliary *= found.factors.auxiliary_power[:, None]
     return {
         "conduction": bridge.conduction[:, loads],
         "switching": bridge.switching[:, loads],
@@ -166,7 +167,8 @@ def _volumes(spec: Specification, found: Findings) -> dict[str, Array]:
         "control": np.full(len(found.designs), control),
     }
     used = np.sum(list(boxes.values()), axis=0)
-    return boxes | {"unused": used * (1.0 / rules.packing_factor - 1.0)}
+    whole = found.factors.whole_volume / rules.packing_factor
+    return boxes | {"unused": used * np.maximum(whole - 1.0, 0.0)}
 
 
 def _masses(spec: Specification, found: Findings) -> dict[str, Array]:
@@ -189,8 +191,7 @@ def _prices(spec: Specification, catalog: Catalog, found: Findings) -> dict[str,
     first, second = found.inductors
     cost, count = catalog.cost, len(found.designs)
     drivers = spec.rules.further_driver_price * _further_drivers(spec, found)
-    return {
-        "semiconductors": np.sum([part.price for part in found.packages], axis=0),
+    others = {
         "heatsink": found.sink.price,
         "inverter_inductor": spec.phases * first.price,
         "grid_inductor": spec.phases * second.price,
@@ -199,6 +200,11 @@ def _prices(spec: Specification, catalog: Catalog, found: Findings) -> dict[str,
         **_of_emission_filter(found, "price"),
         "control": np.full(count, float(cost.control_price_at(spec.apparent_power_va)) + drivers),
         "housing": np.full(count, float(cost.housing_price_at(spec.apparent_power_va))),
+    }
+    switches = np.sum([part.price for part in found.packages], axis=0)
+    return {
+        "semiconductors": switches * found.factors.semiconductor_price,
+        **{name: price * found.factors.other_prices for name, price in others.items()},
     }
 
 

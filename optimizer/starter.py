@@ -1,4 +1,4 @@
-"""The commented starter study, and the two blocks in it that are written out of their declarations.
+"""The commented starter study, and the blocks in it that are written out of their declarations.
 
 The blocks stand in starter.toml as these functions return them; a test fails where a declaration has changed
 since, and its message shows the block to paste.
@@ -10,10 +10,11 @@ from dataclasses import fields
 from importlib.resources import files
 
 from models.specification import DesignRules
+from models.uncertainty import Uncertainty
 from optimizer.quantity import written
 from optimizer.study_schema import RANGES
 
-DEFAULTS = DesignRules()
+DEFAULTS, UNCERTAINTY = DesignRules(), Uncertainty()
 
 
 def starter_text() -> str:
@@ -39,6 +40,19 @@ def rules_block() -> str:
                 rule.metadata["meaning"],
             )
             for rule in fields(DEFAULTS)
+        ]
+    )
+
+
+def uncertainty_block() -> str:
+    """Return the lines of [uncertainty], each commented out: its default, what it is, where it is from."""
+    return _commented_out(
+        [
+            (
+                f"{one.name} = {_toml(getattr(UNCERTAINTY, one.name), one.metadata['unit'])}",
+                f"{one.metadata['law']}: {one.metadata['meaning']}; {one.metadata['source']}",
+            )
+            for one in fields(UNCERTAINTY)
         ]
     )
 

@@ -5,7 +5,7 @@ from __future__ import annotations
 import hashlib
 import tomllib
 from collections.abc import Iterable, Mapping
-from dataclasses import dataclass, replace
+from dataclasses import dataclass, field, replace
 from pathlib import Path
 from typing import TYPE_CHECKING, Any
 
@@ -16,6 +16,7 @@ from models.specification import (
     DesignRules,
     Specification,
 )
+from models.uncertainty import Uncertainty
 from optimizer.concepts import Concept, concepts
 from optimizer.errors import InputError, Problem
 from optimizer.limit_checks import unfitting_limits
@@ -32,6 +33,7 @@ from optimizer.study_schema import (
     DEFAULT_LIMITS,
     EUROPEAN,
     NO_EMISSION_LIMIT,
+    NOMINAL_VALUES,
     SIDES,
     STAND_ALONE_ONLY,
     SearchRange,
@@ -66,6 +68,8 @@ class SearchSettings:
             grid_inductance_ratio for an LC filter.
         population: candidates per generation and class [-].
         generations: [-].
+        rank_by: one of study_schema.RANKINGS.
+        limits_hold: probability with which each limit holds, where not the nominal values rank [-].
     """
 
     bridges: tuple[str, ...]
@@ -80,6 +84,8 @@ class SearchSettings:
     ranges: Mapping[str, SearchRange]
     population: int
     generations: int
+    rank_by: str = NOMINAL_VALUES
+    limits_hold: float = 0.9
 
 
 @dataclass(frozen=True, kw_only=True)
@@ -96,6 +102,7 @@ class Study:
         at_most: greatest value of an objective by its name (minimised or not), SI units; only those the study
             names.
         catalog_files: the user's own parts files.
+        uncertainty: how far parts and models may be off.
     """
 
     name: str
@@ -107,6 +114,7 @@ class Study:
     objectives: tuple[str, ...]
     at_most: Mapping[str, float]
     catalog_files: tuple[Path, ...] = ()
+    uncertainty: Uncertainty = field(default_factory=Uncertainty)
 
     @property
     def concepts(self) -> tuple[Concept, ...]:
@@ -141,6 +149,7 @@ class Study:
             objectives=content.objectives,
             at_most=content.at_most,
             catalog_files=tuple(path.parent / name for name in content.catalog["files"]),
+            uncertainty=Uncertainty(**content.uncertainty),
         )
 
     def with_bridge(self, name: str) -> Study:

@@ -13,6 +13,7 @@ from typing import Any
 
 from models.designs import COOLING
 from models.specification import GRID_CONNECTED, STAND_ALONE, DesignRules, Specification
+from models.uncertainty import SPREAD, TOLERANCE, Uncertainty
 from models.waveforms.bridges import BRIDGES
 from optimizer.study_table import Choice, Key, Kind, Quantity, Reading, Several, SubTable, Text, Whole
 
@@ -23,6 +24,8 @@ LCL, LC, ONLY_L = "LCL", "LC", "L"
 SERIES_R, PARALLEL_RC = "series resistor", "parallel R-C"
 GRID_RATIO = "grid_inductance_ratio"
 EUROPEAN, CALIFORNIAN, CUSTOM = "european", "californian", "custom"
+RANKINGS = NOMINAL_VALUES, HIGH_VALUES = "nominal", "95 percent"
+"""What candidates are ranked by: the models' own values, or those that 95 % of inverters stay below."""
 
 
 @dataclass(frozen=True)
@@ -95,7 +98,9 @@ RANGES = (
 NO_EMISSION_LIMIT = "none"
 SIDES = ("lagging", "leading")
 DEFAULT_LIMITS = {GRID_CONNECTED: "IEEE 1547-2018", STAND_ALONE: "IEC 62040-3 stand-alone output"}
-TABLES = ("application", "weighting", "bridge", "filter", "objectives", "search", "rules", "catalog")
+TABLES = (
+    "application", "weighting", "bridge", "filter", "objectives", "search", "rules", "uncertainty", "catalog",
+)  # fmt: skip
 NAME = Text(
     "a text of letters, digits, blanks, dots, - and _ (the run folder is called so)", r"\w[\w .-]{0,79}"
 )
@@ -171,6 +176,8 @@ SEARCH = (
     Key("cooling", Several(Choice(COOLING)), COOLING[:2]),
     Key("population", Whole(8, 10_000), 100),
     Key("generations", Whole(1, 100_000), 200),
+    Key("rank_by", Choice(RANKINGS), NOMINAL_VALUES),
+    Key("limits_hold", Quantity("", 0.5, 0.999), 0.9),
     Key("ranges", SubTable(), None),
 )
 CATALOG = (Key("files", Several(Text()), ()),)
@@ -198,6 +205,13 @@ RULES = tuple(
     _rule(rule.name, rule.metadata["unit"], getattr(_DEFAULTS, rule.name)) for rule in fields(_DEFAULTS)
 )
 
+WIDEST = {TOLERANCE: 0.9, SPREAD: 10.0}
+"""Greatest value of an uncertainty by its law: a part must stay above nothing."""
+UNCERTAINTY = tuple(
+    Key(one.name, Quantity("", 0.0, WIDEST[one.metadata["law"]]), getattr(Uncertainty(), one.name))
+    for one in fields(Uncertainty)
+)
+
 
 @dataclass(frozen=True)
 class StudyContent:
@@ -205,7 +219,7 @@ class StudyContent:
 
     Attributes:
         top, application, dc_voltage, short_circuit_ratio, weighting, bridge, objectives, at_most, search,
-            rules, catalog: tables by key.
+            rules, uncertainty, catalog: tables by key.
         filter: kind and damping.
         ranges: search ranges by name.
     """
@@ -222,6 +236,7 @@ class StudyContent:
     search: Mapping[str, Any]
     ranges: Mapping[str, SearchRange]
     rules: Mapping[str, float]
+    uncertainty: Mapping[str, float]
     catalog: Mapping[str, Any]
 
 
@@ -240,6 +255,7 @@ def read_content(reading: Reading) -> StudyContent:
         search=reading.table("search", SEARCH),
         ranges=_read_ranges(reading),
         rules=reading.table("rules", RULES),
+        uncertainty=reading.table("uncertainty", UNCERTAINTY),
         catalog=reading.table("catalog", CATALOG),
     )
 

@@ -33,6 +33,7 @@ from models.emission.stages import stage_inductance
 from models.output_filter import Filter
 from models.semiconductors.packages import Packages
 from models.specification import Specification
+from models.uncertainty import NOMINAL, ModelFactors
 from models.waveforms.bridges import Bridge
 from models.waveforms.state import WaveformState
 from models.waveforms.tables import WaveformTables
@@ -149,6 +150,7 @@ class EmissionModel:
         state: WaveformState,
         point: int,
         packages: tuple[Packages, ...],
+        factors: ModelFactors = NOMINAL,
     ) -> Emission:
         """Judge a population and size its filters.
 
@@ -157,10 +159,10 @@ class EmissionModel:
             circuit: output filter (n, 1).
             state, point: waveforms at the operating point of the greatest dc voltage.
             packages: of the bridge.
+            factors: on what the models say.
         """
-        return self.at_multiples(
-            self.judged_multiples(designs.switching_frequency_hz), designs, circuit, state, point, packages
-        )
+        judged = self.judged_multiples(designs.switching_frequency_hz)
+        return self.at_multiples(judged, designs, circuit, state, point, packages, factors)
 
     def at_multiples(
         self,
@@ -170,17 +172,17 @@ class EmissionModel:
         state: WaveformState,
         point: int,
         packages: tuple[Packages, ...],
+        factors: ModelFactors = NOMINAL,
     ) -> Emission:
         """As `evaluate`, at carrier multiples of one's own choice (n, k) [-]; the filter is sized at the same
         lines as in `evaluate`.
         """
         judged = self.judged_multiples(designs.switching_frequency_hz)
-        noise = self._noise(judged, designs, circuit, state, point, packages)
+        at = (designs, circuit, state, point, packages, factors.emission_level)
+        noise = self._noise(judged, *at)
         differential = self._differential_filter(noise)
         common = self._common_filter(noise)
-        shown = (
-            noise if multiple is judged else self._noise(multiple, designs, circuit, state, point, packages)
-        )
+        shown = noise if multiple is judged else self._noise(multiple, *at)
         left = shown.with_filters(differential, common)
         x, y = self._capacitors(differential, common)
         spec, lines = self.specification, self.lines
@@ -226,6 +228,7 @@ class EmissionModel:
         state: WaveformState,
         point: int,
         packages: tuple[Packages, ...],
+        level: Array,
     ) -> Noise:
         spec = self.specification
         frequency = multiple * designs.switching_frequency_hz[:, None]
@@ -237,7 +240,7 @@ class EmissionModel:
             voltages.append(np.take_along_axis(rows, chosen, axis=-1) / multiple)
         # unequal edges leave part of a leg's voltage in the common mode of schemes whose legs cancel
         floor = spec.rules.common_mode_asymmetry * 2.0 / (np.pi * multiple * (self.bridge.levels - 1))
-        scale = spec.dc_voltage_max_v / np.sqrt(2.0)
+        scale = spec.dc_voltage_max_v / np.sqrt(2.0) * level[:, None]
         return Noise(
             frequency=frequency,
             differential_source=voltages[0] * scale,

@@ -13,6 +13,7 @@ from models.magnetics.core_loss import bias_factor, line_loss
 from models.magnetics.gap import gap_for_inductance, powder_inductance
 from models.magnetics.surface_cooling import box_surface, still_air_rise
 from models.magnetics.winding import copper_resistivity
+from models.uncertainty import NOMINAL, ModelFactors
 
 Array = NDArray[np.float64]
 RATIO_TEMPERATURE_C = 100.0  # copper temperature for skin and proximity ratios
@@ -34,6 +35,7 @@ class InductorDuty:
         line_frequency_hz: [Hz].
         ambient_c: air around the inductor [degC].
         rise_factor: temperature rise over that in still air (n,) [-].
+        factors: on what the models say.
     """
 
     inductance: Array
@@ -45,6 +47,7 @@ class InductorDuty:
     line_frequency_hz: float
     ambient_c: float
     rise_factor: Array
+    factors: ModelFactors = NOMINAL
 
 
 @dataclass(frozen=True)
@@ -137,16 +140,18 @@ def _core_loss(built: Build, duty: InductorDuty, flux_per_ampere: Array) -> Arra
     )
     bias = bias_factor(material.bias_loss_factor[:, None], line_flux, material.saturation_t[:, None])
     density = major + duty.switched_loss_density * bias
-    return density * (material.loss_factor * built.core_volume)[:, None]
+    return density * (material.loss_factor * built.core_volume * duty.factors.core_loss)[:, None]
 
 
 def _winding_loss(built: Build, duty: InductorDuty, core_loss: Array) -> tuple[Array, Array]:
     resistivity = copper_resistivity(np.asarray(RATIO_TEMPERATURE_C))
     ratio = resistance_ratio(built, duty.group_frequency, resistivity)
+    ratio = ratio * duty.factors.ripple_copper_loss[:, None]
     ripple = np.einsum("npm,nm->np", duty.group_mean_square, ratio)
     effective = duty.line_current**2 + ripple
-    cold = dc_resistance(built, 0.0)[:, None]
-    slope = dc_resistance(built, 1.0)[:, None] - cold
+    at_0, at_1 = (dc_resistance(built, degrees) * duty.factors.winding_resistance for degrees in (0.0, 1.0))
+    cold = at_0[:, None]
+    slope = at_1[:, None] - cold
     surface = box_surface(built.box_volume)[:, None]
     temperature = np.full(core_loss.shape, duty.ambient_c + 50.0)
     loss = core_loss

@@ -14,6 +14,7 @@ from models.semiconductors.packages import Packages
 from models.semiconductors.position_heat import PositionHeat
 from models.semiconductors.three_level_leg import three_level_heat
 from models.semiconductors.two_level_leg import two_level_heat
+from models.uncertainty import NOMINAL, ModelFactors
 from models.waveforms.bridges import Bridge
 from models.waveforms.state import WaveformState
 from models.waveforms.tables import WaveformTables
@@ -74,6 +75,7 @@ def bridge_losses(
     state: WaveformState,
     dc_voltage: Array,
     cooling: Cooling,
+    factors: ModelFactors = NOMINAL,
 ) -> BridgeLosses:
     """Solve the bridge's losses and junction temperatures.
 
@@ -84,6 +86,7 @@ def bridge_losses(
         state: waveform state at the loss points (n, p).
         dc_voltage: (p,) [V].
         cooling: ambient and heatsink.
+        factors: on what the models say.
 
     Returns:
         Losses of all positions together and the hottest junctions.
@@ -93,6 +96,7 @@ def bridge_losses(
         heat = two_level_heat(packages, *at)
     else:
         heat = three_level_heat(bridge.leg_type, packages, *at)
+    heat = heat.scaled(factors)
     switch_law, diode_law = heat.dies()
     alike = 2.0 * bridge.leg_copies  # positions that a modelled one stands for
 

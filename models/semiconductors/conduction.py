@@ -61,6 +61,10 @@ class HeatLaw:
         loss += self.constant
         return loss
 
+    def scaled(self, factor: Array) -> HeatLaw:
+        """The law times a factor on all of its losses [-]."""
+        return HeatLaw(self.constant * factor, self.linear * factor, self.resistive * factor, self.growth)
+
     def of(self, rows: NDArray[np.int64] | slice) -> HeatLaw:
         """The law of some candidates (axis before the last)."""
         return HeatLaw(

@@ -3,7 +3,7 @@
 from __future__ import annotations
 
 from collections.abc import Sequence
-from dataclasses import dataclass, fields
+from dataclasses import dataclass, fields, replace
 from typing import Any
 
 import numpy as np
@@ -11,6 +11,7 @@ from numpy.typing import NDArray
 
 from models.semiconductors.conduction import HeatLaw
 from models.semiconductors.switching import Dies
+from models.uncertainty import ModelFactors
 
 Array = NDArray[np.float64]
 NO_HEAT = HeatLaw(*(np.zeros((1, 1)) for _ in range(4)))
@@ -43,6 +44,23 @@ class PositionHeat:
     shared: NDArray[np.bool_]
     resistances: tuple[Array, Array, Array]
     limit_c: Array
+
+    def scaled(self, factors: ModelFactors) -> PositionHeat:
+        """Every part times the factor on its phenomenon."""
+        drop = factors.on_state[:, None]
+        junction_case, diode_case, case_sink = self.resistances
+        thermal = factors.junction_sink_resistance[:, None]
+        return replace(
+            self,
+            forward=self.forward.scaled(drop),
+            channel=self.channel.scaled(drop),
+            freewheel=self.freewheel.scaled(drop),
+            switching=self.switching.scaled(factors.switching_energy[:, None]),
+            recovery=self.recovery.scaled(factors.recovery_energy[:, None]),
+            output_charge=self.output_charge * factors.output_charge[:, None],
+            dead_time=self.dead_time * drop,
+            resistances=(junction_case * thermal, diode_case * thermal, case_sink * thermal),
+        )
 
     def dies(self) -> tuple[HeatLaw, HeatLaw]:
         """All of it as one law for the switch die and one for the diode die."""

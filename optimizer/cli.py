@@ -61,6 +61,9 @@ def search(
     generations: Annotated[
         int | None, typer.Option(help="Generations, instead of the study's.", min=1, show_default=False)
     ] = None,
+    resume: Annotated[
+        bool, typer.Option("--resume", help="Go on with a search of this run that was killed.")
+    ] = False,
     json: Annotated[
         bool, typer.Option("--json", help="Print the summary as JSON instead of a table.")
     ] = False,
@@ -74,7 +77,9 @@ def search(
     asked = Study.read(study).with_effort(population, generations)
     folder = run or Path("runs") / asked.name
     with SearchBar(asked, hidden=json) as bar:
-        outcome = run_search(asked, folder, seed=seed, workers=workers, report=bar.report, stage=bar.stage)
+        outcome = run_search(
+            asked, folder, seed=seed, workers=workers, resume=resume, report=bar.report, stage=bar.stage
+        )
     print_summary(outcome, as_json=json)
 
 
@@ -103,7 +108,7 @@ def evaluate(
     """Evaluate designs given by hand: every figure, every margin, losses by part, spectrum."""
     from optimizer.designs_file import INNER_COLUMNS, bridges_in, read_designs
     from optimizer.evaluate import evaluated_table, joined, spectrum_table, written_table
-    from optimizer.populations import prepared_inverter
+    from optimizer.prepared import prepared_inverter
     from optimizer.run_folder import write_whole
     from optimizer.study import Study
 

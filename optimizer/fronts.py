@@ -17,9 +17,11 @@ from models.designs import COOLING, Designs, InductorDesigns
 from models.evaluation import Constraint, Evaluation
 from models.inverter import Inverter
 from models.waveforms.leg_commutations import INNER
+from optimizer.concept_search import ClassResult
 from optimizer.emission_lines import EmissionLines, emission_lines, joined_lines
 from optimizer.objectives import OBJECTIVES, distortion_column, margins_of, requirements_of
-from optimizer.populations import ClassResult, SearchResult, search_space
+from optimizer.populations import SearchResult
+from optimizer.prepared import search_space
 
 Array = NDArray[np.float64]
 SPECTRUM_DIGITS = 4
@@ -59,7 +61,11 @@ def front(result: SearchResult) -> Front:
     Args:
         result: of a search with at least one feasible candidate.
     """
-    kept = [(found, _class_front(found)) for found in result.classes if len(found.points)]
+    kept = [
+        (found, _class_front(found, result.study.search.front_resolution))
+        for found in result.classes
+        if len(found.points)
+    ]
     objectives = np.concatenate([found.objectives[rows] for found, rows in kept])
     overall = moocore.is_nondominated(objectives)
     parts = []
@@ -98,11 +104,34 @@ def front(result: SearchResult) -> Front:
     )
 
 
-def _class_front(found: ClassResult) -> NDArray[np.int64]:
-    """Rows of a class's non-dominated candidates, sorted by the first objective; repeated ones once."""
+def _class_front(found: ClassResult, resolution: float) -> NDArray[np.int64]:
+    """Rows of a class's non-dominated candidates that can be told apart, sorted by the first objective."""
     _, first = np.unique(found.objectives, axis=0, return_index=True)
     rows = first[moocore.is_nondominated(found.objectives[first])]
+    rows = rows[distinct_rows(found.objectives[rows], resolution)]
     return rows[np.lexsort(found.objectives[rows].T[::-1])]
+
+
+def distinct_rows(objectives: Array, resolution: float) -> NDArray[np.int64]:
+    """Rows of a front that differ by more than a share of its range, and the best of every objective.
+
+    The range of every objective is divided into boxes; boxes dominated by others drop out, and of a box the
+    design nearest its best corner stays (epsilon dominance: Laumanns, Thiele, Deb, Zitzler 2002).
+
+    Args:
+        objectives: of non-dominated designs (n, m).
+        resolution: size of a box over the range [-]; 0 keeps all.
+    """
+    if resolution <= 0.0:
+        return np.arange(len(objectives))
+    low, spread = objectives.min(0), np.ptp(objectives, axis=0)
+    places = (objectives - low) / np.where(spread > 0.0, spread, 1.0) / resolution
+    boxes = np.floor(places)
+    order = np.argsort((places - boxes).sum(-1), kind="stable")
+    _, first = np.unique(boxes[order], axis=0, return_index=True)
+    nearest = order[first]
+    kept = nearest[moocore.is_nondominated(boxes[nearest])]
+    return np.union1d(kept, objectives.argmin(0))
 
 
 def _range(limits: list[Array]) -> tuple[float, float]:

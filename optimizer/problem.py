@@ -70,10 +70,10 @@ class ClassProblem(Problem):
     absurd value hides the rest, and less is always better.
     """
 
-    def __init__(self, space: SearchSpace) -> None:
+    def __init__(self, space: SearchSpace, archive: Archive | None = None) -> None:
         self.space = space
         self.chosen: tuple[Objective, ...] = tuple(OBJECTIVES[name] for name in space.study.objectives)
-        self.archive = Archive()
+        self.archive = Archive() if archive is None else archive
         super().__init__(n_var=len(space.variables), n_obj=len(self.chosen), xl=0.0, xu=1.0)
 
     def assess(self, points: Array) -> tuple[Array, Array]:

@@ -7,7 +7,8 @@ from types import TracebackType
 from rich.console import Console
 from rich.progress import BarColumn, Progress, TaskID, TextColumn, TimeElapsedColumn, TimeRemainingColumn
 
-from optimizer.populations import Progress as ClassProgress
+from optimizer.concept_search import Progress as ClassProgress
+from optimizer.screening import planned_evaluations
 from optimizer.study import Study
 
 
@@ -20,7 +21,7 @@ class SearchBar:
     """
 
     def __init__(self, study: Study, *, hidden: bool) -> None:
-        self.total = len(study.concepts) * study.search.population * study.search.generations
+        self.total = len(study.concepts) * planned_evaluations(study.search)
         self.evaluations: dict[str, int] = {}
         self.hypervolumes: dict[str, float] = {}
         self.progress = Progress(

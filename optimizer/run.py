@@ -16,21 +16,17 @@ import numpy as np
 import pandas as pd
 from numpy.typing import NDArray
 
+from optimizer.concept_search import ClassResult, Progress
+from optimizer.csv_table import csv_bytes
 from optimizer.errors import NothingFeasible
 from optimizer.fronts import LITRES, Front, choices, front
 from optimizer.objectives import OBJECTIVES
-from optimizer.populations import (
-    ClassResult,
-    Progress,
-    SearchResult,
-    process_context,
-    search,
-    search_space,
-)
-from optimizer.run_folder import RUN_FILE, Content, write_run
+from optimizer.populations import SearchResult, process_context, search
+from optimizer.prepared import prepare, search_space
+from optimizer.run_folder import RUN_FILE, Content, check_folder, write_run
 from optimizer.study import Study
+from optimizer.unfinished import Unfinished, task_of
 
-DIGITS = 7
 GZIP_LEVEL = 1
 
 
@@ -53,15 +49,20 @@ def run_search(
     *,
     seed: int = 1,
     workers: int | None = None,
+    resume: bool = False,
     report: Callable[[Progress], None] | None = None,
     stage: Callable[[str], None] = lambda words: None,
 ) -> Outcome:
     """Search a study and write its run folder, whole or not at all.
 
+    While it runs, its populations are kept beside the run folder every few seconds.
+
     Args:
         study: the study.
         folder: run folder to write.
         seed, workers, report: as in `optimizer.populations.search`.
+        resume: go on with a search of this run folder that did not end, where there is one; its result is
+            that of a search that was never stopped.
         stage: told what is being done.
 
     Raises:
@@ -69,8 +70,14 @@ def run_search(
         InputError: for parts that do not exist or a folder that is no run.
     """
     started = time.perf_counter()
-    result = search(study, seed=seed, workers=workers, report=report)
+    check_folder(folder)
+    prepare(study)
+    unfinished, task = Unfinished.of(folder), task_of(study, seed, _version())
+    if not (resume and unfinished.take_up(task)):
+        unfinished.begin(task)
+    result = search(study, seed=seed, workers=workers, report=report, unfinished=unfinished)
     if not any(len(found.points) for found in result.classes):
+        unfinished.end()
         raise NothingFeasible(ruled_out(result))
     searched = time.perf_counter()
     stage("sorting fronts")
@@ -85,8 +92,8 @@ def run_search(
         page = dashboard_html(study, fronts, evaluated, summary)
         stage("writing")
         files: dict[str, Content] = {
-            "front.csv": _csv(fronts.table),
-            "margins.csv": _csv(fronts.margins),
+            "front.csv": csv_bytes(fronts.table),
+            "margins.csv": csv_bytes(fronts.margins),
             "evaluated.csv.gz": packed.result(),
             "dashboard.html": page,
         }
@@ -98,11 +105,13 @@ def run_search(
         "total": ended - started,
     }
     files[RUN_FILE] = json.dumps(summary, indent=1) + "\n"
-    return Outcome(result, fronts, folder, write_run(folder, files), summary)
+    kept = write_run(folder, files)
+    unfinished.end()
+    return Outcome(result, fronts, folder, kept, summary)
 
 
 def _packed(evaluated: pd.DataFrame) -> bytes:
-    return gzip.compress(_csv(evaluated).encode(), GZIP_LEVEL, mtime=0)
+    return gzip.compress(csv_bytes(evaluated), GZIP_LEVEL, mtime=0)
 
 
 def ruled_out(result: SearchResult) -> list[tuple[str, float, str]]:
@@ -184,18 +193,3 @@ def _version() -> str:
         return version("wattfront")
     except PackageNotFoundError:
         return "unknown (not installed)"
-
-
-def _csv(table: pd.DataFrame) -> str:
-    """CSV with floats of DIGITS significant digits."""
-    rounded = table.copy()
-    for name in rounded.columns[rounded.dtypes == np.float64]:
-        rounded[name] = _significant(rounded[name].to_numpy())
-    return rounded.to_csv(index=False, lineterminator="\n")
-
-
-def _significant(values: NDArray[np.float64]) -> NDArray[np.float64]:
-    size = np.abs(values)
-    exponent = DIGITS - 1 - np.floor(np.log10(np.where(size > 0.0, size, 1.0)))
-    factor = 10.0 ** np.abs(exponent)
-    return np.where(exponent >= 0, np.rint(values * factor) / factor, np.rint(values / factor) * factor)

@@ -47,6 +47,11 @@ def write_run(folder: Path, files: Mapping[str, Content], *, overwrite: bool = T
         return _swap(target, new, frozenset(PurePath(name) for name in files))
 
 
+def check_folder(folder: Path) -> None:
+    """Raise InputError where a run can not be written to `folder`."""
+    _check_replaceable(folder, Path(folder).resolve(), overwrite=True)
+
+
 def write_whole(path: Path, content: Content) -> None:
     """Write one file whole or not at all; an earlier file of that name is replaced at the end.
 

@@ -65,7 +65,11 @@ class SearchSettings:
         ranges: search ranges in SI units by name, as study_schema.RANGES declares them; without
             grid_inductance_ratio for an LC filter.
         population: candidates per generation and class [-].
-        generations: [-].
+        generations: at most [-].
+        least_gain: relative gain of the hypervolume over the last `populations.GAIN_WINDOW` generations below
+            which a population stops before; 0 lets it run [-].
+        front_resolution: of two designs of a front that differ by less than this share of the front's range
+            in every objective, one is kept [-].
     """
 
     bridges: tuple[str, ...]
@@ -80,6 +84,8 @@ class SearchSettings:
     ranges: Mapping[str, SearchRange]
     population: int
     generations: int
+    least_gain: float
+    front_resolution: float
 
 
 @dataclass(frozen=True, kw_only=True)

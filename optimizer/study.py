@@ -5,10 +5,11 @@ from __future__ import annotations
 import hashlib
 import tomllib
 from collections.abc import Iterable, Mapping
-from dataclasses import dataclass, replace
+from dataclasses import dataclass, field, replace
 from pathlib import Path
 from typing import TYPE_CHECKING, Any
 
+from models.ownership import EnergyTerms
 from models.specification import (
     CALIFORNIAN_WEIGHTS,
     EUROPEAN_WEIGHTS,
@@ -29,6 +30,7 @@ from optimizer.study_checks import (
 )
 from optimizer.study_schema import (
     CALIFORNIAN,
+    CURRENCY,
     DEFAULT_LIMITS,
     EUROPEAN,
     NO_EMISSION_LIMIT,
@@ -96,6 +98,8 @@ class Study:
         at_most: greatest value of an objective by its name (minimised or not), SI units; only those the study
             names.
         catalog_files: the user's own parts files.
+        currency: what prices and costs are counted in.
+        source: the file's bytes.
     """
 
     name: str
@@ -107,6 +111,8 @@ class Study:
     objectives: tuple[str, ...]
     at_most: Mapping[str, float]
     catalog_files: tuple[Path, ...] = ()
+    currency: str = CURRENCY
+    source: bytes = field(default=b"", repr=False)
 
     @property
     def concepts(self) -> tuple[Concept, ...]:
@@ -141,6 +147,8 @@ class Study:
             objectives=content.objectives,
             at_most=content.at_most,
             catalog_files=tuple(path.parent / name for name in content.catalog["files"]),
+            currency=content.energy["currency"],
+            source=raw,
         )
 
     def with_bridge(self, name: str) -> Study:
@@ -253,6 +261,7 @@ def _specification(content: StudyContent) -> Specification:
         demand_current_a=asked["demand_current"],
         emission_limit="" if asked["emission_limit"] == NO_EMISSION_LIMIT else asked["emission_limit"],
         rules=DesignRules(**content.rules),
+        energy=EnergyTerms(**{name: value for name, value in content.energy.items() if name != "currency"}),
         **{key.name: asked[key.name] for key in own},
     )
 

@@ -8,6 +8,7 @@ import time
 from collections.abc import Callable
 from concurrent.futures import ProcessPoolExecutor
 from dataclasses import dataclass
+from datetime import datetime
 from importlib.metadata import PackageNotFoundError, version
 from pathlib import Path
 from typing import Any
@@ -27,9 +28,11 @@ from optimizer.populations import (
     search,
     search_space,
 )
-from optimizer.run_folder import RUN_FILE, Content, write_run
+from optimizer.run_folder import RUN_FILE, STUDY_FILE, Content, parts_copy, write_run
 from optimizer.study import Study
 
+RUN_FORMAT = 2
+"""Number of the run folder's layout, in run.json: what reads a folder back knows by it whether it can."""
 DIGITS = 7
 GZIP_LEVEL = 1
 
@@ -89,6 +92,7 @@ def run_search(
             "margins.csv": _csv(fronts.margins),
             "evaluated.csv.gz": packed.result(),
             "dashboard.html": page,
+            **_study_files(study),
         }
     ended = time.perf_counter()
     summary["seconds"] = {
@@ -99,6 +103,14 @@ def run_search(
     }
     files[RUN_FILE] = json.dumps(summary, indent=1) + "\n"
     return Outcome(result, fronts, folder, write_run(folder, files), summary)
+
+
+def _study_files(study: Study) -> dict[str, Content]:
+    """Copies of the study and of the parts files it names, by which a run explains itself."""
+    files: dict[str, Content] = {STUDY_FILE: study.source}
+    for place, path in enumerate(study.catalog_files):
+        files[parts_copy(place, path)] = path.read_bytes()
+    return files
 
 
 def _packed(evaluated: pd.DataFrame) -> bytes:
@@ -140,9 +152,18 @@ def _objective_columns(study: Study, found: ClassResult) -> dict[str, NDArray[np
 def _summary(result: SearchResult, fronts: Front) -> dict[str, Any]:
     study = result.study
     return {
-        "study": {"name": study.name, "file": study.path.name, "hash": study.file_hash},
+        "format": RUN_FORMAT,
+        "study": {
+            "name": study.name,
+            "file": study.path.name,
+            "hash": study.file_hash,
+            "parts": [parts_copy(place, path) for place, path in enumerate(study.catalog_files)],
+        },
         "version": _version(),
+        "date": datetime.now().astimezone().isoformat(timespec="minutes"),
         "seed": result.seed,
+        "population": study.search.population,
+        "generations": study.search.generations,
         "objectives": [
             {
                 "name": name,

@@ -4,7 +4,7 @@ from __future__ import annotations
 
 import hashlib
 import tomllib
-from collections.abc import Iterable, Mapping
+from collections.abc import Iterable, Mapping, Sequence
 from dataclasses import dataclass, field, replace
 from pathlib import Path
 from typing import TYPE_CHECKING, Any
@@ -125,15 +125,19 @@ class Study:
         return tuple(concept.name for concept in self.concepts)
 
     @classmethod
-    def read(cls, path: Path | str) -> Study:
+    def read(cls, path: Path | str, parts: Sequence[Path] | None = None) -> Study:
         """Return the study of a file.
+
+        Args:
+            path: the file.
+            parts: where copies of its parts files lie, in its order; None where they lie as it says.
 
         Raises:
             InputError: with every problem of the file at once: file, key, what was given, what is expected.
         """
         path = Path(path)
         raw = _read_bytes(path)
-        reading = Reading(path, _read_toml(path, raw))
+        reading = Reading(path, _read_toml(path, raw), parts=parts)
         content = read_content(reading)
         check_content(reading, content)
         reading.raise_problems()
@@ -146,7 +150,9 @@ class Study:
             search=_search_settings(content),
             objectives=content.objectives,
             at_most=content.at_most,
-            catalog_files=tuple(path.parent / name for name in content.catalog["files"]),
+            catalog_files=tuple(
+                reading.parts_file(index, name) for index, name in enumerate(content.catalog["files"])
+            ),
             currency=content.energy["currency"],
             source=raw,
         )

@@ -23,6 +23,11 @@ app = typer.Typer(
     epilog="Early-concept figures. A dc link stores lethal energy; standards and licensed practice decide.",
 )
 
+RunFolder = Annotated[Path, typer.Argument(help="Run folder that a search has written.", show_default=False)]
+Weights = Annotated[
+    str | None,
+    typer.Option(help='Weights of objectives for one more design: "volume=2, price=1".', show_default=False),
+]
 StudyFile = Annotated[Path, typer.Argument(help="Study file (TOML).", show_default=False)]
 
 
@@ -133,6 +138,34 @@ def evaluate(
     else:
         write_whole(out, text)
         typer.echo(f"Wrote {len(table)} designs, {table.feasible.sum()} of them feasible, to {out}")
+
+
+@app.command(epilog='Example: wattfront shortlist "runs/rooftop 5 kW" --weights "volume=2, price=1"')
+def shortlist(
+    run: RunFolder,
+    weights: Weights = None,
+    out: Annotated[
+        Path | None, typer.Option(help="File for the shortlist, .csv or .json.", show_default=False)
+    ] = None,
+    json: Annotated[bool, typer.Option("--json", help="JSON instead of text on standard output.")] = False,
+) -> None:
+    """Pick a few designs from a run's front and tell them in plain words."""
+    from optimizer.decision import shortlist as picked
+    from optimizer.decision.telling import as_csv, as_json, print_shortlist, table_suffix
+    from optimizer.decision.weights import read_weights
+    from optimizer.run_folder import write_whole
+    from optimizer.stored_run import read_run
+
+    suffix = table_suffix(out) if out else ""
+    asked = read_weights(weights) if weights is not None else None
+    found = read_run(run)
+    chosen = picked(found.study, found.table, found.margins, asked)
+    if out is not None:
+        write_whole(out, as_json(chosen) if suffix == ".json" else as_csv(chosen))
+    if json:
+        typer.echo(as_json(chosen), nl=False)
+    else:
+        print_shortlist(chosen)
 
 
 @app.command(epilog="Example: wattfront catalog --kind devices --files my_parts.toml")

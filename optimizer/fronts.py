@@ -16,6 +16,7 @@ from models.catalog.parts import Catalog
 from models.designs import COOLING, Designs, InductorDesigns
 from models.evaluation import Constraint, Evaluation
 from models.inverter import Inverter
+from models.ownership import JOULE_A_KWH
 from models.waveforms.leg_commutations import INNER
 from optimizer.concept_search import ClassResult
 from optimizer.emission_lines import EmissionLines, emission_lines, joined_lines
@@ -186,6 +187,11 @@ def design_table(
         "price": result.price,
         distortion_column(inverter.specification): result.distortion.total,
         "distortion_percent": OBJECTIVES["distortion"].read(result),
+        "loss_rated_percent": OBJECTIVES["rated loss"].read(result),
+        "junction_rise_percent": OBJECTIVES["junction temperature rise"].read(result),
+        "lost_energy_kwh_per_year": result.lost_energy / JOULE_A_KWH,
+        "lost_energy_cost": result.lost_energy_cost,
+        "cost_of_ownership": OBJECTIVES["cost of ownership"].read(result),
     }
     columns |= {f"loss_{name}_w": part[:, rated] for name, part in result.losses.items()}
     columns |= {f"volume_{name}_l": LITRES * part for name, part in result.volumes.items()}

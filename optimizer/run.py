@@ -8,6 +8,7 @@ import time
 from collections.abc import Callable
 from concurrent.futures import ProcessPoolExecutor
 from dataclasses import dataclass
+from datetime import datetime
 from importlib.metadata import PackageNotFoundError, version
 from pathlib import Path
 from typing import Any
@@ -23,10 +24,12 @@ from optimizer.fronts import LITRES, Front, choices, front
 from optimizer.objectives import OBJECTIVES
 from optimizer.populations import SearchResult, process_context, search
 from optimizer.prepared import prepare, search_space
-from optimizer.run_folder import RUN_FILE, Content, check_folder, write_run
+from optimizer.run_folder import RUN_FILE, STUDY_FILE, Content, check_folder, parts_copy, write_run
 from optimizer.study import Study
 from optimizer.unfinished import Unfinished, task_of
 
+RUN_FORMAT = 2
+"""Number of the run folder's layout, in run.json: what reads a folder back knows by it whether it can."""
 GZIP_LEVEL = 1
 
 
@@ -96,6 +99,7 @@ def run_search(
             "margins.csv": csv_bytes(fronts.margins),
             "evaluated.csv.gz": packed.result(),
             "dashboard.html": page,
+            **_study_files(study),
         }
     ended = time.perf_counter()
     summary["seconds"] = {
@@ -108,6 +112,14 @@ def run_search(
     kept = write_run(folder, files)
     unfinished.end()
     return Outcome(result, fronts, folder, kept, summary)
+
+
+def _study_files(study: Study) -> dict[str, Content]:
+    """Copies of the study and of the parts files it names, by which a run explains itself."""
+    files: dict[str, Content] = {STUDY_FILE: study.source}
+    for place, path in enumerate(study.catalog_files):
+        files[parts_copy(place, path)] = path.read_bytes()
+    return files
 
 
 def _packed(evaluated: pd.DataFrame) -> bytes:
@@ -149,9 +161,18 @@ def _objective_columns(study: Study, found: ClassResult) -> dict[str, NDArray[np
 def _summary(result: SearchResult, fronts: Front) -> dict[str, Any]:
     study = result.study
     return {
-        "study": {"name": study.name, "file": study.path.name, "hash": study.file_hash},
+        "format": RUN_FORMAT,
+        "study": {
+            "name": study.name,
+            "file": study.path.name,
+            "hash": study.file_hash,
+            "parts": [parts_copy(place, path) for place, path in enumerate(study.catalog_files)],
+        },
         "version": _version(),
+        "date": datetime.now().astimezone().isoformat(timespec="minutes"),
         "seed": result.seed,
+        "population": study.search.population,
+        "generations": study.search.generations,
         "objectives": [
             {
                 "name": name,

@@ -4,11 +4,12 @@ from __future__ import annotations
 
 import hashlib
 import tomllib
-from collections.abc import Iterable, Mapping
-from dataclasses import dataclass, replace
+from collections.abc import Iterable, Mapping, Sequence
+from dataclasses import dataclass, field, replace
 from pathlib import Path
 from typing import TYPE_CHECKING, Any
 
+from models.ownership import EnergyTerms
 from models.specification import (
     CALIFORNIAN_WEIGHTS,
     EUROPEAN_WEIGHTS,
@@ -29,6 +30,7 @@ from optimizer.study_checks import (
 )
 from optimizer.study_schema import (
     CALIFORNIAN,
+    CURRENCY,
     DEFAULT_LIMITS,
     EUROPEAN,
     NO_EMISSION_LIMIT,
@@ -102,6 +104,8 @@ class Study:
         at_most: greatest value of an objective by its name (minimised or not), SI units; only those the study
             names.
         catalog_files: the user's own parts files.
+        currency: what prices and costs are counted in.
+        source: the file's bytes.
     """
 
     name: str
@@ -113,6 +117,8 @@ class Study:
     objectives: tuple[str, ...]
     at_most: Mapping[str, float]
     catalog_files: tuple[Path, ...] = ()
+    currency: str = CURRENCY
+    source: bytes = field(default=b"", repr=False)
 
     @property
     def concepts(self) -> tuple[Concept, ...]:
@@ -125,15 +131,19 @@ class Study:
         return tuple(concept.name for concept in self.concepts)
 
     @classmethod
-    def read(cls, path: Path | str) -> Study:
+    def read(cls, path: Path | str, parts: Sequence[Path] | None = None) -> Study:
         """Return the study of a file.
+
+        Args:
+            path: the file.
+            parts: where copies of its parts files lie, in its order; None where they lie as it says.
 
         Raises:
             InputError: with every problem of the file at once: file, key, what was given, what is expected.
         """
         path = Path(path)
         raw = _read_bytes(path)
-        reading = Reading(path, _read_toml(path, raw))
+        reading = Reading(path, _read_toml(path, raw), parts=parts)
         content = read_content(reading)
         check_content(reading, content)
         reading.raise_problems()
@@ -146,7 +156,11 @@ class Study:
             search=_search_settings(content),
             objectives=content.objectives,
             at_most=content.at_most,
-            catalog_files=tuple(path.parent / name for name in content.catalog["files"]),
+            catalog_files=tuple(
+                reading.parts_file(index, name) for index, name in enumerate(content.catalog["files"])
+            ),
+            currency=content.energy["currency"],
+            source=raw,
         )
 
     def with_bridge(self, name: str) -> Study:
@@ -259,6 +273,7 @@ def _specification(content: StudyContent) -> Specification:
         demand_current_a=asked["demand_current"],
         emission_limit="" if asked["emission_limit"] == NO_EMISSION_LIMIT else asked["emission_limit"],
         rules=DesignRules(**content.rules),
+        energy=EnergyTerms(**{name: value for name, value in content.energy.items() if name != "currency"}),
         **{key.name: asked[key.name] for key in own},
     )
 

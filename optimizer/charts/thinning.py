@@ -79,7 +79,16 @@ def shown_rows(
 
 
 def balanced_row(table: pd.DataFrame, columns: Sequence[str]) -> int:
-    """Position of the overall-front design nearest to the least of all columns, each scaled to its range."""
-    points = unit_range(table[list(columns)].to_numpy(dtype=float))
-    eligible = table["overall_front"].to_numpy(dtype=bool)
-    return int(np.where(eligible, np.square(points).sum(-1), np.inf).argmin())
+    """Position of the overall-front design nearest to the ideal point: the least of every column at once.
+
+    Columns are scaled to the overall front's own range, its ideal point at 0 and its nadir at 1; constant
+    ones do not count. Source: compromise programming, Zeleny (1973); Miettinen, Nonlinear Multiobjective
+    Optimization (1999), ch. 2.
+
+    Args:
+        table: front, with `overall_front`.
+        columns: what is to be small.
+    """
+    rows = np.flatnonzero(table["overall_front"].to_numpy(dtype=bool))
+    points = unit_range(table[list(columns)].to_numpy(dtype=float)[rows])
+    return int(rows[np.square(points).sum(-1).argmin()])

@@ -140,6 +140,32 @@ def evaluate(
         typer.echo(f"Wrote {len(table)} designs, {table.feasible.sum()} of them feasible, to {out}")
 
 
+@app.command(epilog='Example: wattfront audit "runs/rooftop 5 kW" --designs 5000000')
+def audit(
+    run: RunFolder,
+    designs: Annotated[int, typer.Option(help="Designs to evaluate in all, about.", min=1000)] = 2_000_000,
+    seed: Annotated[int, typer.Option(help="Seed; the same seed gives the same result.", min=0)] = 1,
+    workers: Annotated[
+        int | None, typer.Option(help="Processes; default one per core.", min=1, max=256, show_default=False)
+    ] = None,
+    take_in: Annotated[
+        bool, typer.Option("--take-in", help="Write the run anew with the better designs found.")
+    ] = False,
+    json: Annotated[bool, typer.Option("--json", help="Print JSON instead of a table.")] = False,
+) -> None:
+    """Say how complete a run's fronts are: quasi-random designs by the million, and a local polish."""
+    from optimizer.audited_run import audit_run, taken_in
+    from optimizer.progress import AuditBar
+    from optimizer.summary import print_audit
+
+    with AuditBar(designs, hidden=json) as bar:
+        audited = audit_run(run, designs=designs, seed=seed, workers=workers, report=bar.report)
+    print_audit(audited, as_json=json)
+    if take_in:
+        kept = taken_in(audited)
+        typer.echo(f"Wrote {run} anew" + (f"; the earlier one was kept as {kept}" if kept else ""), err=json)
+
+
 @app.command(epilog='Example: wattfront shortlist "runs/rooftop 5 kW" --weights "volume=2, price=1"')
 def shortlist(
     run: RunFolder,

@@ -259,6 +259,9 @@ _RESULT_STARTS = (
     "emission_",
     "distortion_",
     "modulation_index_",
+    "cost_",
+    "lost_energy_",
+    "junction_",
 )
 _RESULT_NAMES = {
     "concept",

@@ -42,6 +42,7 @@ class Front:
         line_order, line_amplitude, line_limit: (n, k) harmonic lines over the base, listed ones; no limit is
             infinite.
         emission: conducted emission; None where the study leaves it out.
+        points: places in the search space by concept, in the table's order (n, k).
     """
 
     table: pd.DataFrame
@@ -54,6 +55,7 @@ class Front:
     line_amplitude: Array
     line_limit: Array
     emission: EmissionLines | None
+    points: dict[str, Array]
 
 
 def front(result: SearchResult) -> Front:
@@ -101,6 +103,7 @@ def front(result: SearchResult) -> Front:
         line_order=np.concatenate([item.lines.order for item in lines]),
         line_amplitude=np.concatenate(listed),
         line_limit=np.concatenate([item.line_limit for item in lines]),
+        points={found.concept.name: found.points[rows] for found, rows in kept},
         emission=joined_lines([emission_lines(inverter, designs) for inverter, designs, _ in parts]),
     )
 

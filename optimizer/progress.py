@@ -12,6 +12,49 @@ from optimizer.screening import planned_evaluations
 from optimizer.study import Study
 
 
+class AuditBar:
+    """Shows a running audit on standard error; `report` feeds it.
+
+    Args:
+        designs: to evaluate in all [-].
+        hidden: show nothing.
+    """
+
+    def __init__(self, designs: int, *, hidden: bool) -> None:
+        self.done: dict[str, int] = {}
+        self.progress = _bar("{task.completed:,.0f}/{task.total:,.0f} designs", hidden)
+        self.task: TaskID = self.progress.add_task("auditing", total=designs, note="")
+
+    def __enter__(self) -> AuditBar:
+        self.progress.start()
+        return self
+
+    def __exit__(
+        self, kind: type[BaseException] | None, trouble: BaseException | None, trace: TracebackType | None
+    ) -> None:
+        self.progress.stop()
+
+    def report(self, concept: str, designs: int) -> None:
+        """Take in how many designs of a concept are done."""
+        self.done[concept] = designs
+        self.progress.update(self.task, completed=sum(self.done.values()))
+
+
+def _bar(count: str, hidden: bool) -> Progress:
+    return Progress(
+        TextColumn("{task.description}"),
+        BarColumn(bar_width=24),
+        TextColumn(count),
+        TextColumn("{task.fields[note]}"),
+        TimeElapsedColumn(),
+        TextColumn("left"),
+        TimeRemainingColumn(),
+        console=Console(stderr=True),
+        disable=hidden,
+        transient=True,
+    )
+
+
 class SearchBar:
     """Shows a running search on standard error; `report` and `stage` feed it.
 
@@ -24,18 +67,7 @@ class SearchBar:
         self.total = len(study.concepts) * planned_evaluations(study.search)
         self.evaluations: dict[str, int] = {}
         self.hypervolumes: dict[str, float] = {}
-        self.progress = Progress(
-            TextColumn("{task.description}"),
-            BarColumn(bar_width=24),
-            TextColumn("{task.completed:,.0f}/{task.total:,.0f} evaluations"),
-            TextColumn("{task.fields[note]}"),
-            TimeElapsedColumn(),
-            TextColumn("left"),
-            TimeRemainingColumn(),
-            console=Console(stderr=True),
-            disable=hidden,
-            transient=True,
-        )
+        self.progress = _bar("{task.completed:,.0f}/{task.total:,.0f} evaluations", hidden)
         self.task: TaskID = self.progress.add_task("preparing", total=self.total, note="")
 
     def __enter__(self) -> SearchBar:

@@ -3,9 +3,10 @@
 from __future__ import annotations
 
 import gzip
+import io
 import json
 import time
-from collections.abc import Callable
+from collections.abc import Callable, Mapping
 from concurrent.futures import ProcessPoolExecutor
 from dataclasses import dataclass
 from datetime import datetime
@@ -30,7 +31,10 @@ from optimizer.unfinished import Unfinished, task_of
 
 RUN_FORMAT = 2
 """Number of the run folder's layout, in run.json: what reads a folder back knows by it whether it can."""
+POINTS_FILE = "points.npz"
 GZIP_LEVEL = 1
+
+Array = NDArray[np.float64]
 
 
 @dataclass(frozen=True)
@@ -87,20 +91,8 @@ def run_search(
     fronts = front(result)
     evaluated = evaluated_table(result)
     stage("drawing")
-    summary = _summary(result, fronts)
-    with ProcessPoolExecutor(1, mp_context=process_context()) as beside:
-        packed = beside.submit(_packed, evaluated)  # as long as drawing the dashboard takes
-        from optimizer.charts import dashboard_html
-
-        page = dashboard_html(study, fronts, evaluated, summary)
-        stage("writing")
-        files: dict[str, Content] = {
-            "front.csv": csv_bytes(fronts.table),
-            "margins.csv": csv_bytes(fronts.margins),
-            "evaluated.csv.gz": packed.result(),
-            "dashboard.html": page,
-            **_study_files(study),
-        }
+    summary = summary_of(result, fronts)
+    files = run_files(study, fronts, evaluated, summary)
     ended = time.perf_counter()
     summary["seconds"] = {
         "models": sum(found.seconds["models"] for found in result.classes),
@@ -108,10 +100,41 @@ def run_search(
         "output": ended - searched,
         "total": ended - started,
     }
-    files[RUN_FILE] = json.dumps(summary, indent=1) + "\n"
-    kept = write_run(folder, files)
+    stage("writing")
+    kept = write_run(folder, files | {RUN_FILE: json_text(summary)})
     unfinished.end()
     return Outcome(result, fronts, folder, kept, summary)
+
+
+def run_files(
+    study: Study, fronts: Front, evaluated: pd.DataFrame, summary: dict[str, Any]
+) -> dict[str, Content]:
+    """Content of a run folder's files by name, without run.json."""
+    with ProcessPoolExecutor(1, mp_context=process_context()) as beside:
+        packed = beside.submit(_packed, evaluated)  # as long as drawing the dashboard takes
+        from optimizer.charts import dashboard_html
+
+        page = dashboard_html(study, fronts, evaluated, summary)
+        return {
+            "front.csv": csv_bytes(fronts.table),
+            "margins.csv": csv_bytes(fronts.margins),
+            "evaluated.csv.gz": packed.result(),
+            "dashboard.html": page,
+            POINTS_FILE: points_bytes(fronts.points),
+            **_study_files(study),
+        }
+
+
+def json_text(summary: dict[str, Any]) -> str:
+    """run.json's text."""
+    return json.dumps(summary, indent=1) + "\n"
+
+
+def points_bytes(points: Mapping[str, Array]) -> bytes:
+    """Places in the search space of the fronts' designs, by concept, as numpy's archive of arrays."""
+    file = io.BytesIO()
+    np.savez_compressed(file, allow_pickle=False, **dict(points))
+    return file.getvalue()
 
 
 def _study_files(study: Study) -> dict[str, Content]:
@@ -152,13 +175,14 @@ def evaluated_table(result: SearchResult) -> pd.DataFrame:
     return pd.concat(parts, ignore_index=True)
 
 
-def _objective_columns(study: Study, found: ClassResult) -> dict[str, NDArray[np.float64]]:
+def _objective_columns(study: Study, found: ClassResult) -> dict[str, Array]:
     return {
         OBJECTIVES[name].column: found.objectives[:, place] for place, name in enumerate(study.objectives)
     }
 
 
-def _summary(result: SearchResult, fronts: Front) -> dict[str, Any]:
+def summary_of(result: SearchResult, fronts: Front) -> dict[str, Any]:
+    """run.json's content, without times."""
     study = result.study
     return {
         "format": RUN_FORMAT,

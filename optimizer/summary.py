@@ -8,6 +8,7 @@ from rich.box import SIMPLE_HEAD
 from rich.console import Console
 from rich.table import Table
 
+from optimizer.audited_run import Audited, audit_entries
 from optimizer.objectives import OBJECTIVES
 from optimizer.run import Outcome
 
@@ -63,3 +64,32 @@ def _table(outcome: Outcome) -> Table:
         else:
             table.add_row(found.concept.name, "0", "0", *["-"] * len(study.objectives), "-")
     return table
+
+
+def print_audit(audited: Audited, *, as_json: bool) -> None:
+    """Print what an audit found, as a table or as JSON by concept."""
+    if as_json:
+        print(json.dumps(audit_entries(audited.found)))
+        return
+    table = Table(
+        title=f"{audited.run.study.name}: share of the joint hypervolume that the search had found",
+        box=SIMPLE_HEAD,
+        padding=(0, 1, 0, 0),
+    )
+    for heading in ("concept", "designs\nevaluated", "of them\nfeasible", "front", "of it\nbeaten", "share"):
+        table.add_column(heading, justify="left" if heading == "concept" else "right")
+    for one in audited.found:
+        table.add_row(
+            one.concept.name,
+            f"{one.evaluations:,}",
+            f"{one.feasible:,}",
+            f"{one.front:,}",
+            f"{one.beaten:,}",
+            f"{one.share:.2%}",
+        )
+    console = Console()
+    console.print(table)
+    console.print(
+        "A beaten design has a better one somewhere near it; the share says how much that matters.",
+        soft_wrap=True,
+    )

@@ -42,7 +42,6 @@ def test_killed_and_resumed_gives_the_same_bytes(undisturbed, tmp_path, share):
     except subprocess.TimeoutExpired:
         os.killpg(process.pid, signal.SIGKILL)
         process.wait()
-        assert not run.exists()
     subprocess.run(command(run, "--resume"), cwd=ROOT, check=True, capture_output=True)
     for name in ("front.csv", "margins.csv"):
         assert (run / name).read_bytes() == (whole / name).read_bytes()

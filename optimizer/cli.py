@@ -7,6 +7,7 @@ Heavy imports happen inside the commands, so that `--help` answers at once.
 from __future__ import annotations
 
 import sys
+from enum import StrEnum
 from pathlib import Path
 from typing import Annotated
 
@@ -22,6 +23,13 @@ app = typer.Typer(
     help="Pareto fronts of losses, volume, price and distortion for DC-AC inverters, before any layout.",
     epilog="Early-concept figures. A dc link stores lethal energy; standards and licensed practice decide.",
 )
+
+
+class ReportFormat(StrEnum):
+    """Formats of a report."""
+
+    HTML, PDF, PPTX = "html", "pdf", "pptx"
+
 
 RunFolder = Annotated[Path, typer.Argument(help="Run folder that a search has written.", show_default=False)]
 Weights = Annotated[
@@ -161,6 +169,34 @@ def shortlist(
         typer.echo(as_json(chosen), nl=False)
     else:
         print_shortlist(chosen)
+
+
+@app.command(epilog='Example: wattfront report "runs/rooftop 5 kW" --format pdf --out for_the_board')
+def report(
+    run: RunFolder,
+    kinds: Annotated[
+        list[ReportFormat] | None,
+        typer.Option("--format", help="Again for a second one; default all three.", show_default=False),
+    ] = None,
+    out: Annotated[
+        Path | None, typer.Option(help="Folder for the report; default RUN/report.", show_default=False)
+    ] = None,
+    weights: Weights = None,
+) -> None:
+    """Write a run's report: one page for a decision, an appendix for engineers."""
+    from optimizer.decision import shortlist as picked
+    from optimizer.decision.weights import read_weights
+    from optimizer.report import report as content_of
+    from optimizer.report.writing import FOLDER, check_libraries, write_report
+    from optimizer.stored_run import read_run
+
+    formats = [kind.value for kind in kinds or ReportFormat]
+    check_libraries(formats)
+    asked = read_weights(weights) if weights is not None else None
+    found = read_run(run)
+    content = content_of(found, picked(found.study, found.table, found.margins, asked))
+    for path in write_report(content, out or run / FOLDER, formats):
+        typer.echo(f"Wrote {path}")
 
 
 @app.command(epilog="Example: wattfront catalog --kind devices --files my_parts.toml")

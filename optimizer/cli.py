@@ -199,6 +199,34 @@ def report(
         typer.echo(f"Wrote {path}")
 
 
+@app.command(epilog="Example: wattfront compare runs/with_silicon runs/with_sic --out compared.html")
+def compare(
+    runs: Annotated[list[Path], typer.Argument(help="Run folders, two or more.", show_default=False)],
+    out: Annotated[
+        Path | None, typer.Option(help="Page to write (.html); default: only print.", show_default=False)
+    ] = None,
+    json: Annotated[bool, typer.Option("--json", help="JSON instead of text on standard output.")] = False,
+) -> None:
+    """Hold runs against the first: fronts on the same axes, what moved, what was changed."""
+    from optimizer.comparison import compare as compared
+    from optimizer.comparison.page import comparison_page
+    from optimizer.comparison.telling import as_json, check_page, print_comparison
+    from optimizer.run_folder import write_whole
+    from optimizer.stored_run import read_run
+
+    if out is not None:
+        check_page(out)
+    found = compared([read_run(run) for run in runs])
+    if out is not None:
+        write_whole(out, comparison_page(found))
+    if json:
+        typer.echo(as_json(found), nl=False)
+    else:
+        print_comparison(found)
+    if out is not None:
+        typer.echo(f"Wrote {out}", err=json)
+
+
 @app.command(epilog="Example: wattfront catalog --kind devices --files my_parts.toml")
 def catalog(
     kind: Annotated[

@@ -38,14 +38,11 @@ class Picture:
         title: heading.
         words: what it shows, for readers who cannot see it.
         spec: Vega-Lite specification.
-        width, height: of the whole picture, about [px].
     """
 
     title: str
     words: str
     spec: dict[str, Any]
-    width: int
-    height: int
 
 
 @dataclass(frozen=True)

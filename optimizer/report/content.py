@@ -134,7 +134,7 @@ def _options(found: Shortlist) -> Table:
             f"price and lost energy [{currency}]",
         ),
         tuple(rows),
-        (0.045, 0.15, 0.245, 0.095, 0.085, 0.07, 0.1, 0.11, 0.1),
+        (0.035, 0.15, 0.325, 0.09, 0.07, 0.06, 0.08, 0.1, 0.09),
         frozenset(range(3, 9)),
         frozenset([found.rows.index(found.recommended)]),
     )

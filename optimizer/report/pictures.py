@@ -58,7 +58,7 @@ def front_picture(found: Shortlist) -> Picture:
     base = alt.Chart(alt.Data(values=picked)).encode(x=x, y=y)
     rings = base.mark_circle(size=210, fill=PAPER, stroke=INK, strokeWidth=1.4, opacity=1.0)
     numbers = base.mark_text(fontSize=11, fontWeight=600, color=INK, dy=0.5).encode(text="number:N")
-    chart = alt.layer(dots, rings, numbers).properties(width=WIDTH, height=HEIGHT)
+    chart = alt.LayerChart(layer=[dots, rings, numbers], width=WIDTH, height=HEIGHT)
     words = f"{across.title} over {upwards.title} of {len(front)} designs, the options numbered"
     return _picture("The front and the options", words, chart, found)
 
@@ -139,12 +139,12 @@ def _bars(
         .mark_text(dy=-7, color=INK)
         .encode(x=x, y=alt.Y("amount:Q"), text="told:N")
     )
-    return alt.layer(bars, above).properties(width=WIDTH, height=HEIGHT)
+    return alt.LayerChart(layer=[bars, above], width=WIDTH, height=HEIGHT)
 
 
 def _picture(title: str, words: str, chart: alt.LayerChart, found: Shortlist) -> Picture:
-    full = chart.properties(config=configuration() | {"font": PICTURE_FONT}, padding=6)
-    return Picture(title, words, full.to_dict(), WIDTH + 70, HEIGHT + 95)
+    chart.config, chart.padding = configuration() | {"font": PICTURE_FONT}, 6
+    return Picture(title, words, chart.to_dict())
 
 
 def as_png(picture: Picture, scale: float = 2.5, plot: tuple[int, int] | None = None) -> bytes:

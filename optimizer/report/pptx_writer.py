@@ -24,8 +24,10 @@ TITLE_ONLY = 5
 MARKED, PLAIN, RULE = "#eef1ea", "#ffffff", "#e1e3dd"
 LETTER = 0.47
 """Mean width of a letter over its size, about: says how many lines a cell takes."""
-LEADING, INSET = 1.22, 0.03
+LEADING, INSET, BOLD = 1.22, 0.03, 1.1
 TABLE_TOP = 0.95
+LEAST_CHARTS = 1.8
+"""Height below which the charts get a slide of their own [in]."""
 PLOT = (385, 135)
 """Width and height of the plots on the slide for the decision [px]: their words stay readable there."""
 SIZES = (10.0, 9.5, 9.0, 8.5, 8.0)
@@ -63,7 +65,10 @@ def _decision(show: Any, content: Report) -> None:
     warned = [("Cautions", 9.0, True, ALERT), *((text, 8.0, False, INK) for text in content.cautions)]
     half = 0.5 * ROOM - 0.1
     floor = HEIGHT - 0.28 - max(_height(ground, half), _height(warned, half))
-    _pictures(slide, content.pictures, y, floor - y)
+    if floor - y >= LEAST_CHARTS:
+        _pictures(slide, content.pictures, y, floor - y, PLOT)
+    else:
+        _pictures(_slide(show, content.title, "The options in charts"), content.pictures, 1.2, 4.0, None)
     _words(slide, ground, (EDGE, floor, half))
     _words(slide, warned, (EDGE + half + 0.2, floor, half))
     _foot(slide, content)
@@ -132,7 +137,9 @@ def _no_margins(frame: Any, edge: float = 0.0) -> None:
         setattr(frame, name, Inches(edge))
 
 
-def _pictures(slide: Any, pictures: tuple[Picture, ...], top: float, height: float) -> None:
+def _pictures(
+    slide: Any, pictures: tuple[Picture, ...], top: float, height: float, plot: tuple[int, int] | None
+) -> None:
     """Charts in a row, each under its title, as large as the height allows."""
     step = ROOM / len(pictures)
     for place, picture in enumerate(pictures):
@@ -140,7 +147,7 @@ def _pictures(slide: Any, pictures: tuple[Picture, ...], top: float, height: flo
         _words(slide, [(picture.title, 11.0, True, INK)], (left, top, step))
         size = {"height": Inches(height - 0.3)}
         shape = slide.shapes.add_picture(
-            BytesIO(as_png(picture, 3.0, PLOT)), Inches(left), Inches(top + 0.25), **size
+            BytesIO(as_png(picture, 3.0, plot)), Inches(left), Inches(top + 0.25), **size
         )
         if shape.width > Inches(step - 0.1):
             shape.height = Emu(int(shape.height * Inches(step - 0.1) / shape.width))
@@ -183,8 +190,9 @@ def _pages(table: Table, size: float) -> list[list[tuple[str, ...]]]:
     return pages
 
 
-def _row_height(cells: tuple[str, ...], table: Table, size: float, width: float) -> float:
-    lines = max(_lines(text, size, share * width) for text, share in zip(cells, table.shares, strict=True))
+def _row_height(cells: tuple[str, ...], table: Table, size: float, width: float, bold: bool = False) -> float:
+    letters = BOLD * size if bold else size
+    lines = max(_lines(text, letters, share * width) for text, share in zip(cells, table.shares, strict=True))
     return lines * LEADING * size / 72.0 + 2.0 * INSET
 
 
@@ -199,7 +207,10 @@ def _table(
     """A native table at (left, top, width) [in]; its height [in]."""
     left, top, width = place
     cells = [table.columns, *rows]
-    heights = [_row_height(row, table, size, width) for row in cells]
+    heights = [
+        _row_height(row, table, size, width, bold=place_in - 1 in strong)
+        for place_in, row in enumerate(cells)
+    ]
     shape = slide.shapes.add_table(
         len(cells), len(table.columns), Inches(left), Inches(top), Inches(width), Inches(sum(heights))
     )

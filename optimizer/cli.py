@@ -7,6 +7,7 @@ Heavy imports happen inside the commands, so that `--help` answers at once.
 from __future__ import annotations
 
 import sys
+from enum import StrEnum
 from pathlib import Path
 from typing import Annotated
 
@@ -22,6 +23,13 @@ app = typer.Typer(
     help="Pareto fronts of losses, volume, price and distortion for DC-AC inverters, before any layout.",
     epilog="Early-concept figures. A dc link stores lethal energy; standards and licensed practice decide.",
 )
+
+
+class ReportFormat(StrEnum):
+    """Formats of a report."""
+
+    HTML, PDF, PPTX = "html", "pdf", "pptx"
+
 
 RunFolder = Annotated[Path, typer.Argument(help="Run folder that a search has written.", show_default=False)]
 Weights = Annotated[
@@ -192,6 +200,62 @@ def shortlist(
         typer.echo(as_json(chosen), nl=False)
     else:
         print_shortlist(chosen)
+
+
+@app.command(epilog='Example: wattfront report "runs/rooftop 5 kW" --format pdf --out for_the_board')
+def report(
+    run: RunFolder,
+    kinds: Annotated[
+        list[ReportFormat] | None,
+        typer.Option("--format", help="Again for a second one; default all three.", show_default=False),
+    ] = None,
+    out: Annotated[
+        Path | None, typer.Option(help="Folder for the report; default RUN/report.", show_default=False)
+    ] = None,
+    weights: Weights = None,
+) -> None:
+    """Write a run's report: one page for a decision, an appendix for engineers."""
+    from optimizer.decision import shortlist as picked
+    from optimizer.decision.weights import read_weights
+    from optimizer.report import report as content_of
+    from optimizer.report.writing import FOLDER, check_libraries, write_report
+    from optimizer.stored_run import read_run
+
+    formats = [kind.value for kind in kinds or ReportFormat]
+    check_libraries(formats)
+    asked = read_weights(weights) if weights is not None else None
+    found = read_run(run)
+    content = content_of(found, picked(found.study, found.table, found.margins, asked))
+    for path in write_report(content, out or run / FOLDER, formats):
+        typer.echo(f"Wrote {path}")
+
+
+@app.command(epilog="Example: wattfront compare runs/with_silicon runs/with_sic --out compared.html")
+def compare(
+    runs: Annotated[list[Path], typer.Argument(help="Run folders, two or more.", show_default=False)],
+    out: Annotated[
+        Path | None, typer.Option(help="Page to write (.html); default: only print.", show_default=False)
+    ] = None,
+    json: Annotated[bool, typer.Option("--json", help="JSON instead of text on standard output.")] = False,
+) -> None:
+    """Hold runs against the first: fronts on the same axes, what moved, what was changed."""
+    from optimizer.comparison import compare as compared
+    from optimizer.comparison.page import comparison_page
+    from optimizer.comparison.telling import as_json, check_page, print_comparison
+    from optimizer.run_folder import write_whole
+    from optimizer.stored_run import read_run
+
+    if out is not None:
+        check_page(out)
+    found = compared([read_run(run) for run in runs])
+    if out is not None:
+        write_whole(out, comparison_page(found))
+    if json:
+        typer.echo(as_json(found), nl=False)
+    else:
+        print_comparison(found)
+    if out is not None:
+        typer.echo(f"Wrote {out}", err=json)
 
 
 @app.command(epilog="Example: wattfront catalog --kind devices --files my_parts.toml")

@@ -122,7 +122,8 @@ def _recommendation(
     table: pd.DataFrame, picks: Mapping[str, tuple[str, int]], columns: list[str]
 ) -> tuple[int, str]:
     if WEIGHTED in picks:
-        return picks[WEIGHTED][1], "it is the best by the weights that were asked for"
+        rule, row = picks[WEIGHTED]
+        return row, f"it has the {rule}"
     row = recommended_row(table, [row for _, row in picks.values()], columns)
     return row, (
         "of the shortlist it has the least price and lost energy over the years of use; costs within "

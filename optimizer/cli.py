@@ -77,18 +77,37 @@ def search(
     resume: Annotated[
         bool, typer.Option("--resume", help="Go on with a search of this run that was killed.")
     ] = False,
+    cluster: Annotated[
+        str | None,
+        typer.Option(help="Address of a Dask scheduler to search on, tcp://host:port.", show_default=False),
+    ] = None,
     json: Annotated[
         bool, typer.Option("--json", help="Print the summary as JSON instead of a table.")
     ] = False,
 ) -> None:
-    """Search a study's inverter and write its run folder: fronts, margins, dashboard."""
+    """Search a study's inverter and write its run folder: fronts, margins, dashboard.
+
+    Lists in the study at keys that take one value make a batch: every combination is searched.
+    """
+    from optimizer.batch.cases import read_cases
+    from optimizer.batch.engine import engine_of
     from optimizer.progress import SearchBar
     from optimizer.run import run_search
-    from optimizer.study import Study
-    from optimizer.summary import print_summary
+    from optimizer.summary import print_batch, print_summary
 
-    asked = Study.read(study).with_effort(population, generations)
+    cases = [case.with_effort(population, generations) for case in read_cases(study)]
+    asked = cases[0].study
     folder = run or Path("runs") / asked.name
+    if cluster or len(cases) > 1:
+        from optimizer.batch.batch_run import run_batch
+        from optimizer.progress import BatchBar
+
+        with engine_of(cluster, workers) as engine, BatchBar(cases, hidden=json) as batch_bar:
+            found = run_batch(
+                cases, folder, engine, seed=seed, resume=resume, source=study, report=batch_bar.report
+            )
+        print_batch(found, as_json=json)
+        return
     with SearchBar(asked, hidden=json) as bar:
         outcome = run_search(
             asked, folder, seed=seed, workers=workers, resume=resume, report=bar.report, stage=bar.stage

@@ -2,11 +2,13 @@
 
 from __future__ import annotations
 
+from collections.abc import Sequence
 from types import TracebackType
 
 from rich.console import Console
 from rich.progress import BarColumn, Progress, TaskID, TextColumn, TimeElapsedColumn, TimeRemainingColumn
 
+from optimizer.batch.cases import Case
 from optimizer.concept_search import Progress as ClassProgress
 from optimizer.screening import planned_evaluations
 from optimizer.study import Study
@@ -53,6 +55,34 @@ def _bar(count: str, hidden: bool) -> Progress:
         disable=hidden,
         transient=True,
     )
+
+
+class BatchBar:
+    """Shows a running batch on standard error; `report` feeds it.
+
+    Args:
+        cases: of the batch.
+        hidden: show nothing.
+    """
+
+    def __init__(self, cases: Sequence[Case], *, hidden: bool) -> None:
+        self.progress = _bar("{task.completed:,.0f}/{task.total:,.0f} concepts of all cases", hidden)
+        total = sum(len(case.study.concepts) for case in cases)
+        self.task: TaskID = self.progress.add_task("searching", total=total, note="")
+
+    def __enter__(self) -> BatchBar:
+        self.progress.start()
+        return self
+
+    def __exit__(
+        self, kind: type[BaseException] | None, trouble: BaseException | None, trace: TracebackType | None
+    ) -> None:
+        self.progress.stop()
+
+    def report(self, case: str, concept: str) -> None:
+        """Take in that a concept of a case is done."""
+        note = ": ".join(filter(None, (case, concept)))
+        self.progress.update(self.task, advance=1, note=note)
 
 
 class SearchBar:

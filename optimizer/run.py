@@ -79,30 +79,51 @@ def run_search(
     started = time.perf_counter()
     check_folder(folder)
     prepare(study)
-    unfinished, task = Unfinished.of(folder), task_of(study, seed, _version())
+    unfinished, task = Unfinished.of(folder), task_of(study, seed, version_of_program())
     if not (resume and unfinished.take_up(task)):
         unfinished.begin(task)
     result = search(study, seed=seed, workers=workers, report=report, unfinished=unfinished)
     if not any(len(found.points) for found in result.classes):
         unfinished.end()
         raise NothingFeasible(ruled_out(result))
-    searched = time.perf_counter()
+    outcome = write_result(result, folder, time.perf_counter() - started, stage)
+    unfinished.end()
+    return outcome
+
+
+def write_result(
+    result: SearchResult,
+    folder: Path,
+    seconds: float | None = None,
+    stage: Callable[[str], None] = lambda words: None,
+) -> Outcome:
+    """Write the run folder of a finished search, whole or not at all.
+
+    Args:
+        result: of a search with at least one feasible candidate.
+        folder: run folder to write.
+        seconds: that the search took; None for the sum over its populations [s].
+        stage: told what is being done.
+    """
+    started = time.perf_counter()
+    study = result.study
     stage("sorting fronts")
     fronts = front(result)
     evaluated = evaluated_table(result)
     stage("drawing")
     summary = summary_of(result, fronts)
     files = run_files(study, fronts, evaluated, summary)
-    ended = time.perf_counter()
+    in_models = sum(found.seconds["models"] for found in result.classes)
+    searched = in_models + sum(found.seconds["search"] for found in result.classes)
+    searched, output = searched if seconds is None else seconds, time.perf_counter() - started
     summary["seconds"] = {
-        "models": sum(found.seconds["models"] for found in result.classes),
-        "search": searched - started,
-        "output": ended - searched,
-        "total": ended - started,
+        "models": in_models,
+        "search": searched,
+        "output": output,
+        "total": searched + output,
     }
     stage("writing")
     kept = write_run(folder, files | {RUN_FILE: json_text(summary)})
-    unfinished.end()
     return Outcome(result, fronts, folder, kept, summary)
 
 
@@ -192,7 +213,7 @@ def summary_of(result: SearchResult, fronts: Front) -> dict[str, Any]:
             "hash": study.file_hash,
             "parts": [parts_copy(place, path) for place, path in enumerate(study.catalog_files)],
         },
-        "version": _version(),
+        "version": version_of_program(),
         "date": datetime.now().astimezone().isoformat(timespec="minutes"),
         "seed": result.seed,
         "population": study.search.population,
@@ -233,7 +254,8 @@ def summary_of(result: SearchResult, fronts: Front) -> dict[str, Any]:
     }
 
 
-def _version() -> str:
+def version_of_program() -> str:
+    """Version of this program as installed."""
     try:
         return version("wattfront")
     except PackageNotFoundError:

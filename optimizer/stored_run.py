@@ -88,6 +88,9 @@ def _summary(folder: Path) -> Mapping[str, Any]:
     if given != RUN_FORMAT:
         shown = "a run of an earlier version" if given is None else f"a run of format {given}"
         raise _trouble(path, shown, f"format {RUN_FORMAT}: search the study again with this version")
+    if "cases" in summary:
+        first = next(iter(summary["cases"].values()))
+        raise _trouble(folder, "a batch of cases", f"one of its runs, such as {folder / first}")
     return summary
 
 

@@ -142,8 +142,12 @@ class Study:
             InputError: with every problem of the file at once: file, key, what was given, what is expected.
         """
         path = Path(path)
-        raw = _read_bytes(path)
-        reading = Reading(path, _read_toml(path, raw), parts=parts)
+        return cls.of_bytes(path, read_bytes(path), parts)
+
+    @classmethod
+    def of_bytes(cls, path: Path, raw: bytes, parts: Sequence[Path] | None = None) -> Study:
+        """Return the study of a file's bytes; arguments and errors as in `read`."""
+        reading = Reading(path, read_toml(path, raw), parts=parts)
         content = read_content(reading)
         check_content(reading, content)
         reading.raise_problems()
@@ -213,7 +217,8 @@ def _known(name: str, known: Iterable[str]) -> str:
     return nearest(name, listed) or (f": {one_of(listed)}" if listed else ", which has none")
 
 
-def _read_bytes(path: Path) -> bytes:
+def read_bytes(path: Path) -> bytes:
+    """Return a study file's bytes; InputError where there is no such file or it is none."""
     expected = 'a study file (TOML text; "wattfront new" writes one to start from)'
     try:
         if path.is_dir():
@@ -227,7 +232,8 @@ def _read_bytes(path: Path) -> bytes:
         raise _whole_file(path, f"a file that cannot be read ({trouble.strerror})", expected) from trouble
 
 
-def _read_toml(path: Path, raw: bytes) -> dict[str, Any]:
+def read_toml(path: Path, raw: bytes) -> dict[str, Any]:
+    """Return what a study file's bytes hold; InputError where they are no TOML."""
     try:
         text = raw.decode("utf-8-sig")
     except UnicodeDecodeError as trouble:

@@ -214,6 +214,13 @@ SEARCH = (
     Key("ranges", SubTable(), None),
 )
 CATALOG = (Key("files", Several(Text()), ()),)
+LIST_KEYS = frozenset(
+    key.name
+    for table in (CUSTOM_WEIGHTING, BRIDGE, FILTER, MINIMISE, SEARCH, CATALOG)
+    for key in table
+    if isinstance(key.kind, Several)
+)
+"""Keys whose value is a list; a list at any other key makes a batch of cases."""
 _RULES_THAT_MAY_BE_ZERO = {"modulation_reserve", "dead_time_compensated", "fan_load_start"}
 _RULES_UP_TO_ONE = {
     "modulation_reserve",

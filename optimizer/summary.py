@@ -9,6 +9,7 @@ from rich.console import Console
 from rich.table import Table
 
 from optimizer.audited_run import Audited, audit_entries
+from optimizer.batch.batch_run import BatchOutcome
 from optimizer.objectives import OBJECTIVES
 from optimizer.run import Outcome
 
@@ -91,5 +92,38 @@ def print_audit(audited: Audited, *, as_json: bool) -> None:
     console.print(table)
     console.print(
         "A beaten design has a better one somewhere near it; the share says how much that matters.",
+        soft_wrap=True,
+    )
+
+
+def print_batch(found: BatchOutcome, *, as_json: bool) -> None:
+    """Print a finished batch: a row a case and concept, or JSON."""
+    if as_json:
+        rows = json.loads(found.cases.to_json(orient="records"))
+        print(json.dumps({"folder": str(found.folder), "cases": rows, "ruled_out": dict(found.ruled_out)}))
+        return
+    console = Console()
+    best = [name for name in found.cases.columns if name.startswith("least_")]
+    columns = {OBJECTIVES[name].column: OBJECTIVES[name] for name in OBJECTIVES}
+    table = Table(title="Best of each case", box=SIMPLE_HEAD, padding=(0, 1, 0, 0))
+    for heading in ("case", "concept", "designs"):
+        table.add_column(heading, justify="right" if heading == "designs" else "left")
+    for name in best:
+        objective = columns[name.removeprefix("least_")]
+        table.add_column(f"least {objective.title}\n\\[{objective.unit}]", justify="right")
+    last = None
+    for row in found.cases.to_dict("records"):
+        values = ["-" if row[name] != row[name] else f"{row[name]:.3g}" for name in best]
+        case, last = "" if row["case"] == last else str(row["case"]), row["case"]
+        table.add_row(case, str(row["concept"]), str(row["designs"]), *values)
+    console.print(table)
+    for case, reasons in found.ruled_out.items():
+        told = "; ".join(f"{name}: {miss}" for name, _, miss in reasons)
+        console.print(f"{case}: nothing feasible. {told}", soft_wrap=True)
+    count = found.cases.evaluations.sum()
+    console.print(f"{count:,} evaluations in {found.seconds:.1f} s")
+    console.print(f"Dashboard: {found.folder / 'dashboard.html'}", soft_wrap=True)
+    console.print(
+        "[dim]Early-concept figures; lethal dc-link energy; standards and licensed practice decide.[/dim]",
         soft_wrap=True,
     )

@@ -66,7 +66,7 @@ def batch_chart(found: Sequence[Case], front: pd.DataFrame) -> alt.HConcatChart:
     ].apply(_thinned)
     shown = shown.assign(switching_frequency_khz=shown.switching_frequency_hz / 1e3)
     data = alt.Data(values=shown.round(5).to_dict("records"))
-    case = alt.param(name="case", value=ALL)
+    case = alt.param(name="picked_case", value=ALL)
     colour, shape = class_scales(concepts)
     of_case = f"{case.name} == '{ALL}' || datum.case == {case.name}"
 

@@ -2,7 +2,9 @@
 
 import json
 import os
+import shutil
 import signal
+import subprocess
 import threading
 
 import pandas as pd
@@ -138,3 +140,27 @@ def test_an_address_where_nobody_listens_is_told():
     pytest.importorskip("distributed")
     with pytest.raises(InputError, match="--cluster: given 'nowhere', expected the address"):
         engine_of("nowhere", None).__enter__()
+
+
+def test_the_page_draws_in_a_browser_and_its_selector_works(local, tmp_path):
+    browser = shutil.which("chromium") or shutil.which("chromium-browser")
+    if browser is None:
+        pytest.skip("no Chromium on this machine")
+    page = (local.folder / "dashboard.html").read_text(encoding="utf-8")
+    told = "choice.dispatchEvent(new Event('change')); document.body.dataset.own = own.getAttribute('href');"
+    page = page.replace(
+        'document.body.dataset.ready = "yes";',
+        f'document.body.dataset.ready = "yes"; choice.value = names[1]; {told}',
+    )
+    (tmp_path / "page.html").write_text(page, encoding="utf-8")
+    done = subprocess.run(
+        [
+            browser, "--headless", "--no-sandbox", "--disable-gpu", "--enable-logging=stderr",
+            "--virtual-time-budget=15000", "--dump-dom", (tmp_path / "page.html").as_uri(),
+        ],
+        capture_output=True, text=True, check=True, timeout=120,
+    )  # fmt: skip
+    assert 'data-ready="yes"' in done.stdout
+    assert 'data-own="cases/' in done.stdout
+    assert "mark-symbol" in done.stdout
+    assert "CONSOLE" not in done.stderr

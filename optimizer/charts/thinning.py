@@ -90,5 +90,6 @@ def balanced_row(table: pd.DataFrame, columns: Sequence[str]) -> int:
         columns: what is to be small.
     """
     rows = np.flatnonzero(table["overall_front"].to_numpy(dtype=bool))
+    rows = rows if len(rows) else np.arange(len(table))  # a part of a front, drawn alone
     points = unit_range(table[list(columns)].to_numpy(dtype=float)[rows])
     return int(rows[np.square(points).sum(-1).argmin()])

@@ -125,7 +125,7 @@ def test_a_row_of_the_table_is_picked(told):
 
 
 def test_another_axis_renames_the_title_and_lets_go_of_the_group(told):
-    assert told["other_axis"]["axis"] == ["price [currency]"]
+    assert told["other_axis"]["axis"] == ["price [currency units]"]
     assert told["other_axis"]["group"] == {}
     assert told["other_axis"]["thin"] == 0
 

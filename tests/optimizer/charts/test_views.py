@@ -12,6 +12,7 @@ from optimizer.charts import dashboard
 from optimizer.charts.content import content
 from optimizer.charts.selections import DESIGNS
 from optimizer.charts.views import linked_views
+from optimizer.objectives import OBJECTIVES
 
 VIEWS = (
     "front_points", "front_reach", "front_picked", "least_loss_weighted_percent_lines", "least_volume_l_lines",
@@ -93,13 +94,14 @@ def test_selections_are_bound_to_one_layer_each(spec):
     assert selections["pointed"]["select"]["nearest"]
 
 
-def test_axes_offer_the_objectives_mass_and_distortion(spec, drawn):
+def test_axes_offer_all_objectives_the_study_s_first(spec, drawn):
     offered = {
         entry["name"]: entry["bind"]["options"]
         for entry in spec["params"]
         if isinstance(entry.get("bind"), dict)
     }
-    columns = ["loss_weighted_percent", "volume_l", "price", "mass_kg", "distortion_percent"]
+    columns = [entry.column for entry in OBJECTIVES.values()]
+    assert columns[:3] == ["loss_weighted_percent", "volume_l", "price"]
     assert offered == {"x_axis": columns, "y_axis": columns, "point_size": [*columns, "equal"]}
     values = {entry["name"]: entry.get("value") for entry in spec["params"]}
     assert (values["x_axis"], values["y_axis"], values["point_size"]) == tuple(columns[:3])

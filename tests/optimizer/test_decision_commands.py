@@ -39,9 +39,15 @@ def test_shortlist_as_files(stored, tmp_path):
 
 BAD = {
     "unknown weight": (("--weights", "bulk=2"), '--weights: given "bulk", expected the name of an objective'),
-    "another ending": (("--out", "shortlist.xlsx"), "--out: given shortlist.xlsx, expected a file ending in .csv or .json"),
-    "no folder": (("--out", "no/shortlist.csv"), "--out: given no/shortlist.csv, expected a file in an existing folder"),
-}  # fmt: skip
+    "another ending": (
+        ("--out", "shortlist.xlsx"),
+        "--out: given shortlist.xlsx, expected a file ending in .csv or .json",
+    ),
+    "no folder": (
+        ("--out", "no/shortlist.csv"),
+        "--out: given no/shortlist.csv, expected a file in an existing folder",
+    ),
+}
 
 
 @pytest.mark.parametrize("kind", BAD)

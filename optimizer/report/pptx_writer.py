@@ -22,7 +22,7 @@ ROOM = WIDTH - 2.0 * EDGE
 TITLE_ONLY = 5
 """Layout of the library's own template that has a title and nothing else."""
 MARKED, PLAIN, RULE = "#eef1ea", "#ffffff", "#e1e3dd"
-LETTER = 0.47
+LETTER = 0.49
 """Mean width of a letter over its size, about: says how many lines a cell takes."""
 LEADING, INSET, BOLD = 1.22, 0.03, 1.1
 TABLE_TOP = 0.95
@@ -60,7 +60,7 @@ def _decision(show: Any, content: Report) -> None:
     recommended = [(f"Recommended: {head}", 12.0, True, INK), (reason, 9.5, False, INK)]
     y += _words(slide, recommended, (EDGE, y, ROOM), ground=MARKED) + 0.06
     place = (EDGE, y, ROOM)
-    y += _table(slide, content.options, list(content.options.rows), place, 9.0, content.options.strong) + 0.08
+    y += _table(slide, content.options, list(content.options.rows), place, 9.0, content.options.strong) + 0.12
     ground = [("Assumptions", 9.0, True, INK), *((text, 8.0, False, INK) for text in content.assumptions)]
     warned = [("Cautions", 9.0, True, ALERT), *((text, 8.0, False, INK) for text in content.cautions)]
     half = 0.5 * ROOM - 0.1

@@ -33,6 +33,12 @@ def test_shortlist_as_files(stored, tmp_path):
     assert done.returncode == 0, done.stderr
     content, table = json.loads(done.stdout), pd.read_csv(tmp_path / "shortlist.csv")
     assert [entry["role"] for entry in content["shortlist"]] == list(table.role)
+    study = stored.folder / "study.toml"
+    again = wattfront("evaluate", study, "--designs", "shortlist.csv", "--out", "again.csv", cwd=tmp_path)
+    assert again.returncode == 0, again.stderr
+    assert pd.read_csv(tmp_path / "again.csv").cost_of_ownership.tolist() == pytest.approx(
+        table.cost_of_ownership.tolist(), rel=1e-5
+    )
     assert wattfront("shortlist", stored.folder, "--out", "shortlist.json", cwd=tmp_path).returncode == 0
     assert json.loads((tmp_path / "shortlist.json").read_text()) == content
 

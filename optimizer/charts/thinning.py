@@ -82,8 +82,10 @@ def balanced_row(table: pd.DataFrame, columns: Sequence[str]) -> int:
     """Position of the overall-front design nearest to the ideal point: the least of every column at once.
 
     Columns are scaled to the overall front's own range, its ideal point at 0 and its nadir at 1; constant
-    ones do not count; where no row is on the overall front, all are taken. Source: compromise programming, Zeleny (1973); Miettinen, Nonlinear Multiobjective
-    Optimization (1999), ch. 2.
+    ones do not count. Where no row is on the overall front, all are taken.
+
+    Source: compromise programming, Zeleny (1973); Miettinen, Nonlinear Multiobjective Optimization (1999),
+        ch. 2.
 
     Args:
         table: front, with `overall_front`.

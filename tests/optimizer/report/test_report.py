@@ -120,6 +120,19 @@ def test_no_name_of_the_program_is_told(content):
         assert text != "None"
 
 
+def test_one_design_is_enough(stored):
+    row = stored.table.index[stored.table.overall_front][0]
+    run = replace(
+        stored, table=stored.table.loc[[row]].reset_index(drop=True), margins=stored.margins.loc[[row]]
+    )
+    told = report(run, shortlist(run.study, run.table, run.margins))
+    assert len(told.options.rows) == 1
+    assert told.gains == ()
+    assert pdf_file(told).startswith(b"%PDF")
+    assert pptx_file(told)
+    assert read(html_page(told))[0].tags.count("img") == 3
+
+
 def test_tables_are_whole(content):
     for section in content.sections:
         for table in section.tables:

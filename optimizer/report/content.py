@@ -69,7 +69,7 @@ def report(run: StoredRun, found: Shortlist) -> Report:
     """
     return Report(
         title=run.study.name,
-        subtitle=run.study.description,
+        subtitle=" ".join(run.study.description.split()),
         question=_question(run),
         recommendation=_recommendation(found),
         options=_options(found),

@@ -4,6 +4,7 @@ from __future__ import annotations
 
 from io import BytesIO
 from math import ceil
+from textwrap import shorten
 from typing import Any
 
 from pptx import Presentation
@@ -24,6 +25,8 @@ TITLE_ONLY = 5
 MARKED, PLAIN, RULE = "#eef1ea", "#ffffff", "#e1e3dd"
 LETTER = 0.49
 """Mean width of a letter over its size, about: says how many lines a cell takes."""
+LONGEST_SUBTITLE = 160
+"""Letters of a study's description that fit on one line under the title."""
 LEADING, INSET, BOLD = 1.22, 0.03, 1.1
 TABLE_TOP = 0.95
 LEAST_CHARTS = 1.8
@@ -53,7 +56,7 @@ def pptx_file(content: Report) -> bytes:
 
 def _decision(show: Any, content: Report) -> None:
     """The slide for the decision: question, recommendation, options, charts, assumptions, cautions."""
-    slide = _slide(show, content.title, content.subtitle)
+    slide = _slide(show, content.title, shorten(content.subtitle, LONGEST_SUBTITLE, placeholder=" ..."))
     head, reason = content.recommendation
     y = 0.8
     y += _words(slide, [(content.question, 10.5, False, INK)], (EDGE, y, ROOM))

@@ -12,10 +12,12 @@ from pptx import Presentation
 from pptx.util import Emu
 
 from models.catalog import load_catalog
+from models.ownership import EnergyTerms
 from models.specification import DesignRules
 from optimizer.decision import shortlist
 from optimizer.errors import InputError
 from optimizer.report import report, writing
+from optimizer.report.backgrounds import energy_words
 from optimizer.report.blocks import unbroken
 from optimizer.report.designs import KINDS, components
 from optimizer.report.fonts import latin
@@ -131,6 +133,21 @@ def test_one_design_is_enough(stored):
     assert pdf_file(told).startswith(b"%PDF")
     assert pptx_file(told)
     assert read(html_page(told))[0].tags.count("img") == 3
+
+
+def test_a_long_description_overflows_nothing(stored):
+    study = replace(stored.study, description="A site.\n" * 200)
+    run = replace(stored, study=study)
+    told = report(run, shortlist(study, run.table, run.margins))
+    first = Presentation(io.BytesIO(pptx_file(told))).slides[0]
+    assert max(len(shape.text_frame.text) for shape in first.shapes if shape.has_text_frame) < 700
+    assert pdf_file(told).startswith(b"%PDF")
+
+
+@pytest.mark.parametrize(("price", "words"), [(0.2, "0.20 currency"), (0.085, "0.085 currency")])
+def test_no_digit_of_the_energy_price_is_lost(stored, price, words):
+    spec = replace(stored.study.specification, energy=EnergyTerms(price_per_kwh=price))
+    assert words in energy_words(replace(stored.study, specification=spec))
 
 
 def test_tables_are_whole(content):

@@ -47,9 +47,10 @@ def roll_up(
     losses = _losses(spec, catalog, points, found)
     level = points.load_level[points.loads]
     power = level * spec.apparent_power_va * abs(spec.power_factor)
-    efficiency = power / (power + sum(losses.values()))
+    whole: Array = np.asarray(sum(losses.values()))
+    efficiency = power / (power + whole)
     volumes, masses = _volumes(spec, found), _masses(spec, found)
-    lost = lost_energy(np.sum(list(losses.values()), axis=0), level, spec.weights, spec.energy)
+    lost = lost_energy(whole, level, spec.weights, spec.energy)
     return Evaluation(
         load_level=level,
         rated=points.rated,

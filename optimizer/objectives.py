@@ -137,7 +137,7 @@ OBJECTIVES = {
         Objective(
             "junction temperature rise",
             "junction_rise_percent",
-            "junction temperature rise over the allowed one",
+            "junction temperature rise used",
             "%",
             100.0,
             lambda result: 100.0 * _junction_rise(result),

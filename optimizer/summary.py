@@ -34,6 +34,7 @@ def print_summary(outcome: Outcome, *, as_json: bool) -> None:
         f"{outcome.result.evaluations:,} evaluations in {seconds['total']:.1f} s, seed {outcome.result.seed}"
     )
     console.print(f"Dashboard: {outcome.folder / 'dashboard.html'}", soft_wrap=True)
+    console.print(f'Next: wattfront shortlist "{outcome.folder}", or report instead', soft_wrap=True)
     console.print(
         "[dim]Early-concept figures; lethal dc-link energy; standards and licensed practice decide.[/dim]",
         soft_wrap=True,

@@ -5,12 +5,16 @@ from __future__ import annotations
 from pathlib import Path
 
 import pytest
+from hypothesis import settings
 
 from optimizer.populations import SearchResult, search
 from optimizer.prepared import prepared_inverter
 from optimizer.run import run_search
 from optimizer.stored_run import StoredRun, read_run
 from optimizer.study import Study
+
+settings.register_profile("untimed", deadline=None)  # speed is never tested by time
+settings.load_profile("untimed")
 
 STUDIES = Path(__file__).parents[1] / "studies"
 

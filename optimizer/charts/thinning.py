@@ -82,14 +82,16 @@ def balanced_row(table: pd.DataFrame, columns: Sequence[str]) -> int:
     """Position of the overall-front design nearest to the ideal point: the least of every column at once.
 
     Columns are scaled to the overall front's own range, its ideal point at 0 and its nadir at 1; constant
-    ones do not count. Source: compromise programming, Zeleny (1973); Miettinen, Nonlinear Multiobjective
-    Optimization (1999), ch. 2.
+    ones do not count. Where no row is on the overall front, all are taken.
+
+    Source: compromise programming, Zeleny (1973); Miettinen, Nonlinear Multiobjective Optimization (1999),
+        ch. 2.
 
     Args:
         table: front, with `overall_front`.
         columns: what is to be small.
     """
-    rows = np.flatnonzero(table["overall_front"].to_numpy(dtype=bool))
-    rows = rows if len(rows) else np.arange(len(table))  # a part of a front, drawn alone
+    eligible = table["overall_front"].to_numpy(dtype=bool)
+    rows = np.flatnonzero(eligible if eligible.any() else np.ones(len(table), dtype=bool))
     points = unit_range(table[list(columns)].to_numpy(dtype=float)[rows])
     return int(rows[np.square(points).sum(-1).argmin()])

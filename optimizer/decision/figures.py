@@ -77,10 +77,10 @@ PRICE = Told("price", "price", 3, "costs {} less", "costs {} more", 0.3)
 COST = Told(
     "cost of ownership", "price and lost energy", 3, "saves {} over the years", "costs {} more in all", 0.25
 )
-DISTORTION = Told("distortion", "distortion", 2, "distorts {} less", "distorts {} more", 0.3, fixed=1)
+DISTORTION = Told("distortion", "distortion", 2, "distorts {} less", "distorts {} more", 0.3)
 JUNCTION = Told(
     "junction temperature rise",
-    "junction temperature rise over the allowed one",
+    "junction temperature rise used",
     2,
     "heats its junctions {} less",
     "heats its junctions {} more",

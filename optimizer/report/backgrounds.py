@@ -26,10 +26,15 @@ def energy_words(study: Study) -> str:
     """On what terms lost energy is counted, in words."""
     terms = study.specification.energy
     return (
-        f"{terms.years:g} years, {figure(terms.hours_a_year, 4)} h a year, {terms.price_per_kwh:.2f} "
+        f"{terms.years:g} years, {figure(terms.hours_a_year, 4)} h a year, {_price(terms.price_per_kwh)} "
         f"{study.currency} a kilowatt-hour, {100.0 * terms.discount_rate:g} % interest (annuity factor "
         f"{terms.annuity_factor:.1f}), load weights as {terms.weights_are}"
     )
+
+
+def _price(value: float) -> str:
+    """A price with two digits behind the point, or as many as it has."""
+    return f"{value:.2f}" if round(value, 2) == value else f"{value:g}"
 
 
 def specification_table(study: Study) -> Table:

@@ -6,7 +6,7 @@ from dataclasses import dataclass
 
 from optimizer.charts.task import task_words
 from optimizer.charts.words import CAUTION, CAUTIONS
-from optimizer.decision.figures import COST, LOSS, MASS, PRICE, VOLUME, figure
+from optimizer.decision.figures import ALWAYS, COST, LOSS, MASS, PRICE, VOLUME, Told, figure, told_of
 from optimizer.decision.shortlist import Shortlist
 from optimizer.decision.wording import beside, what_it_is
 from optimizer.report.backgrounds import (
@@ -22,6 +22,8 @@ from optimizer.report.pictures import pictures
 from optimizer.stored_run import StoredRun
 
 GAINED = (LOSS, VOLUME, PRICE, COST)
+MOST_FURTHER, FURTHER_SHARE = 2, 0.1
+"""Further quantities in the options' table at most, and of its width what each takes."""
 LETHAL = (
     "The dc link and the filter store lethal energy, also after the supply is switched off. Standards "
     "(IEC 62109, IEC 62477-1 and those of the application) and licensed practice decide what may be built, "
@@ -67,7 +69,7 @@ def report(run: StoredRun, found: Shortlist) -> Report:
     """
     return Report(
         title=run.study.name,
-        subtitle=run.study.description,
+        subtitle=" ".join(run.study.description.split()),
         question=_question(run),
         recommendation=_recommendation(found),
         options=_options(found),
@@ -107,6 +109,8 @@ def _recommendation(found: Shortlist) -> tuple[str, str]:
 def _options(found: Shortlist) -> Table:
     currency = found.study.currency
     years = f"{found.study.specification.energy.years:g} years"
+    further = _further(found)[:MOST_FURTHER]
+    concept = 0.325 - FURTHER_SHARE * len(further)
     rows = []
     for place, row in enumerate(found.rows, start=1):
         design = found.design(row)
@@ -119,6 +123,7 @@ def _options(found: Shortlist) -> Table:
                 *(entry.number(float(design[entry.column])) for entry in (VOLUME, MASS, PRICE)),
                 figure(float(design["lost_energy_cost"]), 2),
                 COST.number(float(design[COST.column])),
+                *(entry.number(float(design[entry.column])) for entry in further),
             )
         )
     return Table(
@@ -132,24 +137,29 @@ def _options(found: Shortlist) -> Table:
             f"price [{currency}]",
             f"lost energy, {years} [{currency}]",
             f"price and lost energy [{currency}]",
+            *(f"{entry.title} [{entry.unit(currency)}]" for entry in further),
         ),
         tuple(rows),
-        (0.035, 0.15, 0.325, 0.09, 0.07, 0.06, 0.08, 0.1, 0.09),
-        frozenset(range(3, 9)),
+        (0.035, 0.15, concept, 0.09, 0.07, 0.06, 0.08, 0.1, 0.09, *([FURTHER_SHARE] * len(further))),
+        frozenset(range(3, 9 + len(further))),
         frozenset([found.rows.index(found.recommended)]),
     )
+
+
+def _further(found: Shortlist) -> tuple[Told, ...]:
+    """What the study minimises beside the usual quantities."""
+    return tuple(entry for entry in told_of(found.study.objectives) if entry not in ALWAYS)
 
 
 def _gains(found: Shortlist) -> tuple[tuple[str, str], ...]:
     """What every option but the balanced one buys, and for what."""
     balanced = found.entries[0].row
     number = found.rows.index(balanced) + 1
+    told = (*GAINED, *_further(found))
     return tuple(
         (
             str(place),
-            beside(
-                found.design(row), found.design(balanced), GAINED, found.study.currency, f"option {number}"
-            ),
+            beside(found.design(row), found.design(balanced), told, found.study.currency, f"option {number}"),
         )
         for place, row in enumerate(found.rows, start=1)
         if row != balanced

@@ -36,12 +36,14 @@ def pdf_fonts() -> tuple[str, str, Callable[[str], str]]:
 
 def latin(text: str) -> str:
     """A text in the letters of the built-in fonts; what they lack becomes its nearest, or a question mark."""
-    fitting = text.replace("Ω", "ohm").encode("cp1252", "ignore").decode("cp1252")
-    if fitting == text:
-        return text
-    plain = unicodedata.normalize("NFKD", text.replace("Ω", "ohm"))
-    letters = "".join(letter for letter in plain if not unicodedata.combining(letter))
-    return letters.encode("cp1252", "replace").decode("cp1252")
+    return "".join(map(_latin_letter, text.replace("Ω", "ohm")))
+
+
+def _latin_letter(letter: str) -> str:
+    for candidate in (letter, unicodedata.normalize("NFKD", letter)[0], "?"):
+        if candidate.encode("cp1252", "ignore"):
+            return candidate
+    return "?"
 
 
 def _find(name: str) -> Path | None:

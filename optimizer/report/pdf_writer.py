@@ -114,7 +114,7 @@ def _decision(content: Report) -> list[Flowable]:
 
 
 def _boxed(inside: list[Flowable], edge: str, ground: str | None = None) -> Grid:
-    box = Grid([[inside]], colWidths=[WIDTH])
+    box = Grid([[inside]], colWidths=[WIDTH], hAlign="LEFT")
     style: list[tuple[Any, ...]] = [
         ("LINEBEFORE", (0, 0), (0, -1), 2.0, HexColor(edge)),
         ("LEFTPADDING", (0, 0), (-1, -1), 8),
@@ -135,7 +135,7 @@ def _drawn(picture: Picture) -> list[Flowable]:
 
 
 def _side_by_side(cells: list[list[Flowable]]) -> Grid:
-    grid = Grid([cells], colWidths=[WIDTH / len(cells)] * len(cells))
+    grid = Grid([cells], colWidths=[WIDTH / len(cells)] * len(cells), hAlign="LEFT")
     edges = (("LEFTPADDING", 0), ("RIGHTPADDING", 4), ("TOPPADDING", 0), ("BOTTOMPADDING", 0))
     grid.setStyle(
         TableStyle(
@@ -151,7 +151,7 @@ def _grid(table: Table, size: float) -> LongTable:
     cells += [
         _cells(row, table, size, INK, bold=place in table.strong) for place, row in enumerate(table.rows)
     ]
-    grid = LongTable(cells, colWidths=[share * WIDTH for share in table.shares], repeatRows=1)
+    grid = LongTable(cells, colWidths=[share * WIDTH for share in table.shares], repeatRows=1, hAlign="LEFT")
     style: list[tuple[Any, ...]] = [
         ("VALIGN", (0, 0), (-1, -1), "TOP"),
         ("VALIGN", (0, 0), (-1, 0), "BOTTOM"),

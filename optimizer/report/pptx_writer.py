@@ -4,6 +4,7 @@ from __future__ import annotations
 
 from io import BytesIO
 from math import ceil
+from textwrap import shorten
 from typing import Any
 
 from pptx import Presentation
@@ -22,8 +23,10 @@ ROOM = WIDTH - 2.0 * EDGE
 TITLE_ONLY = 5
 """Layout of the library's own template that has a title and nothing else."""
 MARKED, PLAIN, RULE = "#eef1ea", "#ffffff", "#e1e3dd"
-LETTER = 0.47
+LETTER = 0.49
 """Mean width of a letter over its size, about: says how many lines a cell takes."""
+LONGEST_SUBTITLE = 160
+"""Letters of a study's description that fit on one line under the title."""
 LEADING, INSET, BOLD = 1.22, 0.03, 1.1
 TABLE_TOP = 0.95
 LEAST_CHARTS = 1.8
@@ -53,14 +56,14 @@ def pptx_file(content: Report) -> bytes:
 
 def _decision(show: Any, content: Report) -> None:
     """The slide for the decision: question, recommendation, options, charts, assumptions, cautions."""
-    slide = _slide(show, content.title, content.subtitle)
+    slide = _slide(show, content.title, shorten(content.subtitle, LONGEST_SUBTITLE, placeholder=" ..."))
     head, reason = content.recommendation
     y = 0.8
     y += _words(slide, [(content.question, 10.5, False, INK)], (EDGE, y, ROOM))
     recommended = [(f"Recommended: {head}", 12.0, True, INK), (reason, 9.5, False, INK)]
     y += _words(slide, recommended, (EDGE, y, ROOM), ground=MARKED) + 0.06
     place = (EDGE, y, ROOM)
-    y += _table(slide, content.options, list(content.options.rows), place, 9.0, content.options.strong) + 0.08
+    y += _table(slide, content.options, list(content.options.rows), place, 9.0, content.options.strong) + 0.12
     ground = [("Assumptions", 9.0, True, INK), *((text, 8.0, False, INK) for text in content.assumptions)]
     warned = [("Cautions", 9.0, True, ALERT), *((text, 8.0, False, INK) for text in content.cautions)]
     half = 0.5 * ROOM - 0.1

@@ -72,3 +72,16 @@ def test_by_hand_over_one_year():
     energy = lost_energy(loss, level, {0.25: 0.5, 1.0: 0.5}, terms)
     assert energy == pytest.approx([220.0 * 3.6e6])
     assert lost_energy_cost(energy, terms) == pytest.approx([660.0])
+
+
+@given(efficiency=st.lists(st.floats(0.8, 0.999), min_size=6, max_size=6))
+def test_energy_shares_make_the_lost_over_the_delivered_energy_a_weighted_mean(efficiency):
+    """sum w_i (1/eta_i - 1): what the weights of a weighted efficiency mean."""
+    level = np.array(sorted(EUROPEAN_WEIGHTS))
+    weight = np.array([EUROPEAN_WEIGHTS[entry] for entry in level])
+    loss = 5e3 * level * (1.0 / np.array(efficiency) - 1.0)
+    terms = EnergyTerms(hours_a_year=4000.0)
+    lost = lost_energy(loss[None], level, EUROPEAN_WEIGHTS, terms)[0] / 3.6e6
+    hours = 4000.0 * (weight / level) / (weight / level).sum()
+    delivered = 5.0 * float(hours @ level)
+    assert lost / delivered == pytest.approx(float(weight @ (1.0 / np.array(efficiency) - 1.0)))

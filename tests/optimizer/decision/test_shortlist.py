@@ -173,7 +173,7 @@ def test_the_tightest_requirements_are_those_of_the_margins(found, stored):
 
 
 def test_tolerance_bands_are_told_where_the_front_has_them(stored):
-    table = stored.table.assign(
+    table = stored.table.copy().assign(
         loss_weighted_percent_p05=0.9 * stored.table.loss_weighted_percent,
         loss_weighted_percent_p95=1.3 * stored.table.loss_weighted_percent,
     )

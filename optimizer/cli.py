@@ -97,7 +97,7 @@ def search(
 
     cases = [case.with_effort(population, generations) for case in read_cases(study)]
     asked = cases[0].study
-    folder = run or Path("runs") / asked.name
+    folder = run or Path("runs") / asked.folder_name
     if cluster or len(cases) > 1:
         from optimizer.batch.batch_run import run_batch
         from optimizer.progress import BatchBar

@@ -3,6 +3,7 @@
 from __future__ import annotations
 
 import hashlib
+import re
 import tomllib
 from collections.abc import Iterable, Mapping, Sequence
 from dataclasses import dataclass, field, replace
@@ -124,6 +125,11 @@ class Study:
     def concepts(self) -> tuple[Concept, ...]:
         """What the study compares: every device class on every bridge."""
         return concepts(self.search.bridges, self.search.device_classes)
+
+    @property
+    def folder_name(self) -> str:
+        """What its run folder is called: the name in characters that every file system takes."""
+        return re.sub(r"[^\w .-]+", "_", self.name).strip(" .") or "study"
 
     @property
     def concept_names(self) -> tuple[str, ...]:

@@ -116,9 +116,7 @@ TABLES = (
     "rules",
     "catalog",
 )
-NAME = Text(
-    "a text of letters, digits, blanks, dots, - and _ (the run folder is called so)", r"\w[\w .-]{0,79}"
-)
+NAME = Text("a text of 1 to 80 characters on one line", r"[^\x00-\x1f\x7f\u2028\u2029]{1,80}")
 TOP = (
     Key("name", NAME),
     Key("description", Text(pattern=".*"), ""),

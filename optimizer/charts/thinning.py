@@ -10,8 +10,8 @@ from numpy.typing import NDArray
 
 Array = NDArray[np.float64]
 Rows = NDArray[np.int64]
-SHOWN_PER_CLASS = 300
-"""Designs of one class drawn at most: more points hide each other and slow the pointer down."""
+SHOWN_PER_CLASS, MOST_SHOWN = 300, 1200
+"""Designs drawn at most of one class and in all: more hide each other, slow the pointer, swell the page."""
 
 
 def unit_range(points: Array) -> Array:
@@ -68,6 +68,7 @@ def shown_rows(
     """
     classes = table["concept"].to_numpy()
     kept = []
+    per_class = min(per_class, max(MOST_SHOWN // len(pd.unique(classes)), 1))
     for name in pd.unique(classes):
         rows = np.flatnonzero(classes == name)
         of_class = table.iloc[rows]

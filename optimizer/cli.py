@@ -90,7 +90,6 @@ def search(
     Lists in the study at keys that take one value make a batch: every combination is searched.
     """
     from optimizer.batch.cases import read_cases
-    from optimizer.batch.engine import engine_of
     from optimizer.progress import SearchBar
     from optimizer.run import run_search
     from optimizer.summary import print_batch, print_summary
@@ -100,6 +99,7 @@ def search(
     folder = run or Path("runs") / asked.folder_name
     if cluster or len(cases) > 1:
         from optimizer.batch.batch_run import run_batch
+        from optimizer.batch.engine import engine_of
         from optimizer.progress import BatchBar
 
         with engine_of(cluster, workers) as engine, BatchBar(cases, hidden=json) as batch_bar:

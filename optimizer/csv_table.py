@@ -24,6 +24,8 @@ def csv_bytes(table: pd.DataFrame) -> bytes:
 def _column(values: pd.Series) -> pa.Array:
     if values.dtype == np.float64:
         return pa.array(significant(values.to_numpy()), from_pandas=True)
+    if isinstance(values.dtype, pd.CategoricalDtype):
+        return pa.array(values).cast(pa.string())
     if values.dtype == bool:
         return pa.array(np.where(values, "True", "False"))
     if values.dtype == object or pd.api.types.is_string_dtype(values.dtype):

@@ -4,6 +4,7 @@ names.
 
 from __future__ import annotations
 
+from collections.abc import Sequence
 from dataclasses import dataclass
 from typing import Any
 
@@ -205,7 +206,8 @@ def design_table(
     names = np.array([entry.name for entry in constraints])
     columns["tightest_constraint"] = names[np.argmin(margins, axis=-1)]
     columns["tightest_margin"] = margins.min(-1)
-    return pd.DataFrame(columns)
+    table = pd.DataFrame(columns)
+    return table.astype(dict.fromkeys(table.select_dtypes("category"), object))
 
 
 def choices(inverter: Inverter, designs: Designs) -> dict[str, Any]:
@@ -213,13 +215,13 @@ def choices(inverter: Inverter, designs: Designs) -> dict[str, Any]:
     back.
     """
     catalog = inverter.catalog
-    classes = catalog.devices.column("device_class")[designs.device]
-    schemes = np.array([scheme.name for scheme in inverter.bridge.modulations])
+    classes = list(catalog.devices.column("device_class"))
+    schemes = [scheme.name for scheme in inverter.bridge.modulations]
     return {
-        "device_class": classes,
-        "device": np.array(catalog.devices.names)[designs.device],
+        "device_class": _named(classes, designs.device),
+        "device": _named(catalog.devices.names, designs.device),
         "bridge": inverter.bridge.name,
-        "modulation": schemes[designs.modulation],
+        "modulation": _named(schemes, designs.modulation),
         "switching_frequency_hz": designs.switching_frequency_hz,
         "die_area_mm2": 1e6 * designs.die_area_m2,
         "parallel": designs.parallel,
@@ -229,8 +231,8 @@ def choices(inverter: Inverter, designs: Designs) -> dict[str, Any]:
         "filter_capacitance_f": designs.filter_capacitance_f,
         "damping_resistance_ohm": designs.damping_resistance_ohm,
         "damping_capacitance_f": designs.damping_capacitance_f,
-        "dc_link": np.array(catalog.dc_link_capacitors.names)[designs.dc_link],
-        "cooling": np.array(COOLING)[designs.cooling],
+        "dc_link": _named(catalog.dc_link_capacitors.names, designs.dc_link),
+        "cooling": _named(COOLING, designs.cooling),
         "sink_resistance_k_per_w": designs.sink_resistance_k_per_w,
         **_inductor_columns(catalog, "inverter_inductor", designs.inverter_inductor),
         **(
@@ -241,22 +243,29 @@ def choices(inverter: Inverter, designs: Designs) -> dict[str, Any]:
     }
 
 
+def _named(names: Sequence[str], choice: NDArray[np.int64]) -> pd.Categorical:
+    """Names of choices, kept once each."""
+    known = list(dict.fromkeys(names))
+    code = np.array([known.index(name) for name in names])
+    return pd.Categorical.from_codes(code[choice], known)
+
+
 def _inner(inverter: Inverter, designs: Designs) -> dict[str, Any]:
     """What the inner positions of three-level legs are made of."""
     if INNER not in inverter.packages.blocking:
         return {}
     return {
-        "inner_device": np.array(inverter.catalog.devices.names)[designs.inner_device],
+        "inner_device": _named(inverter.catalog.devices.names, designs.inner_device),
         "inner_die_area_mm2": 1e6 * designs.inner_die_area_m2,
     }
 
 
-def _inductor_columns(catalog: Catalog, side: str, choice: InductorDesigns) -> dict[str, Array]:
+def _inductor_columns(catalog: Catalog, side: str, choice: InductorDesigns) -> dict[str, Any]:
     return {
-        f"{side}_core_material": np.array(catalog.core_materials.names)[choice.material],
-        f"{side}_core": np.array(catalog.core_shapes.names)[choice.shape],
+        f"{side}_core_material": _named(catalog.core_materials.names, choice.material),
+        f"{side}_core": _named(catalog.core_shapes.names, choice.shape),
         f"{side}_stack": choice.stack,
         f"{side}_turns": choice.turns,
-        f"{side}_conductor": np.array(catalog.conductors.names)[choice.conductor],
+        f"{side}_conductor": _named(catalog.conductors.names, choice.conductor),
         f"{side}_copper_area_mm2": 1e6 * choice.copper_area_m2,
     }

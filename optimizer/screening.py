@@ -13,7 +13,7 @@ from optimizer.study import SearchSettings
 
 Array = NDArray[np.float64]
 
-SCREENED_PER_PLACE = 32
+SCREENED_PER_PLACE = 16
 """Quasi-random points screened for each place in the population."""
 FREQUENCY_STEPS = 8
 """Switching frequencies at which the rules of thumb are tried, evenly on the logarithmic scale."""

@@ -206,7 +206,7 @@ SEARCH = (
     Key("dc_links", Several(Choice(DC_LINKS)), DC_LINKS),
     Key("cooling", Several(Choice(COOLING)), COOLING[:2]),
     Key("population", Whole(8, 10_000), 500),
-    Key("generations", Whole(1, 100_000), 200),
+    Key("generations", Whole(1, 100_000), 170),
     Key("least_gain", Quantity("", 0.0, 1.0), 0.0),
     Key("front_resolution", Quantity("", 0.0, 0.1), 0.001),
     Key("ranges", SubTable(), None),

@@ -3,15 +3,18 @@
 from __future__ import annotations
 
 import json
+from typing import TYPE_CHECKING
 
 from rich.box import SIMPLE_HEAD
 from rich.console import Console
 from rich.table import Table
 
-from optimizer.audited_run import Audited, audit_entries
-from optimizer.batch.batch_run import BatchOutcome
 from optimizer.objectives import OBJECTIVES
-from optimizer.run import Outcome
+
+if TYPE_CHECKING:
+    from optimizer.audited_run import Audited
+    from optimizer.batch.batch_run import BatchOutcome
+    from optimizer.run import Outcome
 
 
 def print_summary(outcome: Outcome, *, as_json: bool) -> None:
@@ -70,6 +73,8 @@ def _table(outcome: Outcome) -> Table:
 
 def print_audit(audited: Audited, *, as_json: bool) -> None:
     """Print what an audit found, as a table or as JSON by concept."""
+    from optimizer.audited_run import audit_entries
+
     if as_json:
         print(json.dumps(audit_entries(audited.found)))
         return

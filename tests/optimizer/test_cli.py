@@ -45,7 +45,7 @@ def test_run_json_says_what_was_done(run):
     content = json.loads((folder / "run.json").read_text())
     assert content["study"]["name"] == "rooftop 5 kW"
     assert len(content["study"]["hash"]) == 64
-    assert 4 * 40 * (32 + 29) <= content["evaluations"] <= 4 * 40 * (32 + 30)
+    assert 4 * 40 * (16 + 29) <= content["evaluations"] <= 4 * 40 * (16 + 30)
     assert set(content["seconds"]) == {"models", "search", "output", "total"}
     front = pd.read_csv(folder / "front.csv")
     assert {entry["column"] for entry in content["objectives"]} <= set(front.columns)

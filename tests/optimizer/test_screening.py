@@ -5,7 +5,7 @@ from scipy.stats import qmc
 
 from models.waveforms.bridges import BRIDGES
 from optimizer.prepared import search_space
-from optimizer.screening import RULES_OF_THUMB, first_points, quasi_random, rules_of_thumb
+from optimizer.screening import RULES_OF_THUMB, SCREENED_PER_PLACE, first_points, quasi_random, rules_of_thumb
 from optimizer.space import CATEGORY
 
 
@@ -15,9 +15,9 @@ def space_of(study, name="SiC MOSFET"):
 
 def test_first_points_are_valid_and_fill_the_cube_evenly(rooftop):
     space = space_of(rooftop)
-    points = first_points(np.random.default_rng(1), space, 32)
+    points = first_points(np.random.default_rng(1), space, 64)
     np.testing.assert_array_equal(points, space.repaired(points))
-    assert len(points) >= 32 * 32
+    assert len(points) >= SCREENED_PER_PLACE * 64
     random = space.repaired(np.random.default_rng(1).random(points.shape))
     assert qmc.discrepancy(points[-1024:]) < qmc.discrepancy(random[-1024:])
 

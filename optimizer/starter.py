@@ -9,12 +9,13 @@ from __future__ import annotations
 from dataclasses import fields
 from importlib.resources import files
 
+from models.ownership import EnergyTerms
 from models.specification import DesignRules
 from models.uncertainty import Uncertainty
 from optimizer.quantity import written
-from optimizer.study_schema import RANGES
+from optimizer.study_schema import CURRENCY, RANGES
 
-DEFAULTS, UNCERTAINTY = DesignRules(), Uncertainty()
+DEFAULTS, TERMS, UNCERTAINTY = DesignRules(), EnergyTerms(), Uncertainty()
 
 
 def starter_text() -> str:
@@ -55,6 +56,19 @@ def uncertainty_block() -> str:
             for one in fields(UNCERTAINTY)
         ]
     )
+
+
+def energy_block() -> str:
+    """Return the lines of [energy], each commented out and with its default and meaning."""
+    entries = [
+        (f"{term.name} = {_plain(getattr(TERMS, term.name))}", term.metadata["meaning"])
+        for term in fields(TERMS)
+    ]
+    return _commented_out([*entries, (f'currency = "{CURRENCY}"', "what prices and costs are counted in")])
+
+
+def _plain(value: float | str) -> str:
+    return f'"{value}"' if isinstance(value, str) else written(value, "")
 
 
 def _toml(value: float, unit: str) -> str:

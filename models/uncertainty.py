@@ -105,14 +105,20 @@ class Uncertainty:
     """
 
     inverter_inductance: float = entry(
-        0.10, TOLERANCE, "bridge-side inductance (gap, permeability)", "parts are sold to 8 to 10 %, from memory"
+        0.10,
+        TOLERANCE,
+        "bridge-side inductance (gap, permeability)",
+        "parts are sold to 8 to 10 %, from memory",
     )
     grid_inductance: float = entry(0.10, TOLERANCE, "grid-side inductance", "as the bridge-side one's")
     filter_capacitance: float = entry(
         0.10, TOLERANCE, "filter and damping capacitance", "IEC 60062, letter K: 10 %, from memory"
     )
     on_state: float = entry(
-        0.15, SPREAD, "voltage drop of switches and diodes", "sheets' greatest over typical values, from memory"
+        0.15,
+        SPREAD,
+        "voltage drop of switches and diodes",
+        "sheets' greatest over typical values, from memory",
     )
     switching_energy: float = entry(0.30, SPREAD, "turn-on and turn-off energies (layout, gate)", JUDGEMENT)
     recovery_energy: float = entry(0.40, SPREAD, "recovery energy of the diodes", JUDGEMENT)
@@ -128,7 +134,9 @@ class Uncertainty:
     ripple_copper_loss: float = entry(0.40, SPREAD, "winding loss by ripple current (gap, layers)", JUDGEMENT)
     inductor_rise: float = entry(0.20, SPREAD, "temperature rise of inductors at given loss", JUDGEMENT)
     capacitor_loss: float = entry(0.40, SPREAD, "series resistance of the capacitors", JUDGEMENT)
-    dc_link_life: float = entry(1.0, SPREAD, "life of the dc link at given stress (1: half to twice)", JUDGEMENT)
+    dc_link_life: float = entry(
+        1.0, SPREAD, "life of the dc link at given stress (1: half to twice)", JUDGEMENT
+    )
     dead_time_error: float = entry(0.50, SPREAD, "dead-time voltage error that control leaves", JUDGEMENT)
     emission_level: float = entry(1.0, SPREAD, "conducted emission before its filter (1: 6 dB)", JUDGEMENT)
     auxiliary_power: float = entry(0.20, SPREAD, "power of control and auxiliary supply", JUDGEMENT)

@@ -68,6 +68,8 @@ class ModelFactors:
 
     def of(self, rows: slice) -> ModelFactors:
         """The factors of some candidates."""
+        if all(len(value) == 1 for value in vars(self).values()):
+            return self
         return ModelFactors(
             **{name: value if len(value) == 1 else value[rows] for name, value in vars(self).items()}
         )

@@ -11,7 +11,7 @@ from numpy.typing import NDArray
 
 from models.semiconductors.conduction import HeatLaw
 from models.semiconductors.switching import Dies
-from models.uncertainty import ModelFactors
+from models.uncertainty import NOMINAL, ModelFactors
 
 Array = NDArray[np.float64]
 NO_HEAT = HeatLaw(*(np.zeros((1, 1)) for _ in range(4)))
@@ -47,6 +47,8 @@ class PositionHeat:
 
     def scaled(self, factors: ModelFactors) -> PositionHeat:
         """Every part times the factor on its phenomenon."""
+        if factors is NOMINAL:  # of a search, which this would cost two per cent
+            return self
         drop = factors.on_state[:, None]
         junction_case, diode_case, case_sink = self.resistances
         thermal = factors.junction_sink_resistance[:, None]

@@ -19,6 +19,7 @@ from models.evaluation import Constraint, Evaluation
 from models.inverter import Inverter
 from models.ownership import JOULE_A_KWH
 from models.waveforms.leg_commutations import INNER
+from optimizer.binding import binding_table
 from optimizer.concept_search import ClassResult
 from optimizer.emission_lines import EmissionLines, emission_lines, joined_lines
 from optimizer.objectives import OBJECTIVES, distortion_column, margins_of, requirements_of
@@ -44,6 +45,7 @@ class Front:
             infinite.
         emission: conducted emission; None where the study leaves it out.
         points: places in the search space by concept, in the table's order (n, k).
+        binding: what limits the designs by concept and octave of frequency (binding.csv).
     """
 
     table: pd.DataFrame
@@ -57,6 +59,7 @@ class Front:
     line_limit: Array
     emission: EmissionLines | None
     points: dict[str, Array]
+    binding: pd.DataFrame
 
 
 def front(result: SearchResult) -> Front:
@@ -72,9 +75,10 @@ def front(result: SearchResult) -> Front:
     ]
     objectives = np.concatenate([found.objectives[rows] for found, rows in kept])
     overall = moocore.is_nondominated(objectives)
-    parts = []
+    parts, spaces = [], []
     for found, rows in kept:
         space = search_space(result.study, found.concept)
+        spaces.append(space)
         designs = space.designs(found.points[rows])
         parts.append((space.inverter, designs, space.inverter.evaluate(designs)))
     required = [requirements_of(result.study.at_most, evaluation) for *_, evaluation in parts]
@@ -106,6 +110,17 @@ def front(result: SearchResult) -> Front:
         line_limit=np.concatenate([item.line_limit for item in lines]),
         points={found.concept.name: found.points[rows] for found, rows in kept},
         emission=joined_lines([emission_lines(inverter, designs) for inverter, designs, _ in parts]),
+        binding=pd.concat(
+            [
+                binding_table(
+                    found.concept.name, space, found.points[rows], designs.switching_frequency_hz, entries
+                )
+                for (found, rows), space, (_, designs, _), entries in zip(
+                    kept, spaces, parts, required, strict=True
+                )
+            ],
+            ignore_index=True,
+        ),
     )
 
 

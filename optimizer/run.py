@@ -139,6 +139,7 @@ def run_files(
         return {
             "front.csv": csv_bytes(fronts.table),
             "margins.csv": csv_bytes(fronts.margins),
+            "binding.csv": csv_bytes(fronts.binding),
             "evaluated.csv.gz": packed.result(),
             "dashboard.html": page,
             POINTS_FILE: points_bytes(fronts.points),

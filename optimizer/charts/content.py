@@ -31,11 +31,13 @@ class Content:
         envelopes: one per objective of ENVELOPED.
         steps: where within the designs' frequencies a carrier group enters the band of conducted emission
             [kHz]; none where the study leaves emission out.
+        binding: what limits the fronts.
     """
 
     designs: DesignData
     envelopes: tuple[Envelope, ...]
     steps: tuple[float, ...]
+    binding: pd.DataFrame
 
     def datasets(self) -> dict[str, Records]:
         """Data sets by name, each once."""
@@ -60,7 +62,8 @@ def content(
     """
     envelopes = (envelope(evaluated, front.table, quantity_of(name).column) for name in ENVELOPED)
     designs, found = design_data(study, front, per_class), tuple(envelopes)
-    return Content(designs, found, _band_steps(designs, found) if study.specification.emission_limit else ())
+    steps = _band_steps(designs, found) if study.specification.emission_limit else ()
+    return Content(designs, found, steps, front.binding)
 
 
 def _band_steps(designs: DesignData, envelopes: tuple[Envelope, ...]) -> tuple[float, ...]:

@@ -8,12 +8,13 @@ from typing import Any
 
 import altair as alt
 
+from optimizer.binding import BINDING
 from optimizer.charts.look import ABOVE, ALERT, BAR, INK, QUIET, TEXT_SIZE, heading, layered
 from optimizer.charts.selections import Selections
 
 SHOWN = 10
-BINDING = 5.0
-"""Percent of margin below which a requirement is marked: a judgement, about the spread of parts."""
+MARKED = 100.0 * BINDING
+"""Margin below which a requirement is marked [%]."""
 LABELS = 240
 """Room for the words on the left [px]."""
 FIGURES = 34
@@ -36,7 +37,7 @@ def margins(constraints: Sequence[str], linked: Selections, width: int, height: 
         scale=alt.Scale(domain=[0, 100], range=[LABELS, width - FIGURES], clamp=True),
     )
     y = alt.Y("rank:O", axis=None, scale=alt.Scale(domain=list(range(1, SHOWN + 1)), paddingInner=0.35))
-    test = f"datum.margin < {BINDING:g}"
+    test = f"datum.margin < {MARKED:g}"
     binds, said = (alt.condition(test, alt.value(ALERT), alt.value(other)) for other in (BAR, INK))
     tooltip = [
         alt.Tooltip("constraint:N", title="requirement"),
@@ -55,7 +56,7 @@ def margins(constraints: Sequence[str], linked: Selections, width: int, height: 
             x=x, y=y, color=said, text=alt.Text("margin:Q", format=".3~r")
         ),
     }
-    below = f"its {SHOWN} tightest requirements; marked: less than {BINDING:g} % left"
+    below = f"its {SHOWN} tightest requirements; marked: less than {MARKED:g} % left"
     return layered("margins", layers, (width, height), heading("What binds the picked design", below))
 
 

@@ -13,6 +13,7 @@ from optimizer.charts.card import card
 from optimizer.charts.content import Content, content
 from optimizer.charts.emission import emission
 from optimizer.charts.frequency import envelope_view, envelope_views
+from optimizer.charts.limiting import limiting
 from optimizer.charts.load_curve import load_curve
 from optimizer.charts.look import configuration
 from optimizer.charts.margins import margins
@@ -29,6 +30,8 @@ APART = alt.ScaleResolveMap(
 )
 WIDTH = 1150
 """Width of every row of plots and gaps [px], so that the page fits a screen of 1280."""
+LIMITING_WIDTH = 1010
+"""Of the fields of what limits the fronts [px]; the concepts' names stand beside them."""
 GAP, NARROW_GAP, THIRD = 60, 29, 364
 """Gaps for an axis and for words only, and the width of each of three views in a row [px]."""
 
@@ -88,6 +91,7 @@ def _rows(study: Study, found: Content, linked: Selections) -> list[alt.LayerCha
         ),
     ]
     rows.append(parallel(designs, classes, linked, WIDTH, 200))
+    rows.append(limiting(found.binding, classes, LIMITING_WIDTH))
     if spec.emission_limit:
         rows.append(emission(spec, linked, WIDTH, 230))
     return rows

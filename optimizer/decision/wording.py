@@ -7,17 +7,15 @@ from typing import Any
 
 import pandas as pd
 
+from optimizer.binding import BINDING, requirement_words
 from optimizer.decision.figures import Told, figure
 
 KILO, MICRO, PERCENT = 1e3, 1e-6, 100.0
 TELLING = 0.01
 """Relative difference below which two designs are told as equal."""
-BINDING = 0.05
-"""Margin below which a requirement counts as limiting: about the spread of parts, a judgement."""
 NOTHING_LEFT = 5e-4
 """Margin below which nothing is left."""
 MOST_LIMITS = 3
-WANTED = " wanted"
 Row = Mapping[Any, Any]
 
 
@@ -108,11 +106,6 @@ def tightest(margins: Row | pd.Series, count: int = MOST_LIMITS) -> list[tuple[s
         if isinstance(value, int | float) and value == value
     ]
     return sorted(found, key=lambda entry: entry[1])[:count]
-
-
-def requirement_words(name: str) -> str:
-    """What a requirement is called in a sentence."""
-    return f"the study's own limit on {name.removesuffix(WANTED)}" if name.endswith(WANTED) else name
 
 
 def margin_words(margin: float) -> str:

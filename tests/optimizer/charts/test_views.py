@@ -17,13 +17,14 @@ from optimizer.objectives import OBJECTIVES
 VIEWS = (
     "front_points", "front_reach", "front_picked", "least_loss_weighted_percent_lines", "least_volume_l_lines",
     "parallel_group", "parallel_held", "parallel_picked", "front_marks", "front_held", "card_headline", "loss_bars", "loss_means", "volume_bars", "volume_means", "margins_bars", "spectrum_stems",
-    "spectrum_limits", "load_curve_picked", "load_curve_group",
+    "spectrum_limits", "load_curve_picked", "load_curve_group", "limiting_fields", "limiting_first",
 )  # fmt: skip
 
 
 def units(spec):
     parts = [part for kind in ("vconcat", "hconcat", "layer") for part in spec.get(kind, ())]
-    return [unit for part in parts for unit in units(part)] if parts else [spec]
+    own = {"data": spec["data"]} if "data" in spec else {}  # parts without data of their own inherit it
+    return [unit for part in parts for unit in units(own | part)] if parts else [spec]
 
 
 def parts_of(value):

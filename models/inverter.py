@@ -3,7 +3,7 @@
 from __future__ import annotations
 
 from dataclasses import dataclass, replace
-from functools import cached_property
+from functools import cached_property, lru_cache
 
 import numpy as np
 from numpy.typing import NDArray
@@ -19,7 +19,7 @@ from models.capacitors import (
     switching_ripple_capacitance,
 )
 from models.catalog.gathered import Gathered
-from models.catalog.parts import AcCapacitor, Catalog
+from models.catalog.parts import AcCapacitor, Catalog, Fan
 from models.cooling import SinkCurve, SinkPoint, sink_curve_cold_plate, sink_curve_forced, sink_curve_natural
 from models.designs import COLD_PLATE, FORCED, Designs
 from models.distortion import Distortion, worse
@@ -90,14 +90,7 @@ class Inverter:
     def sinks(self) -> tuple[SinkCurve, SinkCurve, SinkCurve]:
         """Least-volume heatsinks over thermal resistance, in the order of COOLING."""
         spec, price = self.specification, self.catalog.cost.heatsink_price_per_kg
-        natural = sink_curve_natural(ambient_c=spec.ambient_c, altitude_m=spec.altitude_m, price_per_kg=price)
-        forced = sink_curve_forced(
-            fans=tuple(self.catalog.fans),
-            ambient_c=spec.ambient_c,
-            altitude_m=spec.altitude_m,
-            price_per_kg=price,
-        )
-        return natural, forced, sink_curve_cold_plate()
+        return _sink_curves(spec.ambient_c, spec.altitude_m, tuple(self.catalog.fans), price)
 
     @cached_property
     def ac_capacitor(self) -> AcCapacitor:
@@ -369,6 +362,15 @@ class Inverter:
             for moments in (self.tables.rail_slow, self.tables.rail_fast)
         )
         return slow, fast
+
+
+@lru_cache(maxsize=16)
+def _sink_curves(
+    ambient_c: float, altitude_m: float, fans: tuple[Fan, ...], price: float
+) -> tuple[SinkCurve, SinkCurve, SinkCurve]:
+    natural = sink_curve_natural(ambient_c=ambient_c, altitude_m=altitude_m, price_per_kg=price)
+    forced = sink_curve_forced(fans=fans, ambient_c=ambient_c, altitude_m=altitude_m, price_per_kg=price)
+    return natural, forced, sink_curve_cold_plate()
 
 
 def _circuit(designs: Designs) -> Filter:

@@ -124,6 +124,7 @@ def _as_result(one: ConceptAudit, run: StoredRun) -> ClassResult:
         constraints=(),
         failures=np.zeros(0),
         nearest=np.zeros(0),
+        nearest_point=np.zeros(0),
         seconds={"models": 0.0, "search": 0.0},
     )
 
@@ -136,6 +137,7 @@ def _joint_summary(
         "evaluations": before["evaluations"] + result.evaluations,
         "feasible": evaluated.concept.value_counts().to_dict(),
         "ruled_out": before["ruled_out"],
+        "openings": before.get("openings", {}),
         "seconds": before["seconds"],
         "audit": audit_entries(audited.found),
     }

@@ -45,7 +45,7 @@ class ClassResult:
         evaluations: candidates evaluated [-].
         hypervolume: (evaluations, hypervolume) records.
         constraints: names; failures: share of candidates violating each [-].
-        nearest: margins of the least violating candidate [-].
+        nearest: margins of the least violating candidate [-]; nearest_point: its place (k,).
         seconds: time in the models and in all [s].
     """
 
@@ -58,6 +58,7 @@ class ClassResult:
     constraints: tuple[str, ...]
     failures: Array
     nearest: Array
+    nearest_point: Array
     seconds: dict[str, float]
 
 
@@ -167,6 +168,7 @@ def _result(
         constraints=_constraint_names(problem),
         failures=np.asarray(problem.archive.failures) / max(problem.archive.evaluations, 1),
         nearest=np.asarray(problem.archive.nearest),
+        nearest_point=np.asarray(problem.archive.nearest_point),
         seconds={"models": in_models, "search": in_all - in_models},
     )
 

@@ -83,17 +83,20 @@ class RuledOut(NamedTuple):
 
 
 class NothingFeasible(WattfrontError):
-    """No candidate kept every constraint; carries the constraints, the one failed most often first."""
+    """No candidate kept every constraint; carries the constraints, the one failed most often first, and what
+    more is known in lines of words.
+    """
 
     exit_code: ClassVar[int] = 1
 
-    def __init__(self, constraints: Iterable[tuple[str, float, str]]) -> None:
+    def __init__(self, constraints: Iterable[tuple[str, float, str]], told: Iterable[str] = ()) -> None:
         ruled_out = (RuledOut(*constraint) for constraint in constraints)
         self.constraints = tuple(sorted(ruled_out, key=lambda constraint: -constraint.share))
+        self.told = tuple(told)
         super().__init__(self.constraints)
 
     def __str__(self) -> str:
         lines = ["no candidate keeps every constraint; what ruled them out:"]
         for name, share, nearest_miss in self.constraints:
             lines.append(f"  {name}: failed by {share:.1%} of the candidates; nearest miss: {nearest_miss}")
-        return "\n".join(lines)
+        return "\n".join([*lines, *self.told])

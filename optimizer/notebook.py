@@ -15,7 +15,7 @@ from optimizer.fronts import Front, front
 from optimizer.objectives import OBJECTIVES
 from optimizer.populations import Progress, SearchResult
 from optimizer.quantity import show
-from optimizer.run import evaluated_table, ruled_out
+from optimizer.run import evaluated_table, ruled_out, shortfalls
 from optimizer.study import Study
 from optimizer.study_table import one_of
 
@@ -68,7 +68,8 @@ class Run(SearchResult):
             NothingFeasible: where no candidate meets all requirements.
         """
         if not any(len(found.points) for found in self.classes):
-            raise NothingFeasible(ruled_out(self))
+            told = [line for one in shortfalls(self) for line in one.lines()]
+            raise NothingFeasible(ruled_out(self), told)
         return front(self)
 
     @property

@@ -24,7 +24,8 @@ class Archive:
         points, objectives: blocks of feasible candidates; filter_volume: of each [m3].
         evaluations: all candidates [-].
         failures: per constraint, how many candidates violated it [-].
-        nearest: margins of the candidate of least violation (c,) [-], and that violation.
+        nearest: margins of the candidate of least violation (c,) [-], nearest_point: its place (k,), and that
+            violation.
     """
 
     points: list[Array] = field(default_factory=list)
@@ -33,6 +34,7 @@ class Archive:
     evaluations: int = 0
     failures: Array | None = None
     nearest: Array | None = None
+    nearest_point: Array | None = None
     least_violation: float = np.inf
 
     def add(
@@ -50,7 +52,7 @@ class Archive:
         closest = int(np.argmin(violation))
         if violation[closest] < self.least_violation:
             self.least_violation = float(violation[closest])
-            self.nearest = margins[closest]
+            self.nearest, self.nearest_point = margins[closest], points[closest]
 
     def feasible(self) -> tuple[Array, Array, Array]:
         """Points, objectives and filter volumes of all feasible candidates, in the order of evaluation."""

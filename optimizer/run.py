@@ -5,8 +5,9 @@ from __future__ import annotations
 import gzip
 import io
 import json
+import os
 import time
-from collections.abc import Callable, Mapping
+from collections.abc import Callable, Mapping, Sequence
 from concurrent.futures import ProcessPoolExecutor
 from dataclasses import dataclass
 from datetime import datetime
@@ -23,6 +24,7 @@ from optimizer.csv_table import csv_bytes
 from optimizer.errors import NothingFeasible
 from optimizer.fronts import LITRES, Front, choices, front
 from optimizer.objectives import OBJECTIVES
+from optimizer.opening import Shortfall, shortfall
 from optimizer.populations import SearchResult, process_context, search
 from optimizer.prepared import prepare, search_space
 from optimizer.run_folder import RUN_FILE, STUDY_FILE, Content, check_folder, parts_copy, write_run
@@ -83,10 +85,14 @@ def run_search(
     if not (resume and unfinished.take_up(task)):
         unfinished.begin(task)
     result = search(study, seed=seed, workers=workers, report=report, unfinished=unfinished)
+    seconds = time.perf_counter() - started
+    if not all(len(found.points) for found in result.classes):
+        stage("looking for what would open the space")
+    missing = shortfalls(result, workers)
     if not any(len(found.points) for found in result.classes):
         unfinished.end()
-        raise NothingFeasible(ruled_out(result))
-    outcome = write_result(result, folder, time.perf_counter() - started, stage)
+        raise NothingFeasible(ruled_out(result), [line for one in missing for line in one.lines()])
+    outcome = write_result(result, folder, seconds, stage, missing)
     unfinished.end()
     return outcome
 
@@ -96,6 +102,7 @@ def write_result(
     folder: Path,
     seconds: float | None = None,
     stage: Callable[[str], None] = lambda words: None,
+    missing: Sequence[Shortfall] = (),
 ) -> Outcome:
     """Write the run folder of a finished search, whole or not at all.
 
@@ -104,6 +111,7 @@ def write_result(
         folder: run folder to write.
         seconds: that the search took; None for the sum over its populations [s].
         stage: told what is being done.
+        missing: what concepts without a feasible design lack.
     """
     started = time.perf_counter()
     study = result.study
@@ -112,6 +120,7 @@ def write_result(
     evaluated = evaluated_table(result)
     stage("drawing")
     summary = summary_of(result, fronts)
+    summary["openings"] = {one.concept.name: one.entry() for one in missing}
     files = run_files(study, fronts, evaluated, summary)
     in_models = sum(found.seconds["models"] for found in result.classes)
     searched = in_models + sum(found.seconds["search"] for found in result.classes)
@@ -169,6 +178,29 @@ def _study_files(study: Study) -> dict[str, Content]:
 
 def _packed(evaluated: pd.DataFrame) -> bytes:
     return gzip.compress(csv_bytes(evaluated), GZIP_LEVEL, mtime=0)
+
+
+def shortfalls(result: SearchResult, workers: int | None = None) -> tuple[Shortfall, ...]:
+    """What the concepts without a feasible design lack, and which change of the study would open their space;
+    those that miss least come first.
+
+    Args:
+        result: of a search.
+        workers: processes; default one per core.
+    """
+    lacking = [found for found in result.classes if not len(found.points)]
+    spaces = [search_space(result.study, found.concept) for found in lacking]
+    asked = [
+        (space, found.concept, found.nearest_point, result.seed)
+        for space, found in zip(spaces, lacking, strict=True)
+    ]
+    count = min(workers or os.cpu_count() or 1, len(asked))
+    if count <= 1:
+        found = [shortfall(*one) for one in asked]
+    else:
+        with ProcessPoolExecutor(count, mp_context=process_context()) as pool:
+            found = list(pool.map(shortfall, *zip(*asked, strict=True)))
+    return tuple(sorted(found, key=lambda one: sum(miss.over for miss in one.misses)))
 
 
 def ruled_out(result: SearchResult) -> list[tuple[str, float, str]]:

@@ -28,6 +28,8 @@ def print_summary(outcome: Outcome, *, as_json: bool) -> None:
         console.print(
             f"{concept}: nothing feasible. " + "; ".join(f"{name}: {miss}" for name, _, miss in reasons)
         )
+        for line in outcome.summary["openings"].get(concept, {}).get("words", [])[1:]:
+            console.print(line, soft_wrap=True, markup=False, highlight=False)
     seconds = outcome.summary["seconds"]
     if outcome.kept:
         console.print(

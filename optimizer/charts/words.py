@@ -51,6 +51,7 @@ def drawn(data: DesignData) -> list[str]:
 def missing(study: Study, data: DesignData, summary: Mapping[str, Any]) -> list[str]:
     """Device classes without any feasible design, and what ruled them out where the run says it."""
     ruled_out: Mapping[str, Sequence[Sequence[Any]]] = summary.get("ruled_out") or {}
+    openings: Mapping[str, Mapping[str, Any]] = summary.get("openings") or {}
     told = []
     for name in study.concept_names:
         if name not in data.total:
@@ -58,6 +59,7 @@ def missing(study: Study, data: DesignData, summary: Mapping[str, Any]) -> list[
             told.append(
                 f"No feasible design with {name}"
                 + (f": the nearest one misses {reasons}." if reasons else ".")
+                + "".join(f" {line.strip()}" for line in openings.get(name, {}).get("words", [])[1:])
             )
     return told
 

@@ -32,7 +32,8 @@ def run(tmp_path_factory):
 def test_search_writes_the_promised_files(run):
     folder, done = run
     assert {path.name for path in folder.iterdir()} == {
-        "front.csv", "margins.csv", "evaluated.csv.gz", "points.npz",
+        "front.csv", "margins.csv",
+        "binding.csv", "evaluated.csv.gz", "points.npz",
         "dashboard.html", "run.json", "study.toml",
     }  # fmt: skip
     assert (folder / "study.toml").read_bytes() == ROOFTOP.read_bytes()

@@ -203,6 +203,8 @@ def shortlist(
     json: Annotated[bool, typer.Option("--json", help="JSON instead of text on standard output.")] = False,
 ) -> None:
     """Pick a few designs from a run's front and tell them in plain words."""
+    from optimizer.audited_run import stored_points
+    from optimizer.certainty.tolerance import sampler
     from optimizer.decision import shortlist as picked
     from optimizer.decision.telling import as_csv, as_json, print_shortlist, table_suffix
     from optimizer.decision.weights import read_weights
@@ -212,7 +214,8 @@ def shortlist(
     suffix = table_suffix(out) if out else ""
     asked = read_weights(weights) if weights is not None else None
     found = read_run(run)
-    chosen = picked(found.study, found.table, found.margins, asked)
+    sampled = sampler(found.study, found.table, stored_points(found))
+    chosen = picked(found.study, found.table, found.margins, asked, sampled)
     if out is not None:
         write_whole(out, as_json(chosen) if suffix == ".json" else as_csv(chosen))
     if json:
@@ -234,6 +237,8 @@ def report(
     weights: Weights = None,
 ) -> None:
     """Write a run's report: one page for a decision, an appendix for engineers."""
+    from optimizer.audited_run import stored_points
+    from optimizer.certainty.tolerance import sampler
     from optimizer.decision import shortlist as picked
     from optimizer.decision.weights import read_weights
     from optimizer.report import report as content_of
@@ -244,7 +249,8 @@ def report(
     check_libraries(formats)
     asked = read_weights(weights) if weights is not None else None
     found = read_run(run)
-    content = content_of(found, picked(found.study, found.table, found.margins, asked))
+    sampled = sampler(found.study, found.table, stored_points(found))
+    content = content_of(found, picked(found.study, found.table, found.margins, asked, sampled))
     for path in write_report(content, out or run / FOLDER, formats):
         typer.echo(f"Wrote {path}")
 

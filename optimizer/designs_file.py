@@ -295,7 +295,17 @@ _RESULT_NAMES = {
     "cost_of_ownership",
     *SHORTLIST_COLUMNS,
 }
-_RESULT_ENDS = ("_flux_t", "_gap_m", "_window_fill", "_inductance_left", "_temperature_c", "_resistance_ohm")
+_RESULT_ENDS = (
+    "_flux_t",
+    "_gap_m",
+    "_window_fill",
+    "_inductance_left",
+    "_temperature_c",
+    "_resistance_ohm",
+    "_p05",
+    "_p95",
+    "_hold_share",
+)
 
 
 def _is_result(name: str) -> bool:

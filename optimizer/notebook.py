@@ -98,9 +98,11 @@ class Run(SearchResult):
         Args:
             weights: by objective, for one further design.
         """
+        from optimizer.certainty.tolerance import sampler
         from optimizer.decision import shortlist
 
-        return shortlist(self.study, self.front, self.margins, weights)
+        sampled = sampler(self.study, self.front, self.fronts.points)
+        return shortlist(self.study, self.front, self.margins, weights, sampled)
 
 
 @dataclass(frozen=True)

@@ -77,7 +77,7 @@ class Tolerance:
         """The same as columns beside a front's: `_p05` and `_p95` behind an objective's, and the share that
         keeps all limits.
         """
-        found = {}
+        found: dict[str, float] = {}
         for name, band in self.bands.items():
             column = OBJECTIVES[name].column
             found |= {f"{column}_p05": band.low, f"{column}_p95": band.high}

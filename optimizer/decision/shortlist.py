@@ -3,16 +3,17 @@
 from __future__ import annotations
 
 from collections.abc import Mapping
-from dataclasses import dataclass
+from dataclasses import dataclass, field
 from typing import Any
 
 import pandas as pd
 
+from optimizer.certainty.tolerance import Sampler, Tolerance, with_bands
 from optimizer.charts.thinning import balanced_row
 from optimizer.decision.figures import COST, LOSS, PRICE, VOLUME, told_of
 from optimizer.decision.picks import EQUAL_COST, least_row, recommended_row, weighted_row
 from optimizer.decision.weights import written_weights
-from optimizer.decision.wording import beside, headline, how_sure, limited_by, what_it_is
+from optimizer.decision.wording import beside, headline, how_sure, limited_by, limits_kept, what_it_is
 from optimizer.objectives import OBJECTIVES
 from optimizer.study import Study
 
@@ -55,6 +56,7 @@ class Shortlist:
         entries: one a role; a design may have several roles.
         recommended: the recommended design's row.
         reason: by which criteria, in words.
+        tolerances: of the designs by their rows, where they were sampled.
     """
 
     study: Study
@@ -63,6 +65,7 @@ class Shortlist:
     entries: tuple[Entry, ...]
     recommended: int
     reason: str
+    tolerances: Mapping[int, Tolerance] = field(default_factory=dict)
 
     @property
     def rows(self) -> list[int]:
@@ -79,7 +82,11 @@ class Shortlist:
 
 
 def shortlist(
-    study: Study, table: pd.DataFrame, margins: pd.DataFrame, weights: Mapping[str, float] | None = None
+    study: Study,
+    table: pd.DataFrame,
+    margins: pd.DataFrame,
+    weights: Mapping[str, float] | None = None,
+    sampled: Sampler | None = None,
 ) -> Shortlist:
     """Pick the shortlist from a front.
 
@@ -88,6 +95,7 @@ def shortlist(
         table: its front, one row a design.
         margins: of the same designs.
         weights: by objective, for one further design; None for none.
+        sampled: what samples designs under tolerances; None leaves them with typical errors of the models.
     """
     columns = [OBJECTIVES[name].column for name in study.objectives]
     picks = {BALANCED: (_balanced_rule(study), balanced_row(table, columns))}
@@ -97,6 +105,9 @@ def shortlist(
         rule = f"least weighted sum of {written_weights(weights)}, each over its range on the front"
         picks[WEIGHTED] = (rule, weighted_row(table, weights))
     recommended, reason = _recommendation(table, picks, columns)
+    rows = dict.fromkeys(row for _, row in picks.values())
+    tolerances = {row: sampled(row) for row in rows} if sampled else {}
+    table = with_bands(table, tolerances) if tolerances else table
     entries = tuple(
         Entry(
             role,
@@ -104,11 +115,14 @@ def shortlist(
             row,
             str(table["design_id"].iloc[row]),
             headline(dict(table.iloc[row])),
-            _sentences(study, table, margins, row, picks[BALANCED][1]),
+            (
+                *_sentences(study, table, margins, row, picks[BALANCED][1]),
+                *([limits_kept(tolerances[row])] if row in tolerances else []),
+            ),
         )
         for role, (rule, row) in picks.items()
     )
-    return Shortlist(study, table, margins, entries, recommended, reason)
+    return Shortlist(study, table, margins, entries, recommended, reason, tolerances)
 
 
 def _balanced_rule(study: Study) -> str:

@@ -51,6 +51,7 @@ def _content(found: Shortlist) -> dict[str, Any]:
                 "rule": entry.rule,
                 "words": list(entry.sentences),
                 "design": rows[entry.row],
+                **({"certainty": found.tolerances[entry.row].entry()} if found.tolerances else {}),
             }
             for entry in found.entries
         ],

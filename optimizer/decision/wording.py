@@ -8,7 +8,8 @@ from typing import Any
 import pandas as pd
 
 from optimizer.binding import BINDING, requirement_words
-from optimizer.decision.figures import Told, figure
+from optimizer.certainty.tolerance import Tolerance, factor_words
+from optimizer.decision.figures import LOSS, Told, figure
 
 KILO, MICRO, PERCENT = 1e3, 1e-6, 100.0
 TELLING = 0.01
@@ -16,6 +17,9 @@ TELLING = 0.01
 NOTHING_LEFT = 5e-4
 """Margin below which nothing is left."""
 MOST_LIMITS = 3
+ALMOST_ALL = 0.99
+RESERVE_WANTED = 0.9
+"""Share of inverters that should keep every limit, a judgement [-]."""
 Row = Mapping[Any, Any]
 
 
@@ -121,6 +125,26 @@ def limited_by(margins: Row | pd.Series) -> str:
     return f"Limited by {listed(told)}."
 
 
+def limits_kept(found: Tolerance) -> str:
+    """Sentences about how many inverters of a design keep all limits, and where its scatter comes from."""
+    share = f"{_percent(found.all_hold)} of inverters built so keep every limit"
+    rarest = [entry for entry in found.rarest()[:MOST_LIMITS] if entry[1] < ALMOST_ALL]
+    if rarest:
+        told = (f"{requirement_words(name)} ({_percent(kept)})" for name, kept in rarest)
+        share += f"; least often kept: {listed(told)}"
+    if found.all_hold < RESERVE_WANTED:
+        share += ". As designs of a front do, it stands at its limits: leave reserve before building it"
+    drivers = found.bands[LOSS.name].drivers[:2]
+    hangs = listed(f"{factor_words(name)} ({_percent(value)})" for name, value in drivers)
+    return f"{share}." + (f" The scatter of its loss comes most from {hangs}." if drivers else "")
+
+
+def _percent(share: float) -> str:
+    if ALMOST_ALL < share < 1.0:
+        return f"over {PERCENT * ALMOST_ALL:.0f} %"
+    return "under 1 %" if 0.0 < share < 1.0 - ALMOST_ALL else f"{PERCENT * share:.0f} %"
+
+
 def how_sure(row: Row, told: Iterable[Told], currency: str) -> str:
     """A sentence about how far the figures may be off: tolerance bands where the front has them, else the
     models' typical error.
@@ -131,7 +155,8 @@ def how_sure(row: Row, told: Iterable[Told], currency: str) -> str:
     for entry in told:
         low, high = row.get(f"{entry.column}_p05"), row.get(f"{entry.column}_p95")
         if low is not None and high is not None and low == low and high == high:
-            span = f"{entry.number(float(low))} to {entry.figure(float(high), currency)}"
+            first, last = entry.number(float(low)), entry.figure(float(high), currency)
+            span = f"about {last}" if entry.number(float(high)) == first else f"{first} to {last}"
             bands.append(f"{entry.title} {span}")
         else:
             error = entry.typical_error * abs(float(row[entry.column]))

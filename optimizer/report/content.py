@@ -17,6 +17,7 @@ from optimizer.report.backgrounds import (
     specification_table,
 )
 from optimizer.report.blocks import Picture, Section, Table
+from optimizer.report.certainty import bands_table, drivers_table, holding_table
 from optimizer.report.designs import build_table, component_tables, margin_table, words_table
 from optimizer.report.pictures import pictures
 from optimizer.stored_run import StoredRun
@@ -197,6 +198,7 @@ def _sections(run: StoredRun, found: Shortlist) -> tuple[Section, ...]:
             ("What binds where: 0 is at the limit. Temperatures count over the rise allowed, 20 dB as 100.",),
             (margin_table(found),),
         ),
+        *_certainty(found),
         Section(
             "Specification and design rules", (), (specification_table(run.study), rules_table(run.study))
         ),
@@ -210,6 +212,19 @@ def _sections(run: StoredRun, found: Shortlist) -> tuple[Section, ...]:
             on_slides=False,
         ),
     )
+
+
+def _certainty(found: Shortlist) -> tuple[Section, ...]:
+    if not found.tolerances:
+        return ()
+    samples = next(iter(found.tolerances.values())).samples
+    words = (
+        f"{samples:,} inverters of every option sampled under tolerances of parts and uncertainties of "
+        "models that the study states. A design of a front stands at its limits by nature: where few "
+        "inverters keep a limit, leave reserve before building it."
+    )
+    tables = (bands_table(found), holding_table(found), drivers_table(found))
+    return (Section("How sure the figures are", (words,), tuple(one for one in tables if one.rows)),)
 
 
 def _origin(run: StoredRun) -> str:

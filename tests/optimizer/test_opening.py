@@ -78,7 +78,7 @@ def test_a_limit_of_one_s_own_is_opened_by_itself(rooftop):
 
 
 def test_an_end_of_a_search_range_is_moved_where_it_is_in_the_way(rooftop):
-    """Weighted losses above 100 kHz are those of switching: searched from 150 kHz on only, they break 1.5 %."""
+    """Weighted losses above 100 kHz are those of switching: from 150 kHz on they break 1.5 %."""
     concept = rooftop.concepts[2]
     study = range_end("switching_frequency", "min").put(rooftop, 150e3)
     study = replace(study, at_most={"weighted loss": 0.015})

@@ -10,6 +10,7 @@ from scipy.stats import lognorm
 
 from models.uncertainty import FACTORS, SPREAD, TOLERANCE, Uncertainty, factors_at, factors_beside, law_of
 from optimizer.certainty.tolerance import tolerance, with_bands
+from optimizer.fronts import front
 from optimizer.objectives import OBJECTIVES
 from optimizer.prepared import search_space
 
@@ -98,8 +99,6 @@ def test_laws_of_the_factors():
 
 
 def test_columns_stand_beside_a_front(picked, small_search):
-    from optimizer.fronts import front
-
     table = front(small_search).table
     found = of(picked, picked[0].uncertainty, samples=64)
     beside = with_bands(table, {1: found})

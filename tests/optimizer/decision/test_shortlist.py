@@ -9,6 +9,7 @@ import pytest
 from hypothesis import given
 from hypothesis import strategies as st
 
+from optimizer.certainty.tolerance import sampler
 from optimizer.decision import shortlist
 from optimizer.decision.figures import figure
 from optimizer.decision.picks import least_row, recommended_row, weighted_row
@@ -16,6 +17,7 @@ from optimizer.decision.telling import as_csv, as_json, table_suffix
 from optimizer.decision.weights import read_weights, written_weights
 from optimizer.decision.wording import tightest
 from optimizer.errors import InputError
+from optimizer.fronts import front
 
 # five designs; the fourth is off the overall front though it is best at everything
 FRONT = pd.DataFrame(
@@ -213,3 +215,29 @@ def test_the_currency_of_the_study_is_told(stored):
     text = " ".join(shortlist(study, stored.table, stored.margins).entries[1].sentences)
     assert " EUR" in text
     assert "currency" not in text
+
+
+def test_with_tolerances_sampled_the_words_use_them(small_search):
+    found, fronts = small_search, front(small_search)
+    sampled = sampler(found.study, fronts.table, fronts.points)
+    chosen = shortlist(found.study, fronts.table, fronts.margins, None, sampled)
+    for entry in chosen.entries:
+        of = chosen.tolerances[entry.row]
+        words = " ".join(entry.sentences)
+        assert "In nine of ten cases weighted loss" in words
+        assert "typical error" not in words
+        assert f"{100.0 * of.all_hold:.0f} % of inverters built so keep every limit" in words or not (
+            0.01 < of.all_hold < 0.99
+        )
+        assert chosen.design(entry.row)["price_p95"] == of.bands["price"].high
+    told = json.loads(as_json(chosen))["shortlist"][0]
+    assert told["certainty"]["samples"] == 2048
+    assert 0.0 <= told["certainty"]["all_limits_hold"] <= 1.0
+    assert "price_p05" in as_csv(chosen).splitlines()[0]
+
+
+def test_without_them_the_typical_error_stands(small_search):
+    fronts = front(small_search)
+    chosen = shortlist(small_search.study, fronts.table, fronts.margins)
+    assert "typical error" in " ".join(chosen.entries[0].sentences)
+    assert "certainty" not in json.loads(as_json(chosen))["shortlist"][0]

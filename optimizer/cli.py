@@ -224,6 +224,34 @@ def shortlist(
         print_shortlist(chosen)
 
 
+@app.command(epilog='Example: wattfront neighbourhood "runs/rooftop 5 kW" --design balanced')
+def neighbourhood(
+    run: RunFolder,
+    design: Annotated[
+        str | None,
+        typer.Option(
+            help="Id of front.csv, or what the shortlist picks it for; default the recommended one.",
+            show_default=False,
+        ),
+    ] = None,
+    out: Annotated[
+        Path | None, typer.Option(help="Folder to write to; default RUN/neighbourhood.", show_default=False)
+    ] = None,
+    json: Annotated[bool, typer.Option("--json", help="Print JSON, write nothing.")] = False,
+) -> None:
+    """Say what a design's figures hang on and how sure they are: bar charts and tables, CSV, JSON."""
+    from optimizer.certainty.neighbourhood import FOLDER, as_json, write_neighbourhood
+    from optimizer.certainty.neighbourhood import neighbourhood as look_around
+    from optimizer.stored_run import read_run
+
+    found = look_around(read_run(run), design)
+    if json:
+        typer.echo(as_json(found), nl=False)
+        return
+    for path in write_neighbourhood(found, out or run / FOLDER):
+        typer.echo(f"Wrote {path}")
+
+
 @app.command(epilog='Example: wattfront report "runs/rooftop 5 kW" --format pdf --out for_the_board')
 def report(
     run: RunFolder,

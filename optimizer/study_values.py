@@ -129,6 +129,19 @@ def _rule(name: str, unit: str) -> StudyValue:
 RULES = {entry.name: _rule(entry.name, entry.metadata["unit"]) for entry in fields(DesignRules)}
 
 
+def energy_price() -> StudyValue:
+    """Price of a kilowatt-hour [currency]."""
+    return StudyValue(
+        "energy.price_per_kwh",
+        "price of a kilowatt-hour",
+        "",
+        lambda study: study.specification.energy.price_per_kwh,
+        lambda study, value: _specified(
+            study, energy=replace(study.specification.energy, price_per_kwh=value)
+        ),
+    )
+
+
 def own_limit(objective: str) -> StudyValue:
     """The study's own limit on an objective; SI units."""
     units = {"volume": "m^3", "mass": "kg"}

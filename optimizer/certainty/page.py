@@ -11,7 +11,7 @@ import altair as alt
 import pandas as pd
 
 from optimizer.certainty.neighbourhood import Neighbourhood, tightest
-from optimizer.certainty.sensitivity import MARGIN, OBJECTIVE, PERCENT
+from optimizer.certainty.sensitivity import IN_STEPS, MARGIN, OBJECTIVE, PERCENT
 from optimizer.certainty.tolerance import SAMPLES, factor_words
 from optimizer.charts.look import INK, configuration
 from optimizer.charts.picture import PICTURE_FONT
@@ -34,12 +34,14 @@ SHOWN = 14
 TIGHTEST = 4
 """Requirements whose margins are drawn."""
 BETTER, WORSE = "#5f7d88", "#b4532a"
-WIDTH, BAR = 190, 17
+WIDTH, BAR, PALE = 190, 17, 0.4
 HOW = (
-    "Each bar is the change of a figure when one thing rises by 1 %, temperatures by 1 K. Along a variable "
-    "of the design its inductors are built anew; under another specification the very same design is judged, "
-    "and only what the models size themselves (dc link, emission filter) follows. Slopes are taken over "
-    "plus and minus 5 % (5 K), since inductors have whole turns."
+    "Each bar is the change of a figure when one thing rises by 1 %, temperatures by 1 K; red ones are for "
+    "the worse, pale ones an average over steps, such as a capacitor more in series. Along a variable of the "
+    "design its inductors are built anew, and at constant ripple current the inductance follows the "
+    "frequency. Under another specification the very same design is judged; only what the models size "
+    "themselves (dc link, emission filter) follows. Slopes are taken over plus and minus 5 % (5 K), since "
+    "inductors have whole turns."
 )
 
 
@@ -90,7 +92,7 @@ def _bars(
     charts = []
     for place, (name, words) in enumerate(titles.items()):
         rows = effects[(effects["figure"] == name) & effects["words"].isin(order)]
-        values = rows[["words", "change"]].to_dict("records")
+        values = rows[["words", "change", "moves"]].to_dict("records")
         charts.append(_one(values, order, words, first=place == 0, less_is_better=less_is_better))
     chart = alt.HConcatChart(hconcat=charts, spacing=16, config=configuration() | {"font": PICTURE_FONT})
     chart.padding = 6
@@ -112,11 +114,16 @@ def _one(
         axis=alt.Axis(labelLimit=0) if first else None,
     )
     reach = max((abs(record["change"]) for record in values), default=1.0) or 1.0
-    scale = alt.Scale(domain=[-1.35 * reach, 1.35 * reach])
+    scale = alt.Scale(domain=[-1.6 * reach, 1.6 * reach])
     x = alt.X("change:Q", title=title, scale=scale, axis=alt.Axis(tickCount=4))
     worse = "datum.change > 0" if less_is_better else "datum.change < 0"
     base = alt.Chart(alt.Data(values=values))
-    bars = base.mark_bar().encode(x=x, y=y, color=alt.condition(worse, alt.value(WORSE), alt.value(BETTER)))
+    bars = base.mark_bar().encode(
+        x=x,
+        y=y,
+        color=alt.condition(worse, alt.value(WORSE), alt.value(BETTER)),
+        opacity=alt.condition(f"datum.moves === '{IN_STEPS}'", alt.value(PALE), alt.value(1.0)),
+    )
     text = {"text": alt.Text("change:Q", format="+.2~r")}
     right = base.transform_filter("datum.change >= 0").mark_text(align="left", dx=3, color=INK)
     left = base.transform_filter("datum.change < 0").mark_text(align="right", dx=-3, color=INK)
@@ -163,7 +170,9 @@ def bands_table(found: Neighbourhood) -> Table:
     study, rows = found.chosen.study, []
     for entry in told_of(study.objectives):
         band = found.tolerance.bands[entry.name]
-        drivers = ", ".join(f"{factor_words(name)} {100.0 * share:.0f} %" for name, share in band.drivers[:4])
+        drivers = ", ".join(
+            f"{factor_words(name)} {100.0 * share:.0f} %" for name, share in band.drivers[:4] if share >= 0.01
+        )
         values = (entry.number(value) for value in (band.nominal, band.low, band.middle, band.high))
         rows.append((f"{entry.title} [{entry.unit(study.currency)}]", *values, drivers or "-"))
     return Table(

@@ -22,12 +22,18 @@ OFFSETS = np.array([-0.05, -0.0375, -0.025, -0.0125, 0.0, 0.0125, 0.025, 0.0375,
 """Relative changes at which a design is evaluated: far enough out that whole turns, which step, average
 out, near enough that curvature does not count."""
 KELVINS = 100.0 * OFFSETS
+EVENLY, IN_STEPS = "evenly", "in steps"
+STRAIGHT = 0.75
+"""Share of the scatter over the offsets that a straight line explains where a figure moves evenly; below it
+moves in steps, such as one capacitor more in series: a judgement [-]."""
+NOTHING = 1e-9
+"""Changes below it are rounding."""
 FEWEST = 3
 """Offsets that a slope takes at least."""
 DESIGN, SPECIFICATION = "design", "specification"
 PERCENT, KELVIN = "1 %", "1 K"
 OBJECTIVE, MARGIN = "objective", "margin"
-COLUMNS = ("varied", "part of the", "raised by", "figure", "kind", "change", "unit")
+COLUMNS = ("varied", "part of the", "raised by", "figure", "kind", "unit", "change", "moves")
 TEMPERATURE_RULES = ("sink_temperature_limit", "winding_temperature_limit", "junction_margin")
 
 
@@ -49,15 +55,24 @@ class Varied:
         """What slopes are taken over: the logarithm of the varied value, or kelvins."""
         return np.log1p(self.offsets) if self.step == PERCENT else self.offsets
 
-    def change(self, values: Array) -> float:
-        """Change of some values with one step, times 100."""
-        return 100.0 * (0.01 if self.step == PERCENT else 1.0) * float(slope(self.axis, values))
+    def change(self, values: Array) -> tuple[float, str]:
+        """Change of some values with one step, times 100; whether they move evenly or in steps."""
+        found = 100.0 * (0.01 if self.step == PERCENT else 1.0) * float(slope(self.axis, values))
+        if abs(found) <= NOTHING:
+            return 0.0, EVENLY
+        return found, EVENLY if straightness(self.axis, values) >= STRAIGHT else IN_STEPS
 
 
 def slope(offsets: Array, values: Array) -> Array:
     """Least-squares slope of values (s, ...) over offsets (s,): central differences at several distances."""
     centred = offsets - offsets.mean()
     return np.asarray(np.tensordot(centred, values, axes=(0, 0)) / (centred**2).sum())
+
+
+def straightness(offsets: Array, values: Array) -> float:
+    """Share of the variance of values (s,) that a straight line over offsets (s,) explains [-]."""
+    whole = float(np.square(values - values.mean()).sum())
+    return float(slope(offsets, values)) ** 2 * float(np.square(offsets - offsets.mean()).sum()) / whole
 
 
 def sensitivities(space: SearchSpace, point: Array) -> pd.DataFrame:
@@ -76,11 +91,11 @@ def sensitivities(space: SearchSpace, point: Array) -> pd.DataFrame:
     for one in (*_variables(space, point), *_specified(space, point)):
         head = one.words, one.part_of, one.step
         rows += [
-            (*head, name, OBJECTIVE, one.change(np.log(values)), "%")
+            (*head, name, OBJECTIVE, "%", *one.change(np.log(values)))
             for name, values in one.objectives.items()
             if (values > 0.0).all()
         ]
-        rows += [(*head, name, MARGIN, one.change(values), "points") for name, values in one.margins.items()]
+        rows += [(*head, name, MARGIN, "points", *one.change(values)) for name, values in one.margins.items()]
     return pd.DataFrame(rows, columns=list(COLUMNS))
 
 

@@ -11,7 +11,7 @@ import altair as alt
 import pandas as pd
 
 from optimizer.certainty.neighbourhood import Neighbourhood, tightest
-from optimizer.certainty.sensitivity import IN_STEPS, MARGIN, OBJECTIVE, PERCENT
+from optimizer.certainty.sensitivity import IN_STEPS, MARGIN, OBJECTIVE
 from optimizer.certainty.tolerance import SAMPLES, factor_words
 from optimizer.charts.look import INK, configuration
 from optimizer.charts.picture import PICTURE_FONT
@@ -27,22 +27,14 @@ from optimizer.decision.wording import (
 )
 from optimizer.objectives import OBJECTIVES
 from optimizer.report.blocks import Picture, Table, unbroken
+from optimizer.report.certainty import HOW, TIGHTEST, effects_table, varied_words
 from optimizer.report.html_writer import picture_html, table_html
 
 SHOWN = 14
 """Bars of a figure, those of the greatest changes."""
-TIGHTEST = 4
-"""Requirements whose margins are drawn."""
 BETTER, WORSE = "#5f7d88", "#b4532a"
+BARS = "Red bars are for the worse, pale ones an average over steps, such as a capacitor more in series."
 WIDTH, BAR, PALE = 190, 17, 0.4
-HOW = (
-    "Each bar is the change of a figure when one thing rises by 1 %, temperatures by 1 K; red ones are for "
-    "the worse, pale ones an average over steps, such as a capacitor more in series. Along a variable of the "
-    "design its inductors are built anew, and at constant ripple current the inductance follows the "
-    "frequency. Under another specification the very same design is judged; only what the models size "
-    "themselves (dc link, emission filter) follows. Slopes are taken over plus and minus 5 % (5 K), since "
-    "inductors have whole turns."
-)
 
 
 def neighbourhood_page(found: Neighbourhood) -> str:
@@ -59,7 +51,7 @@ def neighbourhood_page(found: Neighbourhood) -> str:
         title=escape(f"{found.design_id}: neighbourhood"),
         subtitle=escape(f"{found.chosen.study.name}; {headline(row)}"),
         sentences="".join(f"<p>{escape(unbroken(text))}</p>" for text in sentences),
-        how=escape(HOW),
+        how=escape(f"{HOW} {BARS}"),
         objectives=picture_html(objectives_picture(found)),
         margins=picture_html(margins_picture(found)),
         table=table_html(effects_table(found)),
@@ -86,7 +78,7 @@ def _bars(
     found: Neighbourhood, kind: str, titles: dict[str, str], title: str, *, less_is_better: bool
 ) -> Picture:
     effects = found.effects[(found.effects["kind"] == kind) & found.effects["figure"].isin(titles)]
-    effects = effects.assign(words=_words(effects))
+    effects = effects.assign(words=varied_words(effects))
     greatest = effects.assign(size=_relative(effects)).groupby("words")["size"].max()
     order = list(greatest.sort_values(ascending=False).index[:SHOWN])
     charts = []
@@ -131,38 +123,10 @@ def _one(
     return alt.LayerChart(layer=layers, width=WIDTH, height=BAR * len(order))
 
 
-def _words(effects: pd.DataFrame) -> pd.Series:
-    step = effects["raised by"].map(lambda told: "" if told == PERCENT else f" (+{told})")
-    return effects["varied"] + step
-
-
 def _relative(effects: pd.DataFrame) -> pd.Series:
     """Sizes of changes over the greatest of the same figure [-]."""
     size = effects["change"].abs()
     return size / size.groupby(effects["figure"]).transform("max").clip(lower=1e-12)
-
-
-def effects_table(found: Neighbourhood) -> Table:
-    """Changes of all objectives and of the tightest margins, a row a thing varied."""
-    names = [*OBJECTIVES, *tightest(found, TIGHTEST)]
-    effects = found.effects.assign(words=_words(found.effects))
-    wide = effects.pivot_table(index="words", columns="figure", values="change", sort=False, aggfunc="first")
-    columns = [name for name in names if name in wide]
-    rows = [
-        (str(words), *(f"{value:+.2f}" if value == value else "-" for value in row))
-        for words, row in zip(wide.index, wide[columns].to_numpy(), strict=True)
-    ]
-    heads = tuple(
-        f"{OBJECTIVES[name].title} [%]" if name in OBJECTIVES else f"{requirement_words(name)} [points]"
-        for name in columns
-    )
-    share = 0.76 / max(len(columns), 1)
-    return Table(
-        ("raised", *heads),
-        tuple(rows),
-        (0.24, *([share] * len(columns))),
-        frozenset(range(1, len(columns) + 1)),
-    )
 
 
 def bands_table(found: Neighbourhood) -> Table:

@@ -2,14 +2,28 @@
 
 from __future__ import annotations
 
+import pandas as pd
+
+from optimizer.certainty.neighbourhood import Neighbourhood, tightest
+from optimizer.certainty.sensitivity import PERCENT
 from optimizer.certainty.tolerance import factor_words
 from optimizer.decision.figures import told_of
 from optimizer.decision.shortlist import Shortlist
 from optimizer.decision.wording import requirement_words
+from optimizer.objectives import OBJECTIVES
 from optimizer.report.blocks import Table, first_wide
 from optimizer.report.designs import LABEL_SHARE, heads
 
 MOST_DRIVERS = 3
+HOW = (
+    "The change of a figure when one thing rises by 1 %, temperatures by 1 K. Along a variable of the "
+    "design its inductors are built anew, and at constant ripple current the inductance follows the "
+    "frequency. Under another specification the very same design is judged; only what the models size "
+    "themselves (dc link, emission filter) follows. Slopes are taken over plus and minus 5 % (5 K), since "
+    "inductors have whole turns."
+)
+TIGHTEST = 4
+"""Requirements whose margins are told of a design's neighbourhood."""
 
 
 def bands_table(found: Shortlist) -> Table:
@@ -57,6 +71,35 @@ def drivers_table(found: Shortlist) -> Table:
         rows.append((entry.title, *cells))
     title = "What the scatter comes from (shares of squared rank correlations)"
     return Table(("", *heads(found)), tuple(rows), first_wide(len(found.rows), LABEL_SHARE), title=title)
+
+
+def effects_table(found: Neighbourhood) -> Table:
+    """Changes of all objectives and of the tightest margins, a row a thing varied."""
+    names = [*OBJECTIVES, *tightest(found, TIGHTEST)]
+    effects = found.effects.assign(words=varied_words(found.effects))
+    wide = effects.pivot_table(index="words", columns="figure", values="change", sort=False, aggfunc="first")
+    columns = [name for name in names if name in wide]
+    rows = [
+        (str(words), *(f"{value:+.2f}" if value == value else "-" for value in row))
+        for words, row in zip(wide.index, wide[columns].to_numpy(), strict=True)
+    ]
+    heads = tuple(
+        f"{OBJECTIVES[name].title} [%]" if name in OBJECTIVES else f"{requirement_words(name)} [points]"
+        for name in columns
+    )
+    share = 0.76 / max(len(columns), 1)
+    return Table(
+        ("raised", *heads),
+        tuple(rows),
+        (0.24, *([share] * len(columns))),
+        frozenset(range(1, len(columns) + 1)),
+    )
+
+
+def varied_words(effects: pd.DataFrame) -> pd.Series:
+    """What is varied, with its step where that is not 1 %."""
+    step = effects["raised by"].map(lambda told: "" if told == PERCENT else f" (+{told})")
+    return effects["varied"] + step
 
 
 def _table(found: Shortlist, head: str, rows: list[tuple[str, ...]], title: str) -> Table:

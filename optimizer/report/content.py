@@ -4,6 +4,8 @@ from __future__ import annotations
 
 from dataclasses import dataclass
 
+from optimizer.audited_run import stored_points
+from optimizer.certainty.neighbourhood import around
 from optimizer.charts.task import task_words
 from optimizer.charts.words import CAUTION, CAUTIONS
 from optimizer.decision.figures import ALWAYS, COST, LOSS, MASS, PRICE, VOLUME, Told, figure, told_of
@@ -17,7 +19,7 @@ from optimizer.report.backgrounds import (
     specification_table,
 )
 from optimizer.report.blocks import Picture, Section, Table
-from optimizer.report.certainty import bands_table, drivers_table, holding_table
+from optimizer.report.certainty import HOW, bands_table, drivers_table, effects_table, holding_table
 from optimizer.report.designs import build_table, component_tables, margin_table, words_table
 from optimizer.report.pictures import pictures
 from optimizer.stored_run import StoredRun
@@ -198,7 +200,7 @@ def _sections(run: StoredRun, found: Shortlist) -> tuple[Section, ...]:
             ("What binds where: 0 is at the limit. Temperatures count over the rise allowed, 20 dB as 100.",),
             (margin_table(found),),
         ),
-        *_certainty(found),
+        *_certainty(run, found),
         Section(
             "Specification and design rules", (), (specification_table(run.study), rules_table(run.study))
         ),
@@ -214,7 +216,7 @@ def _sections(run: StoredRun, found: Shortlist) -> tuple[Section, ...]:
     )
 
 
-def _certainty(found: Shortlist) -> tuple[Section, ...]:
+def _certainty(run: StoredRun, found: Shortlist) -> tuple[Section, ...]:
     if not found.tolerances:
         return ()
     samples = next(iter(found.tolerances.values())).samples
@@ -224,7 +226,12 @@ def _certainty(found: Shortlist) -> tuple[Section, ...]:
         "inverters keep a limit, leave reserve before building it."
     )
     tables = (bands_table(found), holding_table(found), drivers_table(found))
-    return (Section("How sure the figures are", (words,), tuple(one for one in tables if one.rows)),)
+    recommended = around(run, found, found.recommended, stored_points(run))
+    hangs = f"What the figures of {recommended.design_id} hang on"
+    return (
+        Section("How sure the figures are", (words,), tables),
+        Section(hangs, (HOW,), (effects_table(recommended),), on_slides=False),
+    )
 
 
 def _origin(run: StoredRun) -> str:

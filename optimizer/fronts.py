@@ -5,7 +5,7 @@ names.
 from __future__ import annotations
 
 from collections.abc import Sequence
-from dataclasses import dataclass
+from dataclasses import dataclass, replace
 from typing import Any
 
 import moocore
@@ -25,6 +25,10 @@ from optimizer.emission_lines import EmissionLines, emission_lines, joined_lines
 from optimizer.objectives import OBJECTIVES, distortion_column, margins_of, requirements_of
 from optimizer.populations import SearchResult
 from optimizer.prepared import search_space
+from optimizer.ranking import high_figures
+from optimizer.space import SearchSpace
+from optimizer.study import Study
+from optimizer.study_schema import HIGH_VALUES
 
 Array = NDArray[np.float64]
 SPECTRUM_DIGITS = 4
@@ -89,6 +93,8 @@ def front(result: SearchResult) -> Front:
     ids = [
         f"{found.concept.initials}-{number:04d}" for found, rows in kept for number in range(1, len(rows) + 1)
     ]
+    high = high_columns(result.study, np.concatenate([found.objectives[rows] for found, rows in kept]))
+    table = pd.concat([table, pd.DataFrame(high, index=table.index)], axis=1) if high else table
     table.insert(0, "design_id", ids)
     table.insert(1, "concept", np.concatenate([[found.concept.name] * len(rows) for found, rows in kept]))
     table.insert(2, "class_front", True)
@@ -113,7 +119,11 @@ def front(result: SearchResult) -> Front:
         binding=pd.concat(
             [
                 binding_table(
-                    found.concept.name, space, found.points[rows], designs.switching_frequency_hz, entries
+                    found.concept.name,
+                    space,
+                    found.points[rows],
+                    designs.switching_frequency_hz,
+                    _as_ranked(space, found.points[rows], entries),
                 )
                 for (found, rows), space, (_, designs, _), entries in zip(
                     kept, spaces, parts, required, strict=True
@@ -124,12 +134,36 @@ def front(result: SearchResult) -> Front:
     )
 
 
+def _as_ranked(
+    space: SearchSpace, points: Array, constraints: tuple[Constraint, ...]
+) -> tuple[Constraint, ...]:
+    """Requirements with the margins that candidates had to keep in the search."""
+    if space.study.search.rank_by != HIGH_VALUES:
+        return constraints
+    margins = high_figures(space, points, [OBJECTIVES[name] for name in space.study.objectives]).margins
+    return tuple(replace(entry, margin=margins[:, place]) for place, entry in enumerate(constraints))
+
+
 def _class_front(found: ClassResult, resolution: float) -> NDArray[np.int64]:
     """Rows of a class's non-dominated candidates that can be told apart, sorted by the first objective."""
     _, first = np.unique(found.objectives, axis=0, return_index=True)
     rows = first[moocore.is_nondominated(found.objectives[first])]
     rows = rows[distinct_rows(found.objectives[rows], resolution)]
     return rows[np.lexsort(found.objectives[rows].T[::-1])]
+
+
+def high_columns(study: Study, objectives: Array) -> dict[str, Array]:
+    """Columns of what 95 % of inverters stay below, where candidates were ranked by that; none else.
+
+    Args:
+        study: the study.
+        objectives: what they were ranked by (n, m).
+    """
+    if study.search.rank_by != HIGH_VALUES:
+        return {}
+    return {
+        f"{OBJECTIVES[name].column}_p95": objectives[:, place] for place, name in enumerate(study.objectives)
+    }
 
 
 def distinct_rows(objectives: Array, resolution: float) -> NDArray[np.int64]:

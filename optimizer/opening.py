@@ -213,10 +213,11 @@ def _each_once(tried: Sequence[Change]) -> list[Change]:
 
 def _misses(space: SearchSpace, point: Array) -> tuple[Miss, ...]:
     result = space.inverter.evaluate(space.designs(point))
+    _, margins = ClassProblem(space).figures(point)
     found = [
-        Miss(entry.name, entry.unit, float(entry.value[0]), float(entry.limit[0]), -float(entry.margin[0]))
-        for entry in requirements_of(space.study.at_most, result)
-        if entry.margin[0] < 0.0
+        Miss(entry.name, entry.unit, float(entry.value[0]), float(entry.limit[0]), -float(margin))
+        for entry, margin in zip(requirements_of(space.study.at_most, result), margins[0], strict=True)
+        if margin < 0.0
     ]
     return tuple(sorted(found, key=lambda miss: -miss.over))
 

@@ -10,7 +10,8 @@ import numpy as np
 from numpy.typing import NDArray
 from pymoo.core.problem import Problem
 
-from optimizer.objectives import OBJECTIVES, Objective, margins_of, requirements_of
+from optimizer.objectives import OBJECTIVES, Objective
+from optimizer.ranking import RANKED_BY
 from optimizer.space import SearchSpace
 
 Array = NDArray[np.float64]
@@ -83,12 +84,14 @@ class ClassProblem(Problem):
         return objectives, violation_of(margins)
 
     def figures(self, points: Array) -> tuple[Array, Array]:
-        """Objectives (n, m) and margins (n, c) of repaired points; the archive takes them in."""
-        result = self.space.inverter.evaluate(self.space.designs(points))
-        objectives = np.stack([objective.read(result) for objective in self.chosen], axis=-1)
-        margins = margins_of(requirements_of(self.space.study.at_most, result))
-        self.archive.add(points, objectives, result.filter_volume, margins, violation_of(margins))
-        return objectives, margins
+        """Objectives (n, m) and margins (n, c) of repaired points, as the study ranks them; the archive takes
+        them in.
+        """
+        found = RANKED_BY[self.space.study.search.rank_by](self.space, points, self.chosen)
+        self.archive.add(
+            points, found.objectives, found.filter_volume, found.margins, violation_of(found.margins)
+        )
+        return found.objectives, found.margins
 
 
 def violation_of(margins: Array) -> Array:

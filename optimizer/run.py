@@ -22,13 +22,16 @@ from numpy.typing import NDArray
 from optimizer.concept_search import ClassResult, Progress
 from optimizer.csv_table import csv_bytes
 from optimizer.errors import NothingFeasible
-from optimizer.fronts import LITRES, Front, choices, front
+from optimizer.fronts import LITRES, Front, choices, front, high_columns
 from optimizer.objectives import OBJECTIVES
 from optimizer.opening import Shortfall, shortfall
 from optimizer.populations import SearchResult, process_context, search
 from optimizer.prepared import prepare, search_space
+from optimizer.ranking import nominal_figures
 from optimizer.run_folder import RUN_FILE, STUDY_FILE, Content, check_folder, parts_copy, write_run
+from optimizer.space import SearchSpace
 from optimizer.study import Study
+from optimizer.study_schema import HIGH_VALUES
 from optimizer.unfinished import Unfinished, task_of
 
 RUN_FORMAT = 2
@@ -223,16 +226,18 @@ def evaluated_table(result: SearchResult) -> pd.DataFrame:
             space = search_space(result.study, found.concept)
             columns: dict[str, Any] = {"concept": found.concept.name}
             columns |= choices(space.inverter, space.designs(found.points))
-            columns |= _objective_columns(result.study, found)
+            columns |= _objective_columns(space, found)
             columns["filter_volume_l"] = LITRES * found.filter_volume
             parts.append(pd.DataFrame(columns))
     return pd.concat(parts, ignore_index=True)
 
 
-def _objective_columns(study: Study, found: ClassResult) -> dict[str, Array]:
-    return {
-        OBJECTIVES[name].column: found.objectives[:, place] for place, name in enumerate(study.objectives)
-    }
+def _objective_columns(space: SearchSpace, found: ClassResult) -> dict[str, Array]:
+    """The models' own values, and beside them what the candidates were ranked by where that is another."""
+    chosen = [OBJECTIVES[name] for name in space.study.objectives]
+    high = high_columns(space.study, found.objectives)
+    values = nominal_figures(space, found.points, chosen).objectives if high else found.objectives
+    return {entry.column: values[:, place] for place, entry in enumerate(chosen)} | high
 
 
 def summary_of(result: SearchResult, fronts: Front) -> dict[str, Any]:
@@ -251,6 +256,8 @@ def summary_of(result: SearchResult, fronts: Front) -> dict[str, Any]:
         "seed": result.seed,
         "population": study.search.population,
         "generations": study.search.generations,
+        "rank_by": study.search.rank_by,
+        "limits_hold": study.search.limits_hold if study.search.rank_by == HIGH_VALUES else None,
         "objectives": [
             {
                 "name": name,

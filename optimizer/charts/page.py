@@ -16,7 +16,7 @@ from optimizer.charts.library import library_beside
 from optimizer.charts.quantities import LOSS, VOLUME, component_words, quantity_of
 from optimizer.charts.task import task_words
 from optimizer.charts.views import content, linked_views
-from optimizer.charts.words import HELP, cautions, drawn, missing, origin
+from optimizer.charts.words import HELP, cautions, drawn, missing, origin, ranked
 from optimizer.fronts import Front
 from optimizer.study import Study
 
@@ -35,7 +35,12 @@ def dashboard_html(
     with library_beside() as library:
         found = content(study, front, evaluated)
         spec = linked_views(study, found).to_dict(validate=False) | {"datasets": found.datasets()}
-        about = [*missing(study, found.designs, summary), *drawn(found.designs), *origin(summary)]
+        about = [
+            *missing(study, found.designs, summary),
+            *drawn(found.designs),
+            *ranked(study),
+            *origin(summary),
+        ]
         return Template(_part("page.html")).substitute(
             title=escape(study.name),
             description=escape(study.description),

@@ -7,6 +7,7 @@ from typing import Any
 
 from optimizer.charts.design_data import DesignData
 from optimizer.study import Study
+from optimizer.study_schema import HIGH_VALUES
 
 CAUTION = (
     "Early-concept figures from analytic models and representative parts. A dc link stores lethal energy; "
@@ -62,6 +63,17 @@ def missing(study: Study, data: DesignData, summary: Mapping[str, Any]) -> list[
                 + "".join(f" {line.strip()}" for line in openings.get(name, {}).get("words", [])[1:])
             )
     return told
+
+
+def ranked(study: Study) -> list[str]:
+    """What designs were ranked by, where not by the values drawn."""
+    if study.search.rank_by != HIGH_VALUES:
+        return []
+    share = 100.0 * study.search.limits_hold
+    return [
+        "Ranked by what 95 % of inverters stay below, every limit kept by at least "
+        f"{share:g} % of them; what is drawn are nominal values, which a front of these need not bound."
+    ]
 
 
 def origin(summary: Mapping[str, Any]) -> list[str]:

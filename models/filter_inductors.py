@@ -14,25 +14,24 @@ from models.magnetics.core_bands import CoreBands
 from models.magnetics.core_loss import steinmetz_loss, switched_loss
 from models.magnetics.inductor import Inductor, InductorDuty, inductor, where_present
 from models.output_filter import LinePhasors
-from models.waveforms.spectrum import CARRIER_GROUPS
 from models.waveforms.state import WaveformState
-from models.waveforms.tables import WaveformTables
+from models.waveforms.tables import GROUP_MULTIPLES, WaveformTables
 
 Array = NDArray[np.float64]
 Ints = NDArray[np.int64]
-GROUPS = np.arange(1.0, CARRIER_GROUPS + 1)
 
 
 @dataclass(frozen=True)
 class Surroundings:
     """What both inductors share: line frequency [Hz], air around them [degC], rise factor (n,) [-], labour
-    [currency].
+    [currency], wall of coil formers [m].
     """
 
     line_frequency_hz: float
     ambient_c: float
     rise_factor: Array
     labour: float
+    former_wall: float
 
 
 @dataclass(frozen=True)
@@ -72,7 +71,7 @@ def bridge_side(
         view: ripple points.
         around: surroundings.
     """
-    built = build(catalog, designs.inverter_inductor)
+    built = build(catalog, designs.inverter_inductor, around.former_wall)
     columns = list(view.columns)
     scheme, row, weight = state.scheme, state.row[:, columns], state.weight[:, columns]
     unit = state.ripple_unit[:, columns]
@@ -98,7 +97,7 @@ def bridge_side(
             peak_current=peak_current,
             line_current=np.abs(phasors.inverter_current),
             group_mean_square=groups[:, view.spread],
-            group_frequency=frequency[:, None] * GROUPS,
+            group_frequency=frequency[:, None] * GROUP_MULTIPLES,
             switched_loss_density=density[:, view.spread],
             line_frequency_hz=around.line_frequency_hz,
             ambient_c=around.ambient_c,
@@ -123,7 +122,7 @@ def grid_side(
         ripple_rms: switching-frequency rms current at the greatest dc voltage (n,) [A]; others as in
             `bridge_side`.
     """
-    built = build(catalog, designs.grid_inductor)
+    built = build(catalog, designs.grid_inductor, around.former_wall)
     frequency = designs.switching_frequency_hz * tables.main_carrier[designs.modulation]
     material = designs.grid_inductor.material
     turns_area = built.turns * built.area

@@ -267,6 +267,7 @@ class Inverter:
             spec.ambient_c + rules.internal_air_rise,
             np.where(designs.cooling == FORCED, rules.forced_inductor_rise_factor, 1.0),
             float(self.catalog.cost.inductor_labour_at(spec.apparent_power_va)),
+            rules.coil_former_wall,
         )
         count = points.losses.stop
         spread = (np.arange(count) >= points.thermal.start).astype(np.int64)

@@ -156,6 +156,7 @@ def _inductor(
         at_least(f"{name} inductance possible", "of required", part.inductance_share, 0.999),
         at_most(f"{name} gap", "of winding breadth", part.gap_share, rules.gap_share_limit),
         at_most(f"{name} window fill", "", part.window_fill, 1.0),
+        at_most(f"{name} layers", "of the window's room", part.layer_share, 1.0),
         at_most(f"{name} temperature", "degC", temperature, limit, limit - 40.0),
     )
 

@@ -36,6 +36,9 @@ class DesignRules:
     winding_temperature_limit: float = rule(
         130.0, "degC", "mean winding temperature allowed (class F with reserve)"
     )
+    coil_former_wall: float = rule(
+        0.0015, "m", "wall of coil formers, between core and winding and at the winding's ends"
+    )
     gap_share_limit: float = rule(0.3, "", "greatest total air gap over the winding breadth")
     forced_inductor_rise_factor: float = rule(
         0.5, "", "temperature rise of inductors in the fan's air over still air"

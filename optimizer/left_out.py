@@ -136,6 +136,7 @@ def _inductor(side: str, inductance: Array, peak: Array, inverter: Inverter) -> 
         np.full(count, FLUX_USE),
         np.full(count, WINDOW_USE),
         spec.rules.saturation_use,
+        spec.rules.coil_former_wall,
     )
     return {
         f"{side}_inductor_core_material": built.material,

@@ -283,6 +283,7 @@ class SearchSpace:
             values[f"{side} flux use"],
             values[f"{side} window use"],
             self.study.specification.rules.saturation_use,
+            self.study.specification.rules.coil_former_wall,
         )
 
     @cached_property

@@ -161,6 +161,11 @@ class CoreShape:
     stackable: bool
     origin: Mapping[str, str] = field(default_factory=dict, compare=False, repr=False)
 
+    @property
+    def in_hole(self) -> bool:
+        """Whether the winding goes through the hole of a ring, without a coil former."""
+        return self.family.startswith("toroid")
+
 
 @dataclass(frozen=True)
 class Conductor:

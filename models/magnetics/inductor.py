@@ -8,7 +8,8 @@ import numpy as np
 from numpy.typing import NDArray
 
 from models.catalog.parts import Catalog
-from models.magnetics.build import Build, resistance_ratio
+from models.magnetics.ac_resistance import resistance_ratio
+from models.magnetics.build import Build
 from models.magnetics.core_loss import bias_factor, line_loss
 from models.magnetics.gap import gap_for_inductance, powder_inductance
 from models.magnetics.surface_cooling import box_surface, still_air_rise
@@ -58,7 +59,8 @@ class Inductor:
         inductance_share: inductance that the build can reach at peak current (a gapped core: without gap)
             over the required one [-].
         gap: total air gap, 0 for powder [m]; gap_share: over the winding breadth [-].
-        window_fill: copper over what the window takes [-].
+        window_fill: copper over what the window takes [-]; layer_share: of the window's room that the layers
+            take, above 1 they do not fit [-].
         volume: boxed [m3]; mass: [kg]; price: [currency].
         resistance: dc at 20 degC [ohm].
     """
@@ -73,6 +75,7 @@ class Inductor:
     gap: Array
     gap_share: Array
     window_fill: Array
+    layer_share: Array
     volume: Array
     mass: Array
     price: Array
@@ -113,6 +116,7 @@ def inductor(catalog: Catalog, built: Build, duty: InductorDuty, labour: float) 
         gap=np.where(powder, 0.0, np.maximum(gap, 0.0)),
         gap_share=np.where(powder, 0.0, gap / built.breadth),
         window_fill=built.window_fill,
+        layer_share=built.layers.share,
         volume=built.box_volume,
         mass=built.core_mass + built.copper_mass,
         price=_price(catalog, built, labour),

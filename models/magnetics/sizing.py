@@ -17,6 +17,7 @@ from scipy.constants import mu_0
 from models.catalog.parts import Catalog
 from models.designs import InductorDesigns
 from models.magnetics.gap import powder_permeability_share
+from models.magnetics.layers import LITZ_PACKING, former_wall, thickest_round
 
 Array = NDArray[np.float64]
 Ints = NDArray[np.int64]
@@ -87,6 +88,7 @@ def size_inductor(
     flux_use: Array,
     window_use: Array,
     saturation_use: float,
+    wall: float,
 ) -> InductorDesigns:
     """Choose core, stack, turns and copper area.
 
@@ -99,12 +101,13 @@ def size_inductor(
         flux_use: share of the allowed flux density to use, gapped cores (n,) [-].
         window_use: share of the copper that the window takes to use (n,) [-].
         saturation_use: greatest flux density over saturation [-].
+        wall: thickness of coil formers [m].
 
     Returns:
-        The builds; turns are whole and at least 1. Where the ladder ends too early the largest core is taken,
-        and the evaluation will say what it lacks.
+        The builds; turns are whole and at least 1, the copper no more than fits in whole layers. Where the
+        ladder ends too early the largest core is taken, and the evaluation will say what it lacks.
     """
-    materials, shapes, conductors = catalog.core_materials, catalog.core_shapes, catalog.conductors
+    materials, shapes = catalog.core_materials, catalog.core_shapes
     powder = materials.column("kind")[material] == "powder"
     allowed_flux = np.where(
         powder, _powder_flux(catalog)[material], materials.column("saturation_t")[material] * saturation_use
@@ -124,13 +127,7 @@ def size_inductor(
         catalog, material, area, shapes.column("path_length_m")[shape], inductance, peak_current
     )
     turns = np.maximum(np.where(powder, powder_turns, gapped_turns), 1.0)
-    in_hole = np.char.startswith(shapes.column("family")[shape].astype(str), "toroid")
-    share = np.where(
-        in_hole,
-        conductors.column("copper_share_toroid")[conductor],
-        conductors.column("copper_share_bobbin")[conductor],
-    )
-    copper = window_use * np.maximum(share, 1e-3) * shapes.column("window_area_m2")[shape] / turns
+    copper = _copper(catalog, shape, conductor, turns, window_use, wall)
     return InductorDesigns(
         material=material,
         shape=shape,
@@ -139,6 +136,37 @@ def size_inductor(
         conductor=conductor,
         copper_area_m2=copper,
     )
+
+
+def _copper(
+    catalog: Catalog, shape: Ints, conductor: Ints, turns: Array, window_use: Array, wall: float
+) -> Array:
+    """Copper of a turn: the wanted share of what the window takes, no more than fits in layers (n,) [m2]."""
+    shapes, conductors = catalog.core_shapes, catalog.conductors
+    in_hole = shapes.column("in_hole")[shape]
+    kind, largest = (conductors.column(name)[conductor] for name in ("kind", "strand_diameter_m"))
+    outer, on_bobbin, on_ring = (
+        conductors.column(name)[conductor]
+        for name in ("strand_outer_factor", "copper_share_bobbin", "copper_share_toroid")
+    )
+    share = np.where(in_hole, on_ring, on_bobbin)
+    window, breadth, coils = (
+        shapes.column(name)[shape] for name in ("window_area_m2", "window_breadth_m", "coil_count")
+    )
+    wanted = window_use * np.maximum(share, 1e-3) * window / turns
+    height = window / (coils * breadth)
+    inset = former_wall(wall, height)
+    room = breadth - 2.0 * inset, height - inset
+    parallel = np.where(
+        kind == "round", np.maximum(np.ceil(wanted / (0.25 * np.pi * largest**2 + 1e-30)), 1.0), 1.0
+    )
+    wire = thickest_round(parallel * np.ceil(turns / coils), *room) / np.where(kind == "litz", 1.0, outer)
+    packing = np.where(kind == "litz", LITZ_PACKING / outer**2, parallel)
+    sheet = room[0] * room[1] / (turns / coils * outer)
+    # litz is rounded to whole strands, which must not make it thicker
+    strand = np.where(kind == "litz", 0.125 * np.pi * largest**2, 0.0)
+    fitting = np.where(kind == "foil", sheet, 0.25 * np.pi * wire**2 * packing - strand)
+    return np.where(in_hole, wanted, np.minimum(wanted, np.maximum(fitting, 1e-3 * wanted)))
 
 
 def _powder_flux(catalog: Catalog) -> Array:

@@ -40,11 +40,13 @@ def seen(spaces: Spaces, draw: Draw, monkeypatch: pytest.MonkeyPatch) -> Seen:
 
 
 def test_bridge_side_ripple_by_carrier_groups(seen: Seen, spaces: Spaces) -> None:
-    """Groups stand at multiples of the switching frequency and together have the ripple's mean square."""
+    """Groups stand at multiples of the switching frequency, those beyond the sixth together, and have the
+    ripple's mean square.
+    """
     designs, found, calls = seen
     _, duty = calls[0]
     multiples = duty.group_frequency / designs.switching_frequency_hz[:, None]
-    assert multiples == pytest.approx(np.broadcast_to(np.arange(1.0, 7.0), multiples.shape))
+    assert multiples == pytest.approx(np.broadcast_to([*np.arange(1.0, 7.0), 11.0], multiples.shape))
     inverter = spaces[SPACE].inverter
     names = [scheme.name for scheme in inverter.bridge.modulations]
     spec = inverter.specification

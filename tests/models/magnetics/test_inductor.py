@@ -8,7 +8,8 @@ import numpy as np
 import pytest
 
 from models.catalog import Catalog
-from models.magnetics.build import Build, build, resistance_ratio
+from models.magnetics.ac_resistance import resistance_ratio
+from models.magnetics.build import Build, build
 from models.magnetics.gap import gapped_inductance
 from models.magnetics.inductor import Inductor, InductorDuty, dc_resistance, inductor, where_present
 from models.magnetics.sizing import core_ladder, size_inductor
@@ -37,7 +38,9 @@ def built(catalog: Catalog) -> Build:
             rng.uniform(0.3, 1.0, COUNT),
             rng.uniform(0.3, 1.0, COUNT),
             0.85,
+            1.5e-3,
         ),
+        1.5e-3,
     )
 
 

@@ -28,7 +28,9 @@ def sized(catalog: Catalog, ladder: CoreLadder, material: int, **changed: Any) -
         "window_use": 0.7,
     } | changed
     values = {name: np.array([value]) for name, value in asked.items()}
-    return size_inductor(catalog, ladder, np.array([material]), np.array([0]), **values, saturation_use=0.85)
+    return size_inductor(
+        catalog, ladder, np.array([material]), np.array([0]), **values, saturation_use=0.85, wall=1.5e-3
+    )
 
 
 def kind(catalog: Catalog, name: str) -> list[int]:
@@ -68,7 +70,7 @@ def test_gapped_core_uses_no_more_than_the_flux_asked_for(catalog: Catalog, ladd
     for material in kind(catalog, "gapped"):
         for use in (0.3, 0.8, 1.0):
             chosen = sized(catalog, ladder, material, flux_use=use)
-            found = build(catalog, chosen)
+            found = build(catalog, chosen, 1.5e-3)
             flux = 4e-4 * 30.0 / (found.turns * found.area)
             assert flux <= use * 0.85 * catalog.core_materials[material].saturation_t * (1.0 + 1e-9)
             one_less = 4e-4 * 30.0 / ((found.turns - 1.0) * found.area)
@@ -77,7 +79,7 @@ def test_gapped_core_uses_no_more_than_the_flux_asked_for(catalog: Catalog, ladd
 
 def test_gapped_core_can_have_its_gap(catalog: Catalog, ladder: CoreLadder) -> None:
     for material in kind(catalog, "gapped"):
-        found = build(catalog, sized(catalog, ladder, material))
+        found = build(catalog, sized(catalog, ladder, material), 1.5e-3)
         gap = gap_for_inductance(
             found.turns,
             np.array([4e-4]),
@@ -95,7 +97,7 @@ def test_powder_core_reaches_the_inductance_at_peak_current_where_the_core_is_la
     reached = []
     for material in kind(catalog, "powder"):
         part = catalog.core_materials[material]
-        found = build(catalog, sized(catalog, ladder, material, size_factor=6.0, inductance=1e-4))
+        found = build(catalog, sized(catalog, ladder, material, size_factor=6.0, inductance=1e-4), 1.5e-3)
         core = (part.initial_permeability, part.rolloff_field_a_per_m, part.rolloff_exponent)
         at_peak = powder_inductance(
             found.turns, np.array([30.0]), found.area, found.path, *(np.array([value]) for value in core)
@@ -108,13 +110,13 @@ def test_copper_fills_the_share_of_the_window(catalog: Catalog, ladder: CoreLadd
     foil_free = [i for i, part in enumerate(catalog.conductors) if part.kind == "round"]
     chosen = sized(catalog, ladder, kind(catalog, "gapped")[0], window_use=0.6)
     assert foil_free
-    assert build(catalog, chosen).window_fill == pytest.approx(0.6, rel=0.1)
+    assert build(catalog, chosen, 1.5e-3).window_fill == pytest.approx(0.6, rel=0.1)
 
 
 def test_larger_factor_never_gives_a_smaller_core(catalog: Catalog, ladder: CoreLadder) -> None:
     for material in range(len(catalog.core_materials)):
         boxes = [
-            build(catalog, sized(catalog, ladder, material, size_factor=factor)).box_volume[0]
+            build(catalog, sized(catalog, ladder, material, size_factor=factor), 1.5e-3).box_volume[0]
             for factor in (0.5, 1.0, 2.0, 4.0, 8.0)
         ]
         assert np.all(np.diff(boxes) >= 0.0)

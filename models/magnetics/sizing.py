@@ -25,6 +25,7 @@ REFERENCE_CURRENT_DENSITY = 4e6  # A/m2, judgement for still air: it only sets w
 REFERENCE_COPPER_SHARE = 0.35  # judgement, likewise
 STACK_LIMIT = 4  # cores side by side, judgement
 TURN_STEPS = 12
+SNUG = 0.999  # of the copper that just fits in whole layers: rounded figures of it still fit
 
 
 @dataclass(frozen=True)
@@ -166,7 +167,7 @@ def _copper(
     # litz is rounded to whole strands, which must not make it thicker
     strand = np.where(kind == "litz", 0.125 * np.pi * largest**2, 0.0)
     fitting = np.where(kind == "foil", sheet, 0.25 * np.pi * wire**2 * packing - strand)
-    return np.where(in_hole, wanted, np.minimum(wanted, np.maximum(fitting, 1e-3 * wanted)))
+    return np.where(in_hole, wanted, np.minimum(wanted, np.maximum(SNUG * fitting, 1e-3 * wanted)))
 
 
 def _powder_flux(catalog: Catalog) -> Array:

@@ -21,13 +21,15 @@ from models.capacitors import (
 from models.catalog.gathered import Gathered
 from models.catalog.parts import AcCapacitor, Catalog
 from models.cooling import SinkCurve, SinkPoint, sink_curve_cold_plate, sink_curve_forced, sink_curve_natural
+from models.cooling.air import STANDARD_PRESSURE_PA, pressure_at_altitude
 from models.designs import COLD_PLATE, FORCED, Designs
 from models.distortion import Distortion, worse
 from models.emission.emission_filter import Emission, EmissionModel
 from models.evaluation import Evaluation, joined
 from models.filter_inductors import RippleView, Surroundings, bridge_side, grid_side
 from models.magnetics.core_bands import CoreBands, core_bands
-from models.magnetics.inductor import Inductor
+from models.magnetics.inductor import Inductor, InductorMaking
+from models.magnetics.two_nodes import Air
 from models.operating_points import OperatingPoints, operating_points
 from models.output_distortion import Spectrum, current_distortion, spectrum, voltage_distortion
 from models.output_filter import Filter, LinePhasors, line_phasors, resonance_hz
@@ -264,10 +266,17 @@ class Inverter:
         rules = spec.rules
         around = Surroundings(
             spec.line_frequency_hz,
-            spec.ambient_c + rules.internal_air_rise,
-            np.where(designs.cooling == FORCED, rules.forced_inductor_rise_factor, 1.0),
-            float(self.catalog.cost.inductor_labour_at(spec.apparent_power_va)),
-            rules.coil_former_wall,
+            Air(
+                spec.ambient_c + rules.internal_air_rise,
+                float(pressure_at_altitude(np.asarray(spec.altitude_m))) / STANDARD_PRESSURE_PA,
+                np.where(designs.cooling == FORCED, rules.inductor_air_speed, 0.0),
+            ),
+            InductorMaking(
+                float(self.catalog.cost.inductor_labour_at(spec.apparent_power_va)),
+                rules.coil_former_wall,
+                rules.largest_gap_section,
+                rules.gap_section_price,
+            ),
         )
         count = points.losses.stop
         spread = (np.arange(count) >= points.thermal.start).astype(np.int64)

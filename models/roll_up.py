@@ -246,7 +246,10 @@ def _details(spec: Specification, points: OperatingPoints, found: Findings) -> d
             f"{name}_gap_m": part.gap,
             f"{name}_window_fill": part.window_fill,
             f"{name}_inductance_left": part.inductance_left,
-            f"{name}_temperature_c": part.temperature[:, points.thermal].max(-1),
+            f"{name}_gap_sections": part.gap_sections,
+            f"{name}_layer_share": part.layer_share,
+            f"{name}_winding_temperature_c": part.winding_temperature[:, points.thermal].max(-1),
+            f"{name}_core_temperature_c": part.core_temperature[:, points.thermal].max(-1),
             f"{name}_resistance_ohm": part.resistance,
         }
     return details

@@ -39,10 +39,14 @@ class DesignRules:
     coil_former_wall: float = rule(
         0.0015, "m", "wall of coil formers, between core and winding and at the winding's ends"
     )
-    gap_share_limit: float = rule(0.3, "", "greatest total air gap over the winding breadth")
-    forced_inductor_rise_factor: float = rule(
-        0.5, "", "temperature rise of inductors in the fan's air over still air"
+    gap_share_limit: float = rule(0.3, "", "greatest total air gap over the winding breadth of all legs")
+    largest_gap_section: float = rule(
+        0.002, "m", "greatest length of one section of an inductor's air gap; longer gaps are split"
     )
+    gap_section_price: float = rule(
+        0.5, "", "price of a further gap section: block of core, spacer, bonding [currency]"
+    )
+    inductor_air_speed: float = rule(2.0, "m/s", "air speed past inductors in the fan's air")
     resonance_over_line: float = rule(10.0, "", "least resonance frequency over the line frequency")
     resonance_over_switching: float = rule(
         0.5, "", "greatest resonance frequency over the switching frequency"

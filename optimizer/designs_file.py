@@ -287,7 +287,16 @@ _RESULT_NAMES = {
     "dc_voltage_needed_v",
     "filter_reactive_share",
 }
-_RESULT_ENDS = ("_flux_t", "_gap_m", "_window_fill", "_inductance_left", "_temperature_c", "_resistance_ohm")
+_RESULT_ENDS = (
+    "_flux_t",
+    "_gap_m",
+    "_gap_sections",
+    "_window_fill",
+    "_layer_share",
+    "_inductance_left",
+    "_temperature_c",
+    "_resistance_ohm",
+)
 
 
 def _is_result(name: str) -> bool:

@@ -143,6 +143,9 @@ class CoreMaterial:
     origin: Mapping[str, str] = field(default_factory=dict, compare=False, repr=False)
 
 
+TAPE_FAMILIES = ("cut C", "three-limb")
+
+
 @dataclass(frozen=True)
 class CoreShape:
     """A core set of one size (pair of halves, ring, or cut core), bare of bobbin."""
@@ -165,6 +168,11 @@ class CoreShape:
     def in_hole(self) -> bool:
         """Whether the winding goes through the hole of a ring, without a coil former."""
         return self.family.startswith("toroid")
+
+    @property
+    def wound_of_tape(self) -> bool:
+        """Whether the core is wound of tape or strip, whose width is the stack depth."""
+        return self.family in TAPE_FAMILIES
 
 
 @dataclass(frozen=True)

@@ -19,6 +19,7 @@ from models.magnetics.layers import (
     ring_layers,
     round_layers,
 )
+from models.magnetics.two_nodes import winding_shares
 from models.magnetics.winding import COPPER_DENSITY
 
 Array = NDArray[np.float64]
@@ -37,7 +38,10 @@ class Build:
         coil_turns: turns of one coil [-].
         coils: coils in series, each on a leg of its own [-].
         layers: of one coil.
-        turn_length: mean length of a turn [m].
+        turn_length: mean length of a turn, with the layers as high as they are [m].
+        inner_length: of a turn against the coil former [m].
+        winding_surface_share: winding's part of the outer surface [-].
+        strip_width: of the tape of wound cores, 0 for others [m].
         strands, strand_diameter: conductor; foil has one strand and its thickness as diameter [-, m].
         copper_area: cross-section of a turn as built [m2].
         window_fill: copper over the copper that the window can take [-].
@@ -56,6 +60,9 @@ class Build:
     coils: Array
     layers: Layers
     turn_length: Array
+    inner_length: Array
+    winding_surface_share: Array
+    strip_width: Array
     strands: Array
     strand_diameter: Array
     copper_area: Array
@@ -112,7 +119,10 @@ def build(catalog: Catalog, choice: InductorDesigns, wall: float) -> Build:
         )
     )
     share = np.where(in_hole, conductor.copper_share_toroid, conductor.copper_share_bobbin)
-    turn_length = shape.mean_turn_length_m + 2.0 * (stack - 1.0) * shape.stack_depth_m
+    full = shape.mean_turn_length_m + 2.0 * (stack - 1.0) * shape.stack_depth_m
+    # the listed turn lies in the middle of a full window
+    lower = np.minimum(2.0 * clearance + layers.height - height, 0.0)
+    turn_length = full + np.where(in_hole, 0.0, np.pi * lower)
     box = shape.box_volume_m3
     growth = FACE_OF_BOX * box ** (2.0 / 3.0) * shape.stack_depth_m
     area = shape.area_m2 * stack * material.area_factor
@@ -128,6 +138,11 @@ def build(catalog: Catalog, choice: InductorDesigns, wall: float) -> Build:
         coils=coils,
         layers=layers,
         turn_length=turn_length,
+        inner_length=np.maximum(full - np.pi * height, 2.0 * np.sqrt(np.pi * area)),
+        winding_surface_share=winding_shares(catalog.core_shapes.column("family"))[choice.shape],
+        strip_width=np.where(
+            catalog.core_shapes.column("wound_of_tape")[choice.shape], stack * shape.stack_depth_m, 0.0
+        ),
         strands=strands,
         strand_diameter=diameter,
         copper_area=copper_area,

@@ -15,7 +15,7 @@ from models.designs import Designs
 from models.evaluation import Evaluation
 from models.magnetics.build import Build
 from models.magnetics.core_loss import igse_factor, steinmetz_loss
-from models.magnetics.inductor import InductorDuty, inductor
+from models.magnetics.inductor import InductorDuty, InductorMaking, inductor
 
 sys.path.insert(0, str(Path(__file__).parent / "waveforms"))
 from closed_loops import split_loss
@@ -30,9 +30,9 @@ def seen(spaces: Spaces, draw: Draw, monkeypatch: pytest.MonkeyPatch) -> Seen:
     """Random candidates, their evaluation, and build and duty of either inductor, bridge side first."""
     calls: list[tuple[Build, InductorDuty]] = []
 
-    def recording(catalog: Any, built: Build, duty: InductorDuty, labour: float) -> Any:
+    def recording(catalog: Any, built: Build, duty: InductorDuty, making: InductorMaking) -> Any:
         calls.append((built, duty))
-        return inductor(catalog, built, duty, labour)
+        return inductor(catalog, built, duty, making)
 
     monkeypatch.setattr(filter_inductors, "inductor", recording)
     designs = draw(spaces[SPACE], 40, 12)

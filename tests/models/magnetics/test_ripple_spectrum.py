@@ -69,10 +69,10 @@ def test_carrier_groups_against_the_fourier_sum(catalog: Catalog, name: str, ind
     built = windings(catalog)
     count = len(built.turns)
     lines = np.broadcast_to(order * CARRIER_HZ / RATIO, (count, len(order)))
-    expected = resistance_ratio(built, lines, RESISTIVITY) @ square
+    expected = resistance_ratio(built, lines, RESISTIVITY, np.ones(count)) @ square
     tables = waveform_tables(BRIDGE_OF[name])
     scheme = np.array([BRIDGES[BRIDGE_OF[name]].modulation_index(name)])
     groups = tables.read(tables.group_ripple, scheme, *tables.position(np.array([index])))[0]
     frequency = np.broadcast_to(CARRIER_HZ * GROUP_MULTIPLES, (count, len(groups)))
-    found = resistance_ratio(built, frequency, RESISTIVITY) @ groups
+    found = resistance_ratio(built, frequency, RESISTIVITY, np.ones(count)) @ groups
     assert found == pytest.approx(expected, rel=0.02)

@@ -80,13 +80,15 @@ def test_gapped_core_uses_no_more_than_the_flux_asked_for(catalog: Catalog, ladd
 def test_gapped_core_can_have_its_gap(catalog: Catalog, ladder: CoreLadder) -> None:
     for material in kind(catalog, "gapped"):
         found = build(catalog, sized(catalog, ladder, material), 1.5e-3)
-        gap = gap_for_inductance(
+        gap, _ = gap_for_inductance(
             found.turns,
             np.array([4e-4]),
             found.area,
             found.path,
             found.material.initial_permeability,
-            found.breadth,
+            found.breadth * found.coils,
+            found.coils,
+            2e-3,
         )
         assert gap > 0.0
 

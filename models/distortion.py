@@ -84,6 +84,34 @@ def dead_time_voltage(order: Array, dc_voltage: Array, dead_time: Array, frequen
     return 4.0 / (np.pi * order) * dc_voltage * dead_time * frequency
 
 
+def dead_time_share(order: Array, switching_share: Array, displacement: Array) -> Array:
+    """Harmonic of a leg's dead-time error over that of the whole square wave, where the leg is clamped for
+    part of the line period and loses nothing there (n, k) [-].
+
+    Between 0.5 and 1.5 for clamping over 60 degrees: clamped at the current's peak the square wave loses its
+    middle, clamped beside it less cancels.
+
+    Args:
+        order: odd (k,) [-].
+        switching_share: 1 where the leg switches, 0 where it rests, in equal cells of the half wave that
+            begins at the reference's zero (n, a) [-].
+        displacement: lag of the current behind the reference (n,) [rad].
+    """
+    cells = switching_share.shape[-1]
+    edges = np.pi * np.arange(cells + 1) / cells
+    turn = np.mod(displacement, np.pi)  # where the current changes its sign within the half wave
+    cell = np.minimum((turn * cells / np.pi).astype(np.int64), cells - 1)
+    rows = np.arange(len(turn))
+
+    def turned(angle: Array) -> NDArray[np.complex128]:
+        return np.exp(-1j * np.outer(angle, order))
+
+    # integral of switching share, sign of the current and exp(-j k theta); the change cuts its cell
+    signed = switching_share * np.where(np.arange(cells) > cell[:, None], 1.0, -1.0)
+    rest = 2.0 * switching_share[rows, cell, None] * (turned(edges[cell + 1]) - turned(turn))
+    return np.asarray(0.5 * np.abs(signed @ np.diff(turned(edges), axis=0) + rest))
+
+
 def low_orders(phases: int) -> Array:
     """Low orders that the bridge can drive: odd, without multiples of three for three phases [-]."""
     return LOW_ORDERS[LOW_ORDERS % 3 != 0.0] if phases == 3 else LOW_ORDERS

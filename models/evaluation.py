@@ -61,6 +61,8 @@ class Evaluation:
         efficiency_weighted, efficiency_european, efficiency_californian: (n,) [-].
         distortion: harmonic lines and totals.
         constraints: all requirements; feasible where every margin is >= 0.
+        lost_energy: lost in a year over the load histogram (n,) [J]; lost_energy_cost: present value of that
+            over the years of use (n,) [currency].
         details: intermediate quantities by column name with unit suffix (n,).
     """
 
@@ -76,6 +78,8 @@ class Evaluation:
     efficiency_californian: Array
     distortion: Distortion
     constraints: tuple[Constraint, ...]
+    lost_energy: Array
+    lost_energy_cost: Array
     details: dict[str, Array]
 
     @property

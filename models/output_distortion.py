@@ -14,6 +14,7 @@ from models.distortion import (
     HIGHEST_ORDER,
     Distortion,
     Lines,
+    dead_time_share,
     dead_time_voltage,
     loop_left,
     low_orders,
@@ -79,7 +80,7 @@ def spectrum(
     low_hz = np.broadcast_to(orders * spec.line_frequency_hz, (len(frequency), len(orders)))
     on_grid = spec.application == GRID_CONNECTED
     share = spec.rules.current_loop_share if on_grid else spec.rules.voltage_loop_share
-    error = _dead_time_error(spec, tables, state, frequency, dead_time, orders)
+    error = _dead_time_error(spec, tables, state, point, frequency, dead_time, orders)
     slow = error * loop_left(low_hz, share * frequency[:, None])
     bridge = np.concatenate([slow, volts * spec.dc_voltage_max_v], axis=-1)
     whole = np.concatenate([low_hz, hertz], axis=-1)
@@ -151,7 +152,7 @@ def current_distortion(
     switched = volts * spec.dc_voltage_max_v * grid_transfer(circuit, hertz).output_current
     orders = low_orders(spec.phases)
     low_hz = np.broadcast_to(orders * spec.line_frequency_hz, (len(frequency), len(orders)))
-    error = _dead_time_error(spec, tables, state, frequency, dead_time, orders)
+    error = _dead_time_error(spec, tables, state, point, frequency, dead_time, orders)
     left = loop_left(low_hz, spec.rules.current_loop_share * frequency[:, None])
     slow = error * left * grid_transfer(circuit, low_hz).output_current
     lines = _lines(spec, orders, slow / base, hertz, switched / base, listed)
@@ -195,7 +196,7 @@ def voltage_distortion(
     orders = low_orders(spec.phases)
     low_hz = np.broadcast_to(orders * spec.line_frequency_hz, (len(frequency), len(orders)))
     load = rectifier_share * spec.rated_current_a * rectifier_harmonic(orders, spec.crest_factor)
-    error = _dead_time_error(spec, tables, state, frequency, dead_time, orders)
+    error = _dead_time_error(spec, tables, state, point, frequency, dead_time, orders)
     left = loop_left(low_hz, spec.rules.voltage_loop_share * frequency[:, None])
     slow = (load * output_impedance(circuit, low_hz) + error) * left
     lines = _lines(spec, orders, slow / base, hertz, switched / base, listed)
@@ -208,6 +209,7 @@ def _dead_time_error(
     spec: Specification,
     tables: WaveformTables,
     state: WaveformState,
+    point: int,
     frequency: Array,
     dead_time: Array,
     orders: Array,
@@ -217,7 +219,12 @@ def _dead_time_error(
     peak = dead_time_voltage(
         orders, np.asarray(spec.dc_voltage_max_v), dead_time[:, None], frequency[:, None]
     )
-    return legs * peak * (1.0 - spec.rules.dead_time_compensated) / np.sqrt(2.0)
+    whole = legs * peak * (1.0 - spec.rules.dead_time_compensated) / np.sqrt(2.0)
+    share = tables.switching_share[state.scheme[:, 0]]
+    clamped = np.flatnonzero(share.min(-1) < 1.0)
+    lag = np.broadcast_to(state.displacement, state.row.shape)[clamped, point]
+    whole[clamped] *= dead_time_share(orders, share[clamped], lag)
+    return whole
 
 
 def _lines(

@@ -12,6 +12,7 @@ from models.cooling import auxiliary_power
 from models.designs import COLD_PLATE
 from models.evaluation import Constraint, Evaluation
 from models.operating_points import OperatingPoints
+from models.ownership import lost_energy, lost_energy_cost
 from models.requirements import Findings
 from models.specification import CALIFORNIAN_WEIGHTS, EUROPEAN_WEIGHTS, Specification
 from models.waveforms.leg_commutations import CLAMP
@@ -46,8 +47,10 @@ def roll_up(
     losses = _losses(spec, catalog, points, found)
     level = points.load_level[points.loads]
     power = level * spec.apparent_power_va * abs(spec.power_factor)
-    efficiency = power / (power + sum(losses.values()))
+    whole: Array = np.asarray(sum(losses.values()))
+    efficiency = power / (power + whole)
     volumes, masses = _volumes(spec, found), _masses(spec, found)
+    lost = lost_energy(whole, level, spec.weights, spec.energy)
     return Evaluation(
         load_level=level,
         rated=points.rated,
@@ -61,6 +64,8 @@ def roll_up(
         efficiency_californian=weighted_efficiency(efficiency, points.weights(CALIFORNIAN_WEIGHTS)),
         distortion=found.distortion,
         constraints=constraints,
+        lost_energy=lost,
+        lost_energy_cost=lost_energy_cost(lost, spec.energy),
         details=_details(spec, points, found),
     )
 

@@ -6,6 +6,8 @@ import math
 from dataclasses import dataclass, field
 from typing import Any
 
+from models.ownership import EnergyTerms
+
 GRID_CONNECTED = "grid-connected"
 STAND_ALONE = "stand-alone"
 
@@ -154,6 +156,7 @@ class Specification:
             out [-].
         voltage_thd_limit_linear, voltage_thd_limit_rectifier: stand-alone voltage limits, fractions [-].
         rules: the design rules.
+        energy: on what terms lost energy is paid for.
     """
 
     application: str
@@ -183,6 +186,7 @@ class Specification:
     voltage_thd_limit_linear: float = 0.03
     voltage_thd_limit_rectifier: float = 0.08
     rules: DesignRules = field(default_factory=DesignRules)
+    energy: EnergyTerms = field(default_factory=EnergyTerms)
 
     @property
     def grid_inductance_min_h(self) -> float:

@@ -1,7 +1,8 @@
 """Studies, search, fronts and charts around the physics in `models`.
 
-`Study.read(path)` reads a study file, `search(study)` searches it, `front(result)` makes its tables. Imports
-happen on first use, so that the command line answers at once.
+`Study.read(path)` reads a study file, `run = search(study)` searches it; `run.front` is the table of its
+Pareto designs, `run.charts.front()` a chart of them, `run.shortlist()` a few of them in words. Imports happen
+on first use, so that the command line answers at once.
 """
 
 from __future__ import annotations
@@ -11,7 +12,8 @@ from typing import TYPE_CHECKING, Any
 
 if TYPE_CHECKING:
     from optimizer.fronts import Front, front
-    from optimizer.populations import SearchResult, search
+    from optimizer.notebook import search
+    from optimizer.populations import SearchResult
     from optimizer.study import Study
 
 __all__ = ["Front", "SearchResult", "Study", "front", "search"]
@@ -20,7 +22,7 @@ _HOMES = {
     "Front": "optimizer.fronts",
     "front": "optimizer.fronts",
     "SearchResult": "optimizer.populations",
-    "search": "optimizer.populations",
+    "search": "optimizer.notebook",
     "Study": "optimizer.study",
 }
 

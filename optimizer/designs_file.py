@@ -248,6 +248,8 @@ def _header_problems(
     return problems
 
 
+SHORTLIST_COLUMNS = ("role", "rule", "recommended", "words")
+"""What a shortlist's file has before the columns of front.csv."""
 _RESULT_STARTS = (
     "loss_",
     "volume_",
@@ -259,6 +261,9 @@ _RESULT_STARTS = (
     "emission_",
     "distortion_",
     "modulation_index_",
+    "cost_",
+    "lost_energy_",
+    "junction_",
 )
 _RESULT_NAMES = {
     "concept",
@@ -286,6 +291,9 @@ _RESULT_NAMES = {
     "bridge_voltage_rated_v",
     "dc_voltage_needed_v",
     "filter_reactive_share",
+    "junction_rise_percent",
+    "cost_of_ownership",
+    *SHORTLIST_COLUMNS,
 }
 _RESULT_ENDS = (
     "_flux_t",

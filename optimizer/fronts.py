@@ -4,6 +4,7 @@ names.
 
 from __future__ import annotations
 
+from collections.abc import Sequence
 from dataclasses import dataclass
 from typing import Any
 
@@ -16,10 +17,13 @@ from models.catalog.parts import Catalog
 from models.designs import COOLING, Designs, InductorDesigns
 from models.evaluation import Constraint, Evaluation
 from models.inverter import Inverter
+from models.ownership import JOULE_A_KWH
 from models.waveforms.leg_commutations import INNER
+from optimizer.concept_search import ClassResult
 from optimizer.emission_lines import EmissionLines, emission_lines, joined_lines
 from optimizer.objectives import OBJECTIVES, distortion_column, margins_of, requirements_of
-from optimizer.populations import ClassResult, SearchResult, search_space
+from optimizer.populations import SearchResult
+from optimizer.prepared import search_space
 
 Array = NDArray[np.float64]
 SPECTRUM_DIGITS = 4
@@ -39,6 +43,7 @@ class Front:
         line_order, line_amplitude, line_limit: (n, k) harmonic lines over the base, listed ones; no limit is
             infinite.
         emission: conducted emission; None where the study leaves it out.
+        points: places in the search space by concept, in the table's order (n, k).
     """
 
     table: pd.DataFrame
@@ -51,6 +56,7 @@ class Front:
     line_amplitude: Array
     line_limit: Array
     emission: EmissionLines | None
+    points: dict[str, Array]
 
 
 def front(result: SearchResult) -> Front:
@@ -59,7 +65,11 @@ def front(result: SearchResult) -> Front:
     Args:
         result: of a search with at least one feasible candidate.
     """
-    kept = [(found, _class_front(found)) for found in result.classes if len(found.points)]
+    kept = [
+        (found, _class_front(found, result.study.search.front_resolution))
+        for found in result.classes
+        if len(found.points)
+    ]
     objectives = np.concatenate([found.objectives[rows] for found, rows in kept])
     overall = moocore.is_nondominated(objectives)
     parts = []
@@ -94,15 +104,39 @@ def front(result: SearchResult) -> Front:
         line_order=np.concatenate([item.lines.order for item in lines]),
         line_amplitude=np.concatenate(listed),
         line_limit=np.concatenate([item.line_limit for item in lines]),
+        points={found.concept.name: found.points[rows] for found, rows in kept},
         emission=joined_lines([emission_lines(inverter, designs) for inverter, designs, _ in parts]),
     )
 
 
-def _class_front(found: ClassResult) -> NDArray[np.int64]:
-    """Rows of a class's non-dominated candidates, sorted by the first objective; repeated ones once."""
+def _class_front(found: ClassResult, resolution: float) -> NDArray[np.int64]:
+    """Rows of a class's non-dominated candidates that can be told apart, sorted by the first objective."""
     _, first = np.unique(found.objectives, axis=0, return_index=True)
     rows = first[moocore.is_nondominated(found.objectives[first])]
+    rows = rows[distinct_rows(found.objectives[rows], resolution)]
     return rows[np.lexsort(found.objectives[rows].T[::-1])]
+
+
+def distinct_rows(objectives: Array, resolution: float) -> NDArray[np.int64]:
+    """Rows of a front that differ by more than a share of its range, and the best of every objective.
+
+    The range of every objective is divided into boxes; boxes dominated by others drop out, and of a box the
+    design nearest its best corner stays (epsilon dominance: Laumanns, Thiele, Deb, Zitzler 2002).
+
+    Args:
+        objectives: of non-dominated designs (n, m).
+        resolution: size of a box over the range [-]; 0 keeps all.
+    """
+    if resolution <= 0.0:
+        return np.arange(len(objectives))
+    low, spread = objectives.min(0), np.ptp(objectives, axis=0)
+    places = (objectives - low) / np.where(spread > 0.0, spread, 1.0) / resolution
+    boxes = np.floor(places)
+    order = np.argsort((places - boxes).sum(-1), kind="stable")
+    _, first = np.unique(boxes[order], axis=0, return_index=True)
+    nearest = order[first]
+    kept = nearest[moocore.is_nondominated(boxes[nearest])]
+    return np.union1d(kept, objectives.argmin(0))
 
 
 def _range(limits: list[Array]) -> tuple[float, float]:
@@ -157,6 +191,11 @@ def design_table(
         "price": result.price,
         distortion_column(inverter.specification): result.distortion.total,
         "distortion_percent": OBJECTIVES["distortion"].read(result),
+        "loss_rated_percent": OBJECTIVES["rated loss"].read(result),
+        "junction_rise_percent": OBJECTIVES["junction temperature rise"].read(result),
+        "lost_energy_kwh_per_year": result.lost_energy / JOULE_A_KWH,
+        "lost_energy_cost": result.lost_energy_cost,
+        "cost_of_ownership": OBJECTIVES["cost of ownership"].read(result),
     }
     columns |= {f"loss_{name}_w": part[:, rated] for name, part in result.losses.items()}
     columns |= {f"volume_{name}_l": LITRES * part for name, part in result.volumes.items()}
@@ -167,7 +206,8 @@ def design_table(
     names = np.array([entry.name for entry in constraints])
     columns["tightest_constraint"] = names[np.argmin(margins, axis=-1)]
     columns["tightest_margin"] = margins.min(-1)
-    return pd.DataFrame(columns)
+    table = pd.DataFrame(columns)
+    return table.astype(dict.fromkeys(table.select_dtypes("category"), object))
 
 
 def choices(inverter: Inverter, designs: Designs) -> dict[str, Any]:
@@ -175,13 +215,13 @@ def choices(inverter: Inverter, designs: Designs) -> dict[str, Any]:
     back.
     """
     catalog = inverter.catalog
-    classes = catalog.devices.column("device_class")[designs.device]
-    schemes = np.array([scheme.name for scheme in inverter.bridge.modulations])
+    classes = list(catalog.devices.column("device_class"))
+    schemes = [scheme.name for scheme in inverter.bridge.modulations]
     return {
-        "device_class": classes,
-        "device": np.array(catalog.devices.names)[designs.device],
+        "device_class": _named(classes, designs.device),
+        "device": _named(catalog.devices.names, designs.device),
         "bridge": inverter.bridge.name,
-        "modulation": schemes[designs.modulation],
+        "modulation": _named(schemes, designs.modulation),
         "switching_frequency_hz": designs.switching_frequency_hz,
         "die_area_mm2": 1e6 * designs.die_area_m2,
         "parallel": designs.parallel,
@@ -191,8 +231,8 @@ def choices(inverter: Inverter, designs: Designs) -> dict[str, Any]:
         "filter_capacitance_f": designs.filter_capacitance_f,
         "damping_resistance_ohm": designs.damping_resistance_ohm,
         "damping_capacitance_f": designs.damping_capacitance_f,
-        "dc_link": np.array(catalog.dc_link_capacitors.names)[designs.dc_link],
-        "cooling": np.array(COOLING)[designs.cooling],
+        "dc_link": _named(catalog.dc_link_capacitors.names, designs.dc_link),
+        "cooling": _named(COOLING, designs.cooling),
         "sink_resistance_k_per_w": designs.sink_resistance_k_per_w,
         **_inductor_columns(catalog, "inverter_inductor", designs.inverter_inductor),
         **(
@@ -203,22 +243,29 @@ def choices(inverter: Inverter, designs: Designs) -> dict[str, Any]:
     }
 
 
+def _named(names: Sequence[str], choice: NDArray[np.int64]) -> pd.Categorical:
+    """Names of choices, kept once each."""
+    known = list(dict.fromkeys(names))
+    code = np.array([known.index(name) for name in names])
+    return pd.Categorical.from_codes(code[choice], known)
+
+
 def _inner(inverter: Inverter, designs: Designs) -> dict[str, Any]:
     """What the inner positions of three-level legs are made of."""
     if INNER not in inverter.packages.blocking:
         return {}
     return {
-        "inner_device": np.array(inverter.catalog.devices.names)[designs.inner_device],
+        "inner_device": _named(inverter.catalog.devices.names, designs.inner_device),
         "inner_die_area_mm2": 1e6 * designs.inner_die_area_m2,
     }
 
 
-def _inductor_columns(catalog: Catalog, side: str, choice: InductorDesigns) -> dict[str, Array]:
+def _inductor_columns(catalog: Catalog, side: str, choice: InductorDesigns) -> dict[str, Any]:
     return {
-        f"{side}_core_material": np.array(catalog.core_materials.names)[choice.material],
-        f"{side}_core": np.array(catalog.core_shapes.names)[choice.shape],
+        f"{side}_core_material": _named(catalog.core_materials.names, choice.material),
+        f"{side}_core": _named(catalog.core_shapes.names, choice.shape),
         f"{side}_stack": choice.stack,
         f"{side}_turns": choice.turns,
-        f"{side}_conductor": np.array(catalog.conductors.names)[choice.conductor],
+        f"{side}_conductor": _named(catalog.conductors.names, choice.conductor),
         f"{side}_copper_area_mm2": 1e6 * choice.copper_area_m2,
     }

@@ -9,9 +9,13 @@ import numpy as np
 from numpy.typing import NDArray
 
 from models.evaluation import Constraint, Evaluation, at_most
+from models.ownership import SECONDS_AN_HOUR, hour_shares, lost_energy_cost
 from models.specification import GRID_CONNECTED, Specification
 
 Array = NDArray[np.float64]
+JUNCTIONS = ("switch junction temperature", "diode junction temperature")
+UNBUILT_LOSS = 0.12
+"""Loss over power that nobody would build."""
 
 
 @dataclass(frozen=True)
@@ -41,6 +45,29 @@ def _kva(spec: Specification) -> float:
     return spec.apparent_power_va / 1e3
 
 
+def _unbuilt_price(spec: Specification) -> float:
+    return 50.0 + 100.0 * _kva(spec)
+
+
+def _unbuilt_cost(spec: Specification) -> float:
+    """Price and lost energy of what nobody would build [currency]."""
+    shares = hour_shares(spec.weights, spec.energy.weights_are)
+    power = spec.apparent_power_va * sum(level * share for level, share in shares.items())
+    lost = UNBUILT_LOSS * power * spec.energy.hours_a_year * SECONDS_AN_HOUR
+    return _unbuilt_price(spec) + float(lost_energy_cost(np.array(lost), spec.energy))
+
+
+def _rated_loss(result: Evaluation) -> Array:
+    """Loss over delivered power at rated load [-]."""
+    return 1.0 / result.efficiency[:, result.rated] - 1.0
+
+
+def _junction_rise(result: Evaluation) -> Array:
+    """Rise of the hotter junction over ambient, over the rise allowed [-]."""
+    margins = [entry.margin for entry in result.constraints if entry.name in JUNCTIONS]
+    return 1.0 - np.min(margins, axis=0)
+
+
 OBJECTIVES = {
     objective.name: objective
     for objective in (
@@ -51,7 +78,7 @@ OBJECTIVES = {
             "%",
             100.0,
             lambda result: 100.0 * (1.0 - result.efficiency_weighted),
-            lambda spec: 12.0,
+            lambda spec: 100.0 * UNBUILT_LOSS,
         ),
         Objective(
             "volume",
@@ -69,7 +96,7 @@ OBJECTIVES = {
             "currency",
             1.0,
             lambda result: result.price,
-            lambda spec: 50.0 + 100.0 * _kva(spec),
+            _unbuilt_price,
         ),
         Objective(
             "mass",
@@ -88,6 +115,33 @@ OBJECTIVES = {
             100.0,
             lambda result: 100.0 * result.distortion.total,
             lambda spec: 10.0,
+        ),
+        Objective(
+            "cost of ownership",
+            "cost_of_ownership",
+            "price and lost energy",
+            "currency",
+            1.0,
+            lambda result: result.price + result.lost_energy_cost,
+            _unbuilt_cost,
+        ),
+        Objective(
+            "rated loss",
+            "loss_rated_percent",
+            "loss at rated load",
+            "%",
+            100.0,
+            lambda result: 100.0 * _rated_loss(result),
+            lambda spec: 100.0 * UNBUILT_LOSS,
+        ),
+        Objective(
+            "junction temperature rise",
+            "junction_rise_percent",
+            "junction temperature rise used",
+            "%",
+            100.0,
+            lambda result: 100.0 * _junction_rise(result),
+            lambda spec: 110.0,
         ),
     )
 }

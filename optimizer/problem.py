@@ -66,22 +66,30 @@ class Archive:
 class ClassProblem(Problem):
     """One device class of a study as a pymoo problem over the unit cube.
 
-    The constraint violation is the sum of what each negative margin misses, beyond one its logarithm: no
-    absurd value hides the rest, and less is always better.
+    Of the constraint violation, `violation_of`, no absurd value hides the rest, and less is always better.
     """
 
-    def __init__(self, space: SearchSpace) -> None:
+    def __init__(self, space: SearchSpace, archive: Archive | None = None) -> None:
         self.space = space
         self.chosen: tuple[Objective, ...] = tuple(OBJECTIVES[name] for name in space.study.objectives)
-        self.archive = Archive()
+        self.archive = Archive() if archive is None else archive
         super().__init__(n_var=len(space.variables), n_obj=len(self.chosen), xl=0.0, xu=1.0)
 
     def assess(self, points: Array) -> tuple[Array, Array]:
         """Objectives (n, m) and violation (n,) of repaired points; feasible ones have violation 0."""
+        objectives, margins = self.figures(points)
+        return objectives, violation_of(margins)
+
+    def figures(self, points: Array) -> tuple[Array, Array]:
+        """Objectives (n, m) and margins (n, c) of repaired points; the archive takes them in."""
         result = self.space.inverter.evaluate(self.space.designs(points))
         objectives = np.stack([objective.read(result) for objective in self.chosen], axis=-1)
         margins = margins_of(requirements_of(self.space.study.at_most, result))
-        missing = np.maximum(-margins, 0.0)
-        violation = np.where(missing > 1.0, 1.0 + np.log(np.maximum(missing, 1.0)), missing).sum(-1)
-        self.archive.add(points, objectives, result.filter_volume, margins, violation)
-        return objectives, violation
+        self.archive.add(points, objectives, result.filter_volume, margins, violation_of(margins))
+        return objectives, margins
+
+
+def violation_of(margins: Array) -> Array:
+    """Sum of what each negative margin misses, beyond one its logarithm (n,) [-]."""
+    missing = np.maximum(-margins, 0.0)
+    return np.where(missing > 1.0, 1.0 + np.log(np.maximum(missing, 1.0)), missing).sum(-1)

@@ -2,13 +2,87 @@
 
 from __future__ import annotations
 
+from collections.abc import Sequence
 from types import TracebackType
 
 from rich.console import Console
 from rich.progress import BarColumn, Progress, TaskID, TextColumn, TimeElapsedColumn, TimeRemainingColumn
 
-from optimizer.populations import Progress as ClassProgress
+from optimizer.batch.cases import Case
+from optimizer.concept_search import Progress as ClassProgress
+from optimizer.screening import planned_evaluations
 from optimizer.study import Study
+
+
+class AuditBar:
+    """Shows a running audit on standard error; `report` feeds it.
+
+    Args:
+        designs: to evaluate in all [-].
+        hidden: show nothing.
+    """
+
+    def __init__(self, designs: int, *, hidden: bool) -> None:
+        self.done: dict[str, int] = {}
+        self.progress = _bar("{task.completed:,.0f}/{task.total:,.0f} designs", hidden)
+        self.task: TaskID = self.progress.add_task("auditing", total=designs, note="")
+
+    def __enter__(self) -> AuditBar:
+        self.progress.start()
+        return self
+
+    def __exit__(
+        self, kind: type[BaseException] | None, trouble: BaseException | None, trace: TracebackType | None
+    ) -> None:
+        self.progress.stop()
+
+    def report(self, concept: str, designs: int) -> None:
+        """Take in how many designs of a concept are done."""
+        self.done[concept] = designs
+        self.progress.update(self.task, completed=sum(self.done.values()))
+
+
+def _bar(count: str, hidden: bool) -> Progress:
+    return Progress(
+        TextColumn("{task.description}"),
+        BarColumn(bar_width=24),
+        TextColumn(count),
+        TextColumn("{task.fields[note]}"),
+        TimeElapsedColumn(),
+        TextColumn("left"),
+        TimeRemainingColumn(),
+        console=Console(stderr=True),
+        disable=hidden,
+        transient=True,
+    )
+
+
+class BatchBar:
+    """Shows a running batch on standard error; `report` feeds it.
+
+    Args:
+        cases: of the batch.
+        hidden: show nothing.
+    """
+
+    def __init__(self, cases: Sequence[Case], *, hidden: bool) -> None:
+        self.progress = _bar("{task.completed:,.0f}/{task.total:,.0f} concepts of all cases", hidden)
+        total = sum(len(case.study.concepts) for case in cases)
+        self.task: TaskID = self.progress.add_task("searching", total=total, note="")
+
+    def __enter__(self) -> BatchBar:
+        self.progress.start()
+        return self
+
+    def __exit__(
+        self, kind: type[BaseException] | None, trouble: BaseException | None, trace: TracebackType | None
+    ) -> None:
+        self.progress.stop()
+
+    def report(self, case: str, concept: str) -> None:
+        """Take in that a concept of a case is done."""
+        note = ": ".join(filter(None, (case, concept)))
+        self.progress.update(self.task, advance=1, note=note)
 
 
 class SearchBar:
@@ -20,21 +94,10 @@ class SearchBar:
     """
 
     def __init__(self, study: Study, *, hidden: bool) -> None:
-        self.total = len(study.concepts) * study.search.population * study.search.generations
+        self.total = len(study.concepts) * planned_evaluations(study.search)
         self.evaluations: dict[str, int] = {}
         self.hypervolumes: dict[str, float] = {}
-        self.progress = Progress(
-            TextColumn("{task.description}"),
-            BarColumn(bar_width=24),
-            TextColumn("{task.completed:,.0f}/{task.total:,.0f} evaluations"),
-            TextColumn("{task.fields[note]}"),
-            TimeElapsedColumn(),
-            TextColumn("left"),
-            TimeRemainingColumn(),
-            console=Console(stderr=True),
-            disable=hidden,
-            transient=True,
-        )
+        self.progress = _bar("{task.completed:,.0f}/{task.total:,.0f} evaluations", hidden)
         self.task: TaskID = self.progress.add_task("preparing", total=self.total, note="")
 
     def __enter__(self) -> SearchBar:

@@ -3,11 +3,13 @@
 from __future__ import annotations
 
 import gzip
+import io
 import json
 import time
-from collections.abc import Callable
+from collections.abc import Callable, Mapping
 from concurrent.futures import ProcessPoolExecutor
 from dataclasses import dataclass
+from datetime import datetime
 from importlib.metadata import PackageNotFoundError, version
 from pathlib import Path
 from typing import Any
@@ -16,22 +18,23 @@ import numpy as np
 import pandas as pd
 from numpy.typing import NDArray
 
+from optimizer.concept_search import ClassResult, Progress
+from optimizer.csv_table import csv_bytes
 from optimizer.errors import NothingFeasible
 from optimizer.fronts import LITRES, Front, choices, front
 from optimizer.objectives import OBJECTIVES
-from optimizer.populations import (
-    ClassResult,
-    Progress,
-    SearchResult,
-    process_context,
-    search,
-    search_space,
-)
-from optimizer.run_folder import RUN_FILE, Content, write_run
+from optimizer.populations import SearchResult, process_context, search
+from optimizer.prepared import prepare, search_space
+from optimizer.run_folder import RUN_FILE, STUDY_FILE, Content, check_folder, parts_copy, write_run
 from optimizer.study import Study
+from optimizer.unfinished import Unfinished, task_of
 
-DIGITS = 7
+RUN_FORMAT = 2
+"""Number of the run folder's layout, in run.json: what reads a folder back knows by it whether it can."""
+POINTS_FILE = "points.npz"
 GZIP_LEVEL = 1
+
+Array = NDArray[np.float64]
 
 
 @dataclass(frozen=True)
@@ -53,15 +56,20 @@ def run_search(
     *,
     seed: int = 1,
     workers: int | None = None,
+    resume: bool = False,
     report: Callable[[Progress], None] | None = None,
     stage: Callable[[str], None] = lambda words: None,
 ) -> Outcome:
     """Search a study and write its run folder, whole or not at all.
 
+    While it runs, its populations are kept beside the run folder every few seconds.
+
     Args:
         study: the study.
         folder: run folder to write.
         seed, workers, report: as in `optimizer.populations.search`.
+        resume: go on with a search of this run folder that did not end, where there is one; its result is
+            that of a search that was never stopped.
         stage: told what is being done.
 
     Raises:
@@ -69,40 +77,97 @@ def run_search(
         InputError: for parts that do not exist or a folder that is no run.
     """
     started = time.perf_counter()
-    result = search(study, seed=seed, workers=workers, report=report)
+    check_folder(folder)
+    prepare(study)
+    unfinished, task = Unfinished.of(folder), task_of(study, seed, version_of_program())
+    if not (resume and unfinished.take_up(task)):
+        unfinished.begin(task)
+    result = search(study, seed=seed, workers=workers, report=report, unfinished=unfinished)
     if not any(len(found.points) for found in result.classes):
+        unfinished.end()
         raise NothingFeasible(ruled_out(result))
-    searched = time.perf_counter()
+    outcome = write_result(result, folder, time.perf_counter() - started, stage)
+    unfinished.end()
+    return outcome
+
+
+def write_result(
+    result: SearchResult,
+    folder: Path,
+    seconds: float | None = None,
+    stage: Callable[[str], None] = lambda words: None,
+) -> Outcome:
+    """Write the run folder of a finished search, whole or not at all.
+
+    Args:
+        result: of a search with at least one feasible candidate.
+        folder: run folder to write.
+        seconds: that the search took; None for the sum over its populations [s].
+        stage: told what is being done.
+    """
+    started = time.perf_counter()
+    study = result.study
     stage("sorting fronts")
     fronts = front(result)
     evaluated = evaluated_table(result)
     stage("drawing")
-    summary = _summary(result, fronts)
+    summary = summary_of(result, fronts)
+    files = run_files(study, fronts, evaluated, summary)
+    in_models = sum(found.seconds["models"] for found in result.classes)
+    searched = in_models + sum(found.seconds["search"] for found in result.classes)
+    searched, output = searched if seconds is None else seconds, time.perf_counter() - started
+    summary["seconds"] = {
+        "models": in_models,
+        "search": searched,
+        "output": output,
+        "total": searched + output,
+    }
+    stage("writing")
+    kept = write_run(folder, files | {RUN_FILE: json_text(summary)})
+    return Outcome(result, fronts, folder, kept, summary)
+
+
+def run_files(
+    study: Study, fronts: Front, evaluated: pd.DataFrame, summary: dict[str, Any]
+) -> dict[str, Content]:
+    """Content of a run folder's files by name, without run.json."""
     with ProcessPoolExecutor(1, mp_context=process_context()) as beside:
         packed = beside.submit(_packed, evaluated)  # as long as drawing the dashboard takes
         from optimizer.charts import dashboard_html
 
         page = dashboard_html(study, fronts, evaluated, summary)
-        stage("writing")
-        files: dict[str, Content] = {
-            "front.csv": _csv(fronts.table),
-            "margins.csv": _csv(fronts.margins),
+        return {
+            "front.csv": csv_bytes(fronts.table),
+            "margins.csv": csv_bytes(fronts.margins),
             "evaluated.csv.gz": packed.result(),
             "dashboard.html": page,
+            POINTS_FILE: points_bytes(fronts.points),
+            **_study_files(study),
         }
-    ended = time.perf_counter()
-    summary["seconds"] = {
-        "models": sum(found.seconds["models"] for found in result.classes),
-        "search": searched - started,
-        "output": ended - searched,
-        "total": ended - started,
-    }
-    files[RUN_FILE] = json.dumps(summary, indent=1) + "\n"
-    return Outcome(result, fronts, folder, write_run(folder, files), summary)
+
+
+def json_text(summary: dict[str, Any]) -> str:
+    """run.json's text."""
+    return json.dumps(summary, indent=1) + "\n"
+
+
+def points_bytes(points: Mapping[str, Array]) -> bytes:
+    """Places in the search space of the fronts' designs, by concept, as numpy's archive of arrays."""
+    file = io.BytesIO()
+    np.savez_compressed(file, allow_pickle=False, **dict(points))
+    return file.getvalue()
+
+
+def _study_files(study: Study) -> dict[str, Content]:
+    """Copies of the study and of the parts files it names, by which a run explains itself."""
+    files: dict[str, Content] = {STUDY_FILE: study.source}
+    for place, path in enumerate(study.catalog_files):
+        files[parts_copy(place, path)] = path.read_bytes()
+    return files
 
 
 def _packed(evaluated: pd.DataFrame) -> bytes:
-    return gzip.compress(_csv(evaluated).encode(), GZIP_LEVEL, mtime=0)
+    return gzip.compress(csv_bytes(evaluated), GZIP_LEVEL, mtime=0)
 
 
 def ruled_out(result: SearchResult) -> list[tuple[str, float, str]]:
@@ -131,18 +196,28 @@ def evaluated_table(result: SearchResult) -> pd.DataFrame:
     return pd.concat(parts, ignore_index=True)
 
 
-def _objective_columns(study: Study, found: ClassResult) -> dict[str, NDArray[np.float64]]:
+def _objective_columns(study: Study, found: ClassResult) -> dict[str, Array]:
     return {
         OBJECTIVES[name].column: found.objectives[:, place] for place, name in enumerate(study.objectives)
     }
 
 
-def _summary(result: SearchResult, fronts: Front) -> dict[str, Any]:
+def summary_of(result: SearchResult, fronts: Front) -> dict[str, Any]:
+    """run.json's content, without times."""
     study = result.study
     return {
-        "study": {"name": study.name, "file": study.path.name, "hash": study.file_hash},
-        "version": _version(),
+        "format": RUN_FORMAT,
+        "study": {
+            "name": study.name,
+            "file": study.path.name,
+            "hash": study.file_hash,
+            "parts": [parts_copy(place, path) for place, path in enumerate(study.catalog_files)],
+        },
+        "version": version_of_program(),
+        "date": datetime.now().astimezone().isoformat(timespec="minutes"),
         "seed": result.seed,
+        "population": study.search.population,
+        "generations": study.search.generations,
         "objectives": [
             {
                 "name": name,
@@ -179,23 +254,9 @@ def _summary(result: SearchResult, fronts: Front) -> dict[str, Any]:
     }
 
 
-def _version() -> str:
+def version_of_program() -> str:
+    """Version of this program as installed."""
     try:
         return version("wattfront")
     except PackageNotFoundError:
         return "unknown (not installed)"
-
-
-def _csv(table: pd.DataFrame) -> str:
-    """CSV with floats of DIGITS significant digits."""
-    rounded = table.copy()
-    for name in rounded.columns[rounded.dtypes == np.float64]:
-        rounded[name] = _significant(rounded[name].to_numpy())
-    return rounded.to_csv(index=False, lineterminator="\n")
-
-
-def _significant(values: NDArray[np.float64]) -> NDArray[np.float64]:
-    size = np.abs(values)
-    exponent = DIGITS - 1 - np.floor(np.log10(np.where(size > 0.0, size, 1.0)))
-    factor = 10.0 ** np.abs(exponent)
-    return np.where(exponent >= 0, np.rint(values * factor) / factor, np.rint(values / factor) * factor)

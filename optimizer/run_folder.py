@@ -13,6 +13,9 @@ from optimizer.errors import InputError, Problem
 RUN_FILE = "run.json"
 """The file by which a folder is known to be a run."""
 
+STUDY_FILE = "study.toml"
+"""The study as it was searched, byte for byte."""
+
 Content = bytes | str | Callable[[Path], None]
 """What a file is to hold, or a function that writes it to the path it is given."""
 
@@ -45,6 +48,16 @@ def write_run(folder: Path, files: Mapping[str, Content], *, overwrite: bool = T
         for name, content in files.items():
             _write(new / name, content)
         return _swap(target, new, frozenset(PurePath(name) for name in files))
+
+
+def check_folder(folder: Path) -> None:
+    """Raise InputError where a run can not be written to `folder`."""
+    _check_replaceable(folder, Path(folder).resolve(), overwrite=True)
+
+
+def parts_copy(place: int, path: Path) -> str:
+    """Name inside a run folder of the copy of a study's parts file, the `place`-th."""
+    return f"parts/{place + 1}-{path.name}"
 
 
 def write_whole(path: Path, content: Content) -> None:

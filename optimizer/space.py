@@ -18,12 +18,14 @@ from models.magnetics.sizing import CoreLadder, core_ladder, size_inductor
 from models.output_filter import NO_CAPACITANCE
 from models.waveforms.leg_commutations import INNER, OUTER
 from models.waveforms.tables import WaveformTables
+from optimizer.evolution.mating import Axes
 from optimizer.study import Study
 from optimizer.study_schema import LCL, ONLY_L, PARALLEL_RC
 
 Array = NDArray[np.float64]
 Ints = NDArray[np.int64]
 CATEGORY, WHOLE, LINEAR, LOGARITHMIC = "category", "whole", "linear", "logarithmic"
+CARRIER, SWITCHES, SINK, DC_LINK, FILTER = "carrier", "switches", "heatsink", "dc link", "filter"
 
 
 @dataclass(frozen=True)
@@ -34,12 +36,14 @@ class Variable:
         name: its name.
         scale: CATEGORY, WHOLE, LINEAR or LOGARITHMIC.
         low, high: ends in SI units; for categories 0 and the number of choices less one.
+        part: the part of the inverter it belongs to: variables of one part only make sense together.
     """
 
     name: str
     scale: str
     low: float
     high: float
+    part: str
 
     @property
     def parts(self) -> int:
@@ -53,6 +57,17 @@ class Variable:
         if self.scale == LOGARITHMIC:
             return self.low * (self.high / self.low) ** unit
         return self.low + (self.high - self.low) * unit
+
+    def unit(self, value: float | None) -> float:
+        """Place of a value (SI units) in [0, 1], the nearest end beyond; the middle where there is none."""
+        if value is None or self.high <= self.low:
+            return 0.5
+        held = min(max(value, self.low), self.high)
+        if self.parts:
+            return (round(held - self.low) + 0.5) / self.parts
+        if self.scale == LOGARITHMIC:
+            return float(np.log(held / self.low) / np.log(self.high / self.low))
+        return (held - self.low) / (self.high - self.low)
 
 
 @dataclass(frozen=True)
@@ -117,18 +132,20 @@ class SearchSpace:
         search, real = self.study.search, self._real
         inductors = ["inverter", "grid"] if search.filter_kind == LCL else ["inverter"]
         return (
-            _category("device", len(self.devices)),
-            _category("modulation", len(self._schemes)),
-            _category("dc link", len(self.dc_links)),
-            _category("cooling", len(search.cooling)),
-            real("switching_frequency"),
-            Variable("parallel", WHOLE, search.ranges["parallel"].low, search.ranges["parallel"].high),
-            Variable("die area", LINEAR, 0.0, 1.0),
+            _category("device", len(self.devices), SWITCHES),
+            _category("modulation", len(self._schemes), CARRIER),
+            _category("dc link", len(self.dc_links), DC_LINK),
+            _category("cooling", len(search.cooling), SINK),
+            real("switching_frequency", CARRIER),
+            Variable(
+                "parallel", WHOLE, search.ranges["parallel"].low, search.ranges["parallel"].high, SWITCHES
+            ),
+            Variable("die area", LINEAR, 0.0, 1.0, SWITCHES),
             *self._inner_variables(),
-            real("ripple"),
-            *([real("grid_inductance_ratio")] if search.filter_kind == LCL else []),
+            real("ripple", FILTER),
+            *([real("grid_inductance_ratio", FILTER)] if search.filter_kind == LCL else []),
             *self._capacitor_variables(),
-            real("sink_resistance"),
+            real("sink_resistance", SINK),
             *(variable for name in inductors for variable in self._inductor_variables(name)),
         )
 
@@ -137,8 +154,8 @@ class SearchSpace:
         if search.filter_kind == ONLY_L:
             return ()
         kinds = len(search.damping_branches)
-        choice = (_category("damping branch", kinds),) if kinds > 1 else ()
-        return (self._real("filter_capacitance_share"), *choice, self._real("damping"))
+        choice = (_category("damping branch", kinds, FILTER),) if kinds > 1 else ()
+        return (self._real("filter_capacitance_share", FILTER), *choice, self._real("damping", FILTER))
 
     def _inner_variables(self) -> tuple[Variable, ...]:
         """Of three-level legs: the inner part where it blocks less than the outer one, and its die area."""
@@ -146,22 +163,23 @@ class SearchSpace:
         if INNER not in blocking:
             return ()
         mixed = blocking[INNER] < blocking[OUTER]
-        part = (_category("inner device", len(self.inner_devices)),) if mixed else ()
-        return (*part, Variable("inner die area", LINEAR, 0.0, 1.0))
+        part = (_category("inner device", len(self.inner_devices), SWITCHES),) if mixed else ()
+        return (*part, Variable("inner die area", LINEAR, 0.0, 1.0, SWITCHES))
 
-    def _real(self, name: str) -> Variable:
+    def _real(self, name: str, part: str) -> Variable:
         ends = self.study.search.ranges[name]
-        return Variable(name, LOGARITHMIC, ends.low, ends.high)
+        return Variable(name, LOGARITHMIC, ends.low, ends.high, part)
 
     def _inductor_variables(self, side: str) -> tuple[Variable, ...]:
         ranges = self.study.search.ranges
         size, flux, window = (ranges[name] for name in ("core_size_factor", "flux_use", "window_use"))
+        part = f"{side} inductor"
         return (
-            _category(f"{side} core material", len(self.materials)),
-            _category(f"{side} conductor", len(self.conductors)),
-            Variable(f"{side} core size", LOGARITHMIC, size.low, size.high),
-            Variable(f"{side} flux use", LINEAR, flux.low, flux.high),
-            Variable(f"{side} window use", LINEAR, window.low, window.high),
+            _category(f"{side} core material", len(self.materials), part),
+            _category(f"{side} conductor", len(self.conductors), part),
+            Variable(f"{side} core size", LOGARITHMIC, size.low, size.high, part),
+            Variable(f"{side} flux use", LINEAR, flux.low, flux.high, part),
+            Variable(f"{side} window use", LINEAR, window.low, window.high, part),
         )
 
     @cached_property
@@ -180,6 +198,13 @@ class SearchSpace:
         never cross.
         """
         return self.parts > 0
+
+    @cached_property
+    def axes(self) -> Axes:
+        """What mating has to know of the axes."""
+        parts = list(dict.fromkeys(variable.part for variable in self.variables))
+        part = np.array([parts.index(variable.part) for variable in self.variables])
+        return Axes(part, self.redrawn, self.axis["modulation"])
 
     def repaired(self, points: Array) -> Array:
         """Clip points to the cube and snap categories and whole numbers to the middles of their parts."""
@@ -309,8 +334,8 @@ class SearchSpace:
         return tables.read(tables.peak_ripple, scheme, row, weight)
 
 
-def _category(name: str, count: int) -> Variable:
-    return Variable(name, CATEGORY, 0.0, float(count - 1))
+def _category(name: str, count: int, part: str) -> Variable:
+    return Variable(name, CATEGORY, 0.0, float(count - 1), part)
 
 
 def _chosen(names: tuple[str, ...], wanted: tuple[str, ...]) -> Ints:

@@ -1,4 +1,4 @@
-"""The commented starter study, and the two blocks in it that are written out of their declarations.
+"""The commented starter study, and the three blocks in it that are written out of their declarations.
 
 The blocks stand in starter.toml as these functions return them; a test fails where a declaration has changed
 since, and its message shows the block to paste.
@@ -9,11 +9,13 @@ from __future__ import annotations
 from dataclasses import fields
 from importlib.resources import files
 
+from models.ownership import EnergyTerms
 from models.specification import DesignRules
 from optimizer.quantity import written
-from optimizer.study_schema import RANGES
+from optimizer.study_schema import CURRENCY, RANGES
 
 DEFAULTS = DesignRules()
+TERMS = EnergyTerms()
 
 
 def starter_text() -> str:
@@ -41,6 +43,19 @@ def rules_block() -> str:
             for rule in fields(DEFAULTS)
         ]
     )
+
+
+def energy_block() -> str:
+    """Return the lines of [energy], each commented out and with its default and meaning."""
+    entries = [
+        (f"{term.name} = {_plain(getattr(TERMS, term.name))}", term.metadata["meaning"])
+        for term in fields(TERMS)
+    ]
+    return _commented_out([*entries, (f'currency = "{CURRENCY}"', "what prices and costs are counted in")])
+
+
+def _plain(value: float | str) -> str:
+    return f'"{value}"' if isinstance(value, str) else written(value, "")
 
 
 def _toml(value: float, unit: str) -> str:

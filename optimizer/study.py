@@ -3,12 +3,14 @@
 from __future__ import annotations
 
 import hashlib
+import re
 import tomllib
-from collections.abc import Iterable, Mapping
-from dataclasses import dataclass, replace
+from collections.abc import Iterable, Mapping, Sequence
+from dataclasses import dataclass, field, replace
 from pathlib import Path
 from typing import TYPE_CHECKING, Any
 
+from models.ownership import EnergyTerms
 from models.specification import (
     CALIFORNIAN_WEIGHTS,
     EUROPEAN_WEIGHTS,
@@ -29,6 +31,7 @@ from optimizer.study_checks import (
 )
 from optimizer.study_schema import (
     CALIFORNIAN,
+    CURRENCY,
     DEFAULT_LIMITS,
     EUROPEAN,
     NO_EMISSION_LIMIT,
@@ -65,7 +68,11 @@ class SearchSettings:
         ranges: search ranges in SI units by name, as study_schema.RANGES declares them; without
             grid_inductance_ratio for an LC filter.
         population: candidates per generation and class [-].
-        generations: [-].
+        generations: at most [-].
+        least_gain: relative gain of the hypervolume over the last `populations.GAIN_WINDOW` generations below
+            which a population stops before; 0 lets it run [-].
+        front_resolution: of two designs of a front that differ by less than this share of the front's range
+            in every objective, one is kept [-].
     """
 
     bridges: tuple[str, ...]
@@ -80,6 +87,8 @@ class SearchSettings:
     ranges: Mapping[str, SearchRange]
     population: int
     generations: int
+    least_gain: float
+    front_resolution: float
 
 
 @dataclass(frozen=True, kw_only=True)
@@ -96,6 +105,8 @@ class Study:
         at_most: greatest value of an objective by its name (minimised or not), SI units; only those the study
             names.
         catalog_files: the user's own parts files.
+        currency: what prices and costs are counted in.
+        source: the file's bytes.
     """
 
     name: str
@@ -107,6 +118,8 @@ class Study:
     objectives: tuple[str, ...]
     at_most: Mapping[str, float]
     catalog_files: tuple[Path, ...] = ()
+    currency: str = CURRENCY
+    source: bytes = field(default=b"", repr=False)
 
     @property
     def concepts(self) -> tuple[Concept, ...]:
@@ -114,20 +127,33 @@ class Study:
         return concepts(self.search.bridges, self.search.device_classes)
 
     @property
+    def folder_name(self) -> str:
+        """What its run folder is called: the name in characters that every file system takes."""
+        return re.sub(r"[^\w .-]+", "_", self.name).strip(" .") or "study"
+
+    @property
     def concept_names(self) -> tuple[str, ...]:
         """Names of the concepts."""
         return tuple(concept.name for concept in self.concepts)
 
     @classmethod
-    def read(cls, path: Path | str) -> Study:
+    def read(cls, path: Path | str, parts: Sequence[Path] | None = None) -> Study:
         """Return the study of a file.
+
+        Args:
+            path: the file.
+            parts: where copies of its parts files lie, in its order; None where they lie as it says.
 
         Raises:
             InputError: with every problem of the file at once: file, key, what was given, what is expected.
         """
         path = Path(path)
-        raw = _read_bytes(path)
-        reading = Reading(path, _read_toml(path, raw))
+        return cls.of_bytes(path, read_bytes(path), parts)
+
+    @classmethod
+    def of_bytes(cls, path: Path, raw: bytes, parts: Sequence[Path] | None = None) -> Study:
+        """Return the study of a file's bytes; arguments and errors as in `read`."""
+        reading = Reading(path, read_toml(path, raw), parts=parts)
         content = read_content(reading)
         check_content(reading, content)
         reading.raise_problems()
@@ -140,7 +166,11 @@ class Study:
             search=_search_settings(content),
             objectives=content.objectives,
             at_most=content.at_most,
-            catalog_files=tuple(path.parent / name for name in content.catalog["files"]),
+            catalog_files=tuple(
+                reading.parts_file(index, name) for index, name in enumerate(content.catalog["files"])
+            ),
+            currency=content.energy["currency"],
+            source=raw,
         )
 
     def with_bridge(self, name: str) -> Study:
@@ -193,7 +223,8 @@ def _known(name: str, known: Iterable[str]) -> str:
     return nearest(name, listed) or (f": {one_of(listed)}" if listed else ", which has none")
 
 
-def _read_bytes(path: Path) -> bytes:
+def read_bytes(path: Path) -> bytes:
+    """Return a study file's bytes; InputError where there is no such file or it is none."""
     expected = 'a study file (TOML text; "wattfront new" writes one to start from)'
     try:
         if path.is_dir():
@@ -207,7 +238,8 @@ def _read_bytes(path: Path) -> bytes:
         raise _whole_file(path, f"a file that cannot be read ({trouble.strerror})", expected) from trouble
 
 
-def _read_toml(path: Path, raw: bytes) -> dict[str, Any]:
+def read_toml(path: Path, raw: bytes) -> dict[str, Any]:
+    """Return what a study file's bytes hold; InputError where they are no TOML."""
     try:
         text = raw.decode("utf-8-sig")
     except UnicodeDecodeError as trouble:
@@ -253,6 +285,7 @@ def _specification(content: StudyContent) -> Specification:
         demand_current_a=asked["demand_current"],
         emission_limit="" if asked["emission_limit"] == NO_EMISSION_LIMIT else asked["emission_limit"],
         rules=DesignRules(**content.rules),
+        energy=EnergyTerms(**{name: value for name, value in content.energy.items() if name != "currency"}),
         **{key.name: asked[key.name] for key in own},
     )
 

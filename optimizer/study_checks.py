@@ -218,7 +218,7 @@ def _check_room_for_resonance(reading: Reading, content: StudyContent) -> None:
 
 def _check_catalog_files(reading: Reading, content: StudyContent) -> None:
     for index, name in enumerate(content.catalog.get("files", ())):
-        if not (reading.path.parent / name).is_file():
+        if not reading.parts_file(index, name).is_file():
             where = "a parts file there is, its path relative to the study file"
             problem = Problem(f'"{name}"', where, f"catalog.files[{index}]", str(reading.path))
             reading.problems.append(problem)

@@ -12,11 +12,21 @@ from dataclasses import dataclass, fields
 from typing import Any
 
 from models.designs import COOLING
+from models.ownership import ENERGY_SHARES, TIME_SHARES, EnergyTerms
 from models.specification import GRID_CONNECTED, STAND_ALONE, DesignRules, Specification
 from models.waveforms.bridges import BRIDGES
 from optimizer.study_table import Choice, Key, Kind, Quantity, Reading, Several, SubTable, Text, Whole
 
-OBJECTIVES = ("weighted loss", "volume", "price", "mass", "distortion")
+OBJECTIVES = (
+    "weighted loss",
+    "volume",
+    "price",
+    "mass",
+    "distortion",
+    "cost of ownership",
+    "rated loss",
+    "junction temperature rise",
+)
 DEFAULT_CLASSES = ("silicon IGBT", "superjunction MOSFET", "SiC MOSFET", "GaN HEMT")
 DC_LINKS = ("electrolytic", "film")
 LCL, LC, ONLY_L = "LCL", "LC", "L"
@@ -95,10 +105,18 @@ RANGES = (
 NO_EMISSION_LIMIT = "none"
 SIDES = ("lagging", "leading")
 DEFAULT_LIMITS = {GRID_CONNECTED: "IEEE 1547-2018", STAND_ALONE: "IEC 62040-3 stand-alone output"}
-TABLES = ("application", "weighting", "bridge", "filter", "objectives", "search", "rules", "catalog")
-NAME = Text(
-    "a text of letters, digits, blanks, dots, - and _ (the run folder is called so)", r"\w[\w .-]{0,79}"
+TABLES = (
+    "application",
+    "weighting",
+    "bridge",
+    "filter",
+    "objectives",
+    "energy",
+    "search",
+    "rules",
+    "catalog",
 )
+NAME = Text("a text of 1 to 80 characters on one line", r"[^\x00-\x1f\x7f\u2028\u2029]{1,80}")
 TOP = (
     Key("name", NAME),
     Key("description", Text(pattern=".*"), ""),
@@ -158,10 +176,28 @@ MINIMISE = (
     Key("minimise", Several(Choice(OBJECTIVES), 2, 5), OBJECTIVES[:3]),
     Key("at_most", SubTable(), None),
 )
-_POSITIVE = {"": 1.0, "m^3": 1e4, "kg": 1e7}
-AT_MOST = tuple(
-    Key(name, Quantity(unit, 0.0, _POSITIVE[unit] if name != "price" else math.inf, above=True), None)
-    for name, unit in zip(OBJECTIVES, ("", "m^3", "", "kg", ""), strict=True)
+_SHARE_LIMIT, _COST_LIMIT = Quantity("", 0.0, 1.0, above=True), Quantity("", 0.0, math.inf, above=True)
+_LIMITS = {
+    "volume": Quantity("m^3", 0.0, 1e4, above=True),
+    "mass": Quantity("kg", 0.0, 1e7, above=True),
+    "price": _COST_LIMIT,
+    "cost of ownership": _COST_LIMIT,
+}
+AT_MOST = tuple(Key(name, _LIMITS.get(name, _SHARE_LIMIT), None) for name in OBJECTIVES)
+_TERMS = EnergyTerms()
+_ENERGY_KINDS: dict[str, Kind] = {
+    "price_per_kwh": Quantity("", 0.0, 1e6),
+    "years": Quantity("", 0.0, 100.0, above=True),
+    "hours_a_year": Quantity("", 0.0, 8784.0, above=True),
+    "discount_rate": Quantity("", 0.0, 1.0),
+    "weights_are": Choice((ENERGY_SHARES, TIME_SHARES)),
+}
+CURRENCY = "currency units"
+ENERGY = (
+    *(Key(term.name, _ENERGY_KINDS[term.name], getattr(_TERMS, term.name)) for term in fields(_TERMS)),
+    Key(
+        "currency", Text("a currency's name or sign of up to 20 characters", r"[^\x00-\x1f]{1,20}"), CURRENCY
+    ),
 )
 SEARCH = (
     Key("device_classes", Several(Text()), DEFAULT_CLASSES),
@@ -169,11 +205,20 @@ SEARCH = (
     Key("conductors", Several(Text()), ()),
     Key("dc_links", Several(Choice(DC_LINKS)), DC_LINKS),
     Key("cooling", Several(Choice(COOLING)), COOLING[:2]),
-    Key("population", Whole(8, 10_000), 100),
-    Key("generations", Whole(1, 100_000), 200),
+    Key("population", Whole(8, 10_000), 500),
+    Key("generations", Whole(1, 100_000), 170),
+    Key("least_gain", Quantity("", 0.0, 1.0), 0.0),
+    Key("front_resolution", Quantity("", 0.0, 0.1), 0.001),
     Key("ranges", SubTable(), None),
 )
 CATALOG = (Key("files", Several(Text()), ()),)
+LIST_KEYS = frozenset(
+    key.name
+    for table in (CUSTOM_WEIGHTING, BRIDGE, FILTER, MINIMISE, SEARCH, CATALOG)
+    for key in table
+    if isinstance(key.kind, Several)
+)
+"""Keys whose value is a list; a list at any other key makes a batch of cases."""
 _RULES_THAT_MAY_BE_ZERO = {"modulation_reserve", "dead_time_compensated", "fan_load_start"}
 _RULES_UP_TO_ONE = {
     "modulation_reserve",
@@ -204,8 +249,8 @@ class StudyContent:
     """The values of a study file in SI units, table by table; a value in trouble is missing.
 
     Attributes:
-        top, application, dc_voltage, short_circuit_ratio, weighting, bridge, objectives, at_most, search,
-            rules, catalog: tables by key.
+        top, application, dc_voltage, short_circuit_ratio, weighting, bridge, objectives, at_most, energy,
+            search, rules, catalog: tables by key.
         filter: kind and damping.
         ranges: search ranges by name.
     """
@@ -219,6 +264,7 @@ class StudyContent:
     filter: Mapping[str, Any]
     objectives: tuple[str, ...]
     at_most: Mapping[str, float]
+    energy: Mapping[str, Any]
     search: Mapping[str, Any]
     ranges: Mapping[str, SearchRange]
     rules: Mapping[str, float]
@@ -237,6 +283,7 @@ def read_content(reading: Reading) -> StudyContent:
         filter=reading.table("filter", FILTER),
         objectives=reading.table("objectives", MINIMISE).get("minimise", ()),
         at_most=_stated(reading.table("objectives.at_most", AT_MOST)),
+        energy=reading.table("energy", ENERGY),
         search=reading.table("search", SEARCH),
         ranges=_read_ranges(reading),
         rules=reading.table("rules", RULES),

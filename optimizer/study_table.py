@@ -9,7 +9,7 @@ from __future__ import annotations
 import difflib
 import math
 import re
-from collections.abc import Iterable, Mapping
+from collections.abc import Iterable, Mapping, Sequence
 from dataclasses import dataclass, field
 from pathlib import Path
 from typing import Any, Protocol
@@ -169,11 +169,24 @@ class Key:
 
 @dataclass
 class Reading:
-    """A study file being read: where it lies, what it holds, and the problems found so far."""
+    """A study file being read: where it lies, what it holds, and the problems found so far.
+
+    Attributes:
+        path, content: of the file.
+        problems: found so far.
+        parts: copies of the parts files it names, in its order; None where they lie beside it as it says.
+    """
 
     path: Path
     content: Mapping[str, Any]
     problems: list[Problem] = field(default_factory=list)
+    parts: Sequence[Path] | None = None
+
+    def parts_file(self, index: int, name: str) -> Path:
+        """Return where the parts file of this index and name lies."""
+        if self.parts is None or index >= len(self.parts):
+            return self.path.parent / name
+        return self.parts[index]
 
     def table(self, place: str, keys: Iterable[Key]) -> dict[str, Any]:
         """Return the values of a table's keys, defaults included; a value in trouble is left out.

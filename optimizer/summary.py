@@ -3,13 +3,18 @@
 from __future__ import annotations
 
 import json
+from typing import TYPE_CHECKING
 
 from rich.box import SIMPLE_HEAD
 from rich.console import Console
 from rich.table import Table
 
 from optimizer.objectives import OBJECTIVES
-from optimizer.run import Outcome
+
+if TYPE_CHECKING:
+    from optimizer.audited_run import Audited
+    from optimizer.batch.batch_run import BatchOutcome
+    from optimizer.run import Outcome
 
 
 def print_summary(outcome: Outcome, *, as_json: bool) -> None:
@@ -32,6 +37,7 @@ def print_summary(outcome: Outcome, *, as_json: bool) -> None:
         f"{outcome.result.evaluations:,} evaluations in {seconds['total']:.1f} s, seed {outcome.result.seed}"
     )
     console.print(f"Dashboard: {outcome.folder / 'dashboard.html'}", soft_wrap=True)
+    console.print(f'Next: wattfront shortlist "{outcome.folder}", or report instead', soft_wrap=True)
     console.print(
         "[dim]Early-concept figures; lethal dc-link energy; standards and licensed practice decide.[/dim]",
         soft_wrap=True,
@@ -63,3 +69,67 @@ def _table(outcome: Outcome) -> Table:
         else:
             table.add_row(found.concept.name, "0", "0", *["-"] * len(study.objectives), "-")
     return table
+
+
+def print_audit(audited: Audited, *, as_json: bool) -> None:
+    """Print what an audit found, as a table or as JSON by concept."""
+    from optimizer.audited_run import audit_entries
+
+    if as_json:
+        print(json.dumps(audit_entries(audited.found)))
+        return
+    table = Table(
+        title=f"{audited.run.study.name}: share of the joint hypervolume that the search had found",
+        box=SIMPLE_HEAD,
+        padding=(0, 1, 0, 0),
+    )
+    for heading in ("concept", "designs\nevaluated", "of them\nfeasible", "front", "of it\nbeaten", "share"):
+        table.add_column(heading, justify="left" if heading == "concept" else "right")
+    for one in audited.found:
+        table.add_row(
+            one.concept.name,
+            f"{one.evaluations:,}",
+            f"{one.feasible:,}",
+            f"{one.front:,}",
+            f"{one.beaten:,}",
+            f"{one.share:.2%}",
+        )
+    console = Console()
+    console.print(table)
+    console.print(
+        "A beaten design has a better one somewhere near it; the share says how much that matters.",
+        soft_wrap=True,
+    )
+
+
+def print_batch(found: BatchOutcome, *, as_json: bool) -> None:
+    """Print a finished batch: a row a case and concept, or JSON."""
+    if as_json:
+        rows = json.loads(found.cases.to_json(orient="records"))
+        print(json.dumps({"folder": str(found.folder), "cases": rows, "ruled_out": dict(found.ruled_out)}))
+        return
+    console = Console()
+    best = [name for name in found.cases.columns if name.startswith("least_")]
+    columns = {OBJECTIVES[name].column: OBJECTIVES[name] for name in OBJECTIVES}
+    table = Table(title="Best of each case", box=SIMPLE_HEAD, padding=(0, 1, 0, 0))
+    for heading in ("case", "concept", "designs"):
+        table.add_column(heading, justify="right" if heading == "designs" else "left")
+    for name in best:
+        objective = columns[name.removeprefix("least_")]
+        table.add_column(f"least {objective.title}\n\\[{objective.unit}]", justify="right")
+    last = None
+    for row in found.cases.to_dict("records"):
+        values = ["-" if row[name] != row[name] else f"{row[name]:.3g}" for name in best]
+        case, last = "" if row["case"] == last else str(row["case"]), row["case"]
+        table.add_row(case, str(row["concept"]), str(row["designs"]), *values)
+    console.print(table)
+    for case, reasons in found.ruled_out.items():
+        told = "; ".join(f"{name}: {miss}" for name, _, miss in reasons)
+        console.print(f"{case}: nothing feasible. {told}", soft_wrap=True)
+    count = found.cases.evaluations.sum()
+    console.print(f"{count:,} evaluations in {found.seconds:.1f} s")
+    console.print(f"Dashboard: {found.folder / 'dashboard.html'}", soft_wrap=True)
+    console.print(
+        "[dim]Early-concept figures; lethal dc-link energy; standards and licensed practice decide.[/dim]",
+        soft_wrap=True,
+    )

@@ -42,6 +42,13 @@ class Position:
             share = share + ((level == step) & (np.sign(current) == sign))
         return share * np.abs(current)
 
+    def blocks(self, level: Array) -> NDArray[np.bool_]:
+        """Whether its ends differ in potential at given leg levels [-]."""
+        found = np.zeros(np.shape(level), dtype=np.bool_)
+        for step, (upper, lower) in self.ends.items():
+            found |= (level == step) & (upper != lower)
+        return found
+
 
 def _position(
     name: str, conducts: set[tuple[float, int]], upper: dict[float, float], lower: dict[float, float]

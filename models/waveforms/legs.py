@@ -22,9 +22,11 @@ Reference = Callable[[Array], Array]
 NATURAL, SYMMETRICAL, ASYMMETRICAL = "natural", "symmetrical regular", "asymmetrical regular"
 SAMPLINGS = (NATURAL, SYMMETRICAL, ASYMMETRICAL)
 BISECTIONS = 48
-PROBES = 6  # sub-intervals of half a carrier period that are searched for a crossing of their own
-JUMP_GRID = 2880  # cells of the line period searched for jumps of the reference
+STEEPEST = 4.0  # slope that no reference of a cell exceeds between its jumps [1/rad]
+PROBES = 512  # sub-intervals of half a carrier period where the carrier is not steeper than that
+JUMP_GRID = 1440  # cells of the line period searched for jumps of the reference
 JUMP = 0.02  # change within such a cell that no smooth reference makes
+CONVERGED = 1e-13  # of a crossing: difference of reference and carrier [-], or bracket [rad]
 FULL_TURN = 2.0 * np.pi
 ROUNDING = 1e-11  # of a carrier period
 TOUCH = 1e-7  # rad between two switchings that are none
@@ -68,6 +70,9 @@ def carrier(angle: Array, pulse_number: int, offset: float) -> Array:
 def held(reference: Reference, pulse_number: int, offset: float, sampling: str) -> Reference:
     """The reference as a regular sampler holds it; itself for natural sampling.
 
+    Symmetrical: read at each carrier peak and held to the next one; asymmetrical: read at each peak and each
+    valley and held to the next of either.
+
     Raises:
         ValueError: for an unknown sampling.
     """
@@ -75,11 +80,9 @@ def held(reference: Reference, pulse_number: int, offset: float, sampling: str) 
         raise ValueError(f"sampling {sampling!r}: expected one of {', '.join(SAMPLINGS)}")
     if sampling == NATURAL:
         return reference
-    steps = 1.0 if sampling == SYMMETRICAL else 2.0
 
     def sampled(angle: Array) -> Array:
-        # symmetrical: taken at each carrier peak and held to the next; asymmetrical: at peak and valley
-        shift = 0.5 if sampling == SYMMETRICAL else 0.0
+        steps, shift = _sampler(sampling)
         place = (pulse_number * angle - offset) / FULL_TURN - shift
         instant = (np.floor(place * steps + ROUNDING) / steps + shift) * FULL_TURN + offset
         return reference(np.mod(instant / pulse_number + AFTER, FULL_TURN))
@@ -87,10 +90,27 @@ def held(reference: Reference, pulse_number: int, offset: float, sampling: str) 
     return sampled
 
 
+def _sampler(sampling: str) -> tuple[float, float]:
+    """Readings per carrier period, and the first one's place after a valley [carrier periods]."""
+    return (1.0, 0.5) if sampling == SYMMETRICAL else (2.0, 0.0)
+
+
+def first_seen(angle: float, pulse_number: int, offset: float, sampling: str) -> float:
+    """Angle at which a sampler first sees what happens at an angle; that angle itself if sampling is natural
+    [rad].
+    """
+    if sampling == NATURAL:
+        return angle
+    steps, shift = _sampler(sampling)
+    place = (pulse_number * (angle - AFTER) - offset) / FULL_TURN - shift
+    return float(((np.ceil(place * steps - ROUNDING) / steps + shift) * FULL_TURN + offset) / pulse_number)
+
+
 def pulse_width_cell(
     reference: Reference,
     pulse_number: int,
     *,
+    jumps: Array,
     offset: float = 0.0,
     sampling: str = NATURAL,
     inverted: bool = False,
@@ -100,12 +120,14 @@ def pulse_width_cell(
     Args:
         reference: angle [rad] -> reference in [-1, 1] [-].
         pulse_number: carrier periods in a line period, a whole number [-].
+        jumps: angles at which the reference jumps, as of `jumps_of` [rad].
         offset: carrier angle of the valley at line angle 0 [rad].
         sampling: one of SAMPLINGS.
         inverted: compare with the inverted carrier.
 
     Returns:
-        The cell with its exact switching angles.
+        The cell with its exact switching angles. Pulses and gaps below 1e-7 rad are left out: carrier and
+        reference only touch there.
     """
     shown = held(reference, pulse_number, offset, sampling)
     sign = -1.0 if inverted else 1.0
@@ -113,27 +135,42 @@ def pulse_width_cell(
     def excess(angle: Array) -> Array:
         return shown(np.mod(angle, FULL_TURN)) - sign * carrier(angle, pulse_number, offset)
 
-    count = 2 * pulse_number * PROBES
+    # where the carrier is steeper than any reference they cross once at most between its corners
+    probes = 1 if 2.0 * pulse_number / np.pi > STEEPEST else PROBES
+    count = 2 * pulse_number * probes
     bounds = np.mod((offset / pulse_number) + FULL_TURN * np.arange(count) / count, FULL_TURN)
-    bounds = np.unique(np.concatenate([bounds, jumps_of(reference)]))
+    bounds = np.unique(np.concatenate([bounds, jumps]))
     bounds = np.append(bounds, bounds[0] + FULL_TURN)
     inside = 1e-8 / pulse_number  # far more than ROUNDING of a carrier period, far less than a pulse
     left, right = bounds[:-1] + inside, bounds[1:] - inside
-    start, end = excess(left) > 0.0, excess(right) > 0.0
-    crossing = start != end
-    low, high, above = left[crossing], right[crossing], start[crossing]
-    for _ in range(BISECTIONS):
-        middle = 0.5 * (low + high)
-        same = (excess(middle) > 0.0) == above
-        low, high = np.where(same, middle, low), np.where(same, high, middle)
-    jumps = bounds[1:][end != np.roll(start, -1)]
-    angles = _without_touches(np.sort(np.mod(np.concatenate([0.5 * (low + high), jumps]), FULL_TURN)))
+    start, end = excess(left), excess(right)
+    crossing = (start > 0.0) != (end > 0.0)
+    crossings = _crossings(excess, left[crossing], right[crossing], start[crossing], end[crossing])
+    switched = bounds[1:][(end > 0.0) != np.roll(start > 0.0, -1)]
+    angles = _without_touches(np.sort(np.mod(np.concatenate([crossings, switched]), FULL_TURN)))
     before = (angles[0] if len(angles) else 0.0) - inside
     return Cell(angles, bool(excess(np.array([before]))[0] > 0.0))
 
 
+def _crossings(excess: Reference, old: Array, new: Array, at_old: Array, at_new: Array) -> Array:
+    """Angles between `old` and `new` at which the excess changes its sign, by false position with the staying
+    end's value halved (Dowell & Jarratt 1971).
+    """
+    for _ in range(2 * BISECTIONS):
+        if not np.any((np.abs(at_new) > CONVERGED) & (np.abs(new - old) > CONVERGED)):
+            break
+        between = new - at_new * (new - old) / (at_new - at_old)
+        found = excess(between)
+        crossed = (found > 0.0) != (at_new > 0.0)
+        old, at_old = np.where(crossed, new, old), np.where(crossed, at_new, 0.5 * at_old)
+        new, at_new = between, found
+    return new
+
+
 def _without_touches(angles: Array) -> Array:
     """Switching angles without pairs that bound no time: carrier and reference only touch there."""
+    if len(angles) < 2 or min(np.diff(angles).min(), angles[0] + FULL_TURN - angles[-1]) >= TOUCH:
+        return angles
     kept: list[float] = []
     for angle in angles.tolist():
         if kept and angle - kept[-1] < TOUCH:
@@ -145,15 +182,19 @@ def _without_touches(angles: Array) -> Array:
     return np.array(kept)
 
 
-def jumps_of(reference: Reference) -> Array:
-    """Angles at which a reference jumps (clamped schemes, a change of polarity) [rad]."""
+def jumps_of(references: Reference) -> Array:
+    """Angles at which any leg's reference jumps (clamped schemes, a change of polarity), with 0 and pi [rad].
+
+    Args:
+        references: angle [rad] -> references of all legs, legs on the last axis [-].
+    """
     bounds = FULL_TURN * np.arange(JUMP_GRID + 1) / JUMP_GRID
-    low, high = bounds[:-1], bounds[1:]
-    jumping = np.abs(reference(np.mod(high - 1e-12, FULL_TURN)) - reference(low)) > JUMP
-    low, high = low[jumping], high[jumping]
-    for _ in range(BISECTIONS):
+    values = references(np.mod(bounds, FULL_TURN))
+    jumping = np.abs(np.diff(values, axis=0)).max(-1) > JUMP
+    low, high = bounds[:-1][jumping], bounds[1:][jumping]
+    for _ in range(BISECTIONS if len(low) else 0):
         middle = 0.5 * (low + high)
-        nearer = np.abs(reference(middle) - reference(low)) > 0.5 * JUMP
+        nearer = np.abs(references(middle) - references(low)).max(-1) > 0.5 * JUMP
         low, high = np.where(nearer, low, middle), np.where(nearer, middle, high)
     return np.concatenate([0.5 * (low + high), [0.0, np.pi]])
 

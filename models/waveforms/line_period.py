@@ -6,11 +6,13 @@ everything follows from it in closed form or by Gauss quadrature between two swi
 for any pulse number, and the only right way at low ones.
 
 Circuit: inductance L between bridge and a sinusoidal voltage (grid, or a filter capacitor) that takes up the
-bridge's fundamental; for three phases an isolated star point. Smooth dc source.
+bridge's fundamental; for three phases an isolated star point. Smooth dc source. The ripple current is all of
+the phase current but its fundamental: sidebands and harmonics of any order, zero on average.
 """
 
 from __future__ import annotations
 
+from collections.abc import Callable
 from dataclasses import dataclass
 from functools import cached_property
 
@@ -18,13 +20,23 @@ import numpy as np
 from numpy.typing import NDArray
 
 from models.waveforms.bridges import ALL_BRIDGES, QUASI_SQUARE, Bridge, Modulation
-from models.waveforms.legs import FULL_TURN, NATURAL, Cell, line_switched_cell, pulse_width_cell
+from models.waveforms.legs import (
+    FULL_TURN,
+    NATURAL,
+    SAMPLINGS,
+    Cell,
+    first_seen,
+    jumps_of,
+    line_switched_cell,
+    pulse_width_cell,
+)
 
 Array = NDArray[np.float64]
 Complex = NDArray[np.complex128]
 NODES, WEIGHTS = np.polynomial.legendre.leggauss(4)
 LONGEST = np.pi / 90.0  # rad that a piece of the quadrature may be long
-PHASE_SHIFTS = {1: np.zeros(1), 3: 2.0 * np.pi / 3.0 * np.arange(3)}
+SHIFTS = 2.0 * np.pi / 3.0 * np.arange(3)  # lag of each phase behind phase one [rad]
+NO_FUNDAMENTAL = 1e-9  # of V_dc
 
 
 @dataclass(frozen=True, kw_only=True)
@@ -34,18 +46,21 @@ class LinePeriod:
     Attributes:
         bridge, modulation: names out of `bridges.ALL_BRIDGES`.
         modulation_index: M; without effect on line-switched schemes [-].
-        displacement: angle by which the fundamental current lags the bridge's fundamental voltage [rad].
+        displacement: angle by which the fundamental current lags the bridge's fundamental voltage, negative
+            for leading [rad]. Currents of three phases are balanced, and the voltage is the positive
+            sequence; where there is no fundamental voltage, sin(theta) takes its place.
         dc_voltage: [V].
-        inductance: per phase between bridge and sinusoidal voltage [H].
+        inductance: per phase between bridge and sinusoidal voltage; infinite for no ripple [H].
         pulse_number: carrier periods in a line period, whole [-].
         line_frequency: [Hz].
-        current: rms of the fundamental phase current [A].
+        current: rms of the fundamental phase current, 0 for the ripple alone [A].
         sampling: "natural", "symmetrical regular" or "asymmetrical regular".
-        carrier_offset: carrier angle of the valley at the line voltage's zero [rad].
-        conduction_angle: of a quasi-square wave [rad].
+        carrier_offset: carrier angle of the valley at the line voltage's zero, so that a valley stands at
+            line angle `carrier_offset`/`pulse_number` [rad].
+        conduction_angle: of a quasi-square wave, above 0 to pi [rad].
 
     Raises:
-        ValueError: for unknown names or values that are not positive.
+        ValueError: for unknown names or values out of their range.
     """
 
     bridge: str
@@ -69,9 +84,20 @@ class LinePeriod:
             raise ValueError(
                 f"modulation index {self.modulation_index}: expected 0 to {limit:.4f} for {self.modulation}"
             )
-        for name in ("dc_voltage", "inductance", "pulse_number", "line_frequency", "current"):
+        if self.sampling not in SAMPLINGS:
+            raise ValueError(f"sampling {self.sampling!r}: expected one of {', '.join(SAMPLINGS)}")
+        for name in ("dc_voltage", "inductance", "pulse_number", "line_frequency"):
             if not getattr(self, name) > 0.0:
                 raise ValueError(f"{name} {getattr(self, name)}: expected a number above 0")
+        for name in ("dc_voltage", "pulse_number", "line_frequency", "displacement", "carrier_offset"):
+            if not np.isfinite(getattr(self, name)):
+                raise ValueError(f"{name} {getattr(self, name)}: expected a finite number")
+        if self.pulse_number != round(self.pulse_number):
+            raise ValueError(f"pulse_number {self.pulse_number}: expected a whole number")
+        if not 0.0 <= self.current < np.inf:
+            raise ValueError(f"current {self.current}: expected a finite number of at least 0")
+        if not 0.0 < self.conduction_angle <= np.pi + 1e-12:
+            raise ValueError(f"conduction_angle {self.conduction_angle}: expected above 0 to pi")
 
     @property
     def circuit(self) -> Bridge:
@@ -88,29 +114,43 @@ class LinePeriod:
         """Cells of every leg: one of a two-level leg, upper and lower of a three-level leg."""
         return tuple(self._leg(leg) for leg in range(len(self.circuit.voltage_weights)))
 
+    def _references(self, angle: Array) -> Array:
+        """References of all legs, legs on the last axis [-]."""
+        follows = (self.displacement,) if self.scheme.follows_current else ()
+        index = np.full(np.shape(angle), self.modulation_index)
+        return self.scheme.references(np.asarray(angle), index, *follows)
+
+    @cached_property
+    def _jumps(self) -> Array:
+        return jumps_of(self._references)
+
     def _leg(self, leg: int) -> tuple[Cell, ...]:
         if not self.scheme.switching_legs[leg]:
             return (self._line_switched(leg),)
-        timing = {"offset": self.carrier_offset, "sampling": self.sampling}
-        inverted = self.scheme.carrier_sign[leg] < 0
-        follows = (self.displacement,) if self.scheme.follows_current else ()
 
-        def reference(angle: Array) -> Array:
-            index = np.full(np.shape(angle), self.modulation_index)
-            return self.scheme.references(np.asarray(angle), index, *follows)[..., leg]
+        def cell(part: Callable[[Array], Array]) -> Cell:
+            return pulse_width_cell(
+                lambda angle: part(self._references(angle)[..., leg]),
+                self.pulse_number,
+                jumps=self._jumps,
+                offset=self.carrier_offset,
+                sampling=self.sampling,
+                inverted=self.scheme.carrier_sign[leg] < 0,
+            )
 
         if self.circuit.levels == 2:
-            return (pulse_width_cell(reference, self.pulse_number, inverted=inverted, **timing),)  # type: ignore[arg-type]
-        return tuple(
-            pulse_width_cell(part, self.pulse_number, inverted=inverted, **timing)  # type: ignore[arg-type]
-            for part in (
-                lambda angle: 2.0 * np.maximum(reference(angle), 0.0) - 1.0,
-                lambda angle: 2.0 * np.minimum(reference(angle), 0.0) + 1.0,
-            )
+            return (cell(lambda value: value),)
+        return (
+            cell(lambda value: 2.0 * np.maximum(value, 0.0) - 1.0),
+            cell(lambda value: 2.0 * np.minimum(value, 0.0) + 1.0),
         )
 
     def _line_switched(self, leg: int) -> Cell:
         shift = (0.0, 2.0 * np.pi / 3.0, 4.0 * np.pi / 3.0)[leg] if self.circuit.phases == 3 else leg * np.pi
+        if any(self.scheme.switching_legs):
+            # beside a leg at carrier frequency: both change with the polarity that the sampler sees
+            seen = (self.pulse_number, self.carrier_offset, self.sampling)
+            return line_switched_cell(first_seen(shift, *seen), first_seen(shift + np.pi, *seen))
         # the legs of a quasi-square wave are displaced so that their difference lasts the conduction angle
         lead = 0.5 * (np.pi - self.conduction_angle) if self.modulation == QUASI_SQUARE else 0.0
         turn_on = shift + (lead if leg == 0 else -lead)
@@ -174,11 +214,12 @@ class LinePeriod:
 
     @cached_property
     def voltage_thd(self) -> float:
-        """Distortion of phase one's output voltage, all harmonics, over its fundamental [-].
+        """Distortion of phase one's output voltage over its fundamental [-].
 
-        Infinite where there is no fundamental, as with clamped legs at three pulses.
+        Counts all harmonics without end, from the exact rms value; a dc component counts for nothing.
+        Infinite where there is no fundamental, as at M = 0 or with clamped legs at three pulses.
         """
-        if self.fundamental_peak < 1e-9 * self.dc_voltage:
+        if self.fundamental_peak < NO_FUNDAMENTAL * self.dc_voltage:
             return float("inf")
         levels = self.output_levels[0]
         square = float(self.widths @ levels**2 - (self.widths @ levels) ** 2)
@@ -200,24 +241,30 @@ class LinePeriod:
         Long intervals, as line-switched legs and low pulse numbers have, are cut into short ones, so that a
         current that changes its sign within one costs no accuracy.
         """
-        widths = np.diff(self.bounds)
-        parts = np.maximum(np.ceil(widths / LONGEST).astype(np.int64), 1)
-        interval = np.repeat(np.arange(len(widths)), parts)
-        place = np.arange(parts.sum()) - np.repeat(np.cumsum(parts) - parts, parts)
-        half = 0.5 * widths[interval] / parts[interval]
-        middle = self.bounds[interval] + (2 * place + 1) * half
-        angle = (middle[:, None] + half[:, None] * NODES).ravel()
-        weight = (half[:, None] * WEIGHTS).ravel() / FULL_TURN
-        return angle, weight, np.repeat(interval, len(NODES))
+        return quadrature(self.bounds)
+
+    def forget_nodes(self) -> None:
+        """Drop what is kept at the quadrature nodes (megabytes at high pulse numbers); it is found again when
+        asked for.
+        """
+        for name in ("nodes", "_flux_at_nodes", "ripple", "phase_current"):
+            self.__dict__.pop(name, None)
+
+    def _flux_at(self, angle: Array, interval: NDArray[np.int64]) -> Array:
+        """Integral of output voltage less mean and fundamental at angles of given intervals [V s]."""
+        means = (self.output_levels @ self.widths)[:, None]
+        start = self.bounds[interval]
+        straight = (self.output_levels[:, interval] - means) * (angle - start)
+        # Re(c (exp(j a) - exp(j s))/j), written out in real numbers
+        real, imaginary = self.fundamental.real[:, None], self.fundamental.imag[:, None]
+        sines, cosines = np.sin([angle, start]), np.cos([angle, start])
+        smooth = real * (sines[0] - sines[1]) + imaginary * (cosines[0] - cosines[1])
+        return self._flux_at_bounds[:, interval] + (straight - smooth) / (FULL_TURN * self.line_frequency)
 
     @cached_property
     def _flux_at_nodes(self) -> Array:
         angle, _, interval = self.nodes
-        means = (self.output_levels @ self.widths)[:, None]
-        start = self.bounds[interval]
-        straight = (self.output_levels[:, interval] - means) * (angle - start)
-        smooth = (self.fundamental[:, None] * (np.exp(1j * angle) - np.exp(1j * start)) / 1j).real
-        return self._flux_at_bounds[:, interval] + (straight - smooth) / (FULL_TURN * self.line_frequency)
+        return self._flux_at(angle, interval)
 
     @cached_property
     def _mean_flux(self) -> Array:
@@ -238,38 +285,73 @@ class LinePeriod:
         """Rms ripple current of phase one over the line period [A]."""
         return float(np.sqrt(self.ripple[0] ** 2 @ self.nodes[1]))
 
+    @cached_property
+    def ripple_peak(self) -> float:
+        """Greatest magnitude of the ripple current of phase one over the line period [A]."""
+        return float(np.abs(self._ripple_extremes[1]).max())
+
+    def ripple_at(self, angle: Array) -> Array:
+        """Ripple current of every phase at angles of any turn (phase, angle) [A]."""
+        within = np.mod(angle, FULL_TURN)
+        interval = np.clip(np.searchsorted(self.bounds, within, side="right") - 1, 0, len(self.widths) - 1)
+        return (self._flux_at(within, interval) - self._mean_flux) / self.inductance
+
     def line_current(self, angle: Array) -> Array:
-        """Fundamental phase currents (phase, angle) [A]."""
-        lag = np.angle(1j * self.fundamental)[:, None]  # angle of the fundamental against a sine
-        return np.sqrt(2.0) * self.current * np.sin(angle + lag - self.displacement)
+        """Fundamental phase currents, lagging the (positive-sequence) fundamental voltage (phase, angle)
+        [A].
+        """
+        shifts = SHIFTS[: self.circuit.phases]
+        first = np.mean(self.fundamental * np.exp(1j * shifts))
+        lead = np.angle(1j * first) if abs(first) > NO_FUNDAMENTAL * self.dc_voltage else 0.0
+        return np.sqrt(2.0) * self.current * np.sin(angle + lead - self.displacement - shifts[:, None])
 
     @cached_property
     def phase_current(self) -> Array:
         """Phase currents, ripple included, at the quadrature nodes (phase, node) [A]."""
         return self.line_current(self.nodes[0]) + self.ripple
 
+    def ripple_swing(self, angle: Array) -> Array:
+        """Peak-to-peak ripple of phase one in the window of one carrier period around each angle [A].
+
+        Where no leg switches at the carrier frequency the window is the whole line period.
+
+        Args:
+            angle: middles of the windows (k,) [rad].
+        """
+        place, value = self._ripple_extremes
+        if not any(self.scheme.switching_legs):
+            return np.full(np.shape(angle), np.ptp(value))
+        width = FULL_TURN / self.pulse_number
+        start = np.mod(np.asarray(angle) - 0.5 * width, FULL_TURN)
+        ends = self.ripple_at(np.concatenate([start, start + width]))[0].reshape(2, -1)
+        turns = np.concatenate([place, place + FULL_TURN])
+        values = np.concatenate([value, value, value[:1]])
+        span = np.array([np.searchsorted(turns, start), np.searchsorted(turns, start + width)])
+        top, bottom = ends.max(0), ends.min(0)
+        filled = span[1] > span[0]  # some extreme lies inside
+        top[filled] = np.maximum(top, np.maximum.reduceat(values, span.T.ravel())[::2])[filled]
+        bottom[filled] = np.minimum(bottom, np.minimum.reduceat(values, span.T.ravel())[::2])[filled]
+        return top - bottom
+
     @cached_property
     def local_peak_to_peak(self) -> tuple[Array, Array]:
-        """Peak-to-peak ripple of phase one in every carrier period, from one carrier peak to the next, and
-        the period's middle angle ([rad], [A]).
+        """Peak-to-peak ripple of phase one in every carrier period, and the periods' middle angles ([rad],
+        [A]).
 
-        Where no leg switches at the carrier frequency the whole line period counts as one.
+        Periods from one carrier peak to the next (the even entries, around the valleys) and from one valley
+        to the next (the odd entries), 2 x pulse number in all. Where no leg switches at the carrier frequency
+        the whole line period counts as one.
         """
-        angle, value = self._ripple_extremes
         if not any(self.scheme.switching_legs):
-            return np.array([np.pi]), np.array([np.ptp(value)])
-        number = np.floor((self.pulse_number * angle - self.carrier_offset) / FULL_TURN + 0.5 + 1e-9)
-        number = number.astype(np.int64) % self.pulse_number
-        order = np.argsort(number, kind="stable")
-        starts = np.flatnonzero(np.concatenate([[True], np.diff(number[order]) > 0]))
-        sorted_values = value[order]
-        swing = np.maximum.reduceat(sorted_values, starts) - np.minimum.reduceat(sorted_values, starts)
-        middle = (number[order][starts] * FULL_TURN + self.carrier_offset) / self.pulse_number
-        return middle, swing
+            middle = np.array([np.pi])
+        else:
+            half_periods = np.arange(2 * self.pulse_number)
+            middle = (half_periods * np.pi + self.carrier_offset) / self.pulse_number
+        return middle, self.ripple_swing(middle)
 
     @cached_property
     def _ripple_extremes(self) -> tuple[Array, Array]:
-        """Angles and ripple current of phase one at all switchings, carrier peaks and turning points between.
+        """Angles, ascending, and ripple current of phase one at all switchings and turning points between.
 
         Between two switchings the voltage level is constant, so that the ripple turns where the fundamental
         passes that level.
@@ -280,23 +362,29 @@ class LinePeriod:
         start, end = self.bounds[:-1], self.bounds[1:]
         turning = [np.mod(sign * lift - lag, FULL_TURN) for sign in (1.0, -1.0)]
         inside = [angle[(angle > start) & (angle < end) & (np.abs(level) < size)] for angle in turning]
-        peaks = np.zeros(0)
-        if any(self.scheme.switching_legs):
-            valleys = np.arange(self.pulse_number) * FULL_TURN + self.carrier_offset
-            peaks = np.mod((valleys + np.pi) / self.pulse_number, FULL_TURN)
-        further = np.concatenate([*inside, peaks])
-        interval = np.clip(np.searchsorted(self.bounds, further, side="right") - 1, 0, len(start) - 1)
-        smooth = (self.fundamental[0] * (np.exp(1j * further) - np.exp(1j * start[interval])) / 1j).real
-        straight = level[interval] * (further - start[interval])
-        flux = self._flux_at_bounds[0, interval] + (straight - smooth) / (FULL_TURN * self.line_frequency)
-        ripple = (flux - self._mean_flux[0]) / self.inductance
-        # a carrier peak ends one period and begins the next
-        before = np.mod(peaks - 1e-8 / self.pulse_number, FULL_TURN)
-        angle = np.concatenate([self.bounds[:-1], further, before])
-        value = np.concatenate([self.ripple_at_bounds[0, :-1], ripple, ripple[len(further) - len(peaks) :]])
-        return angle, value
+        angle = np.sort(np.concatenate([start, *inside]))
+        return angle, self.ripple_at(angle)[0]
 
     @property
     def ripple_peak_to_peak(self) -> float:
-        """Greatest peak-to-peak ripple of phase one within a carrier period [A]."""
+        """Greatest peak-to-peak ripple of phase one within a carrier period, taken from peak to peak of the
+        carrier or from valley to valley [A].
+        """
         return float(self.local_peak_to_peak[1].max())
+
+
+def quadrature(bounds: Array) -> tuple[Array, Array, NDArray[np.int64]]:
+    """Gauss nodes [rad], their weights over the line period (sum 1) and intervals, as of `LinePeriod.nodes`.
+
+    Args:
+        bounds: ascending, from 0 to 2 pi [rad].
+    """
+    widths = np.diff(bounds)
+    parts = np.maximum(np.ceil(widths / LONGEST).astype(np.int64), 1)
+    interval = np.repeat(np.arange(len(widths)), parts)
+    place = np.arange(parts.sum()) - np.repeat(np.cumsum(parts) - parts, parts)
+    half = 0.5 * widths[interval] / parts[interval]
+    middle = bounds[interval] + (2 * place + 1) * half
+    angle = (middle[:, None] + half[:, None] * NODES).ravel()
+    weight = (half[:, None] * WEIGHTS).ravel() / FULL_TURN
+    return angle, weight, np.repeat(interval, len(NODES))

@@ -8,11 +8,11 @@ import altair as alt
 
 from models.specification import GRID_CONNECTED, Specification
 from optimizer.charts.look import INK, QUIET
-from optimizer.charts.quantities import CURRENCY, DISTORTION, Quantity
+from optimizer.charts.quantities import DISTORTION, Quantity
 from optimizer.charts.selections import Selections
 
 LINE = 17
-SECOND_COLUMN = 622
+SECOND_COLUMN = 690
 FIGURE = ".3~r"
 BETWEEN = " + '  ·  ' + "
 
@@ -73,7 +73,7 @@ def _objectives(quantities: tuple[Quantity, ...], spec: Specification) -> str:
 
 
 def _unit(quantity: Quantity) -> str:
-    return "" if quantity.unit == CURRENCY else quantity.unit
+    return quantity.unit
 
 
 def _rated() -> str:

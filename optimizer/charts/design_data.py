@@ -11,7 +11,7 @@ import pandas as pd
 from numpy.typing import ArrayLike, NDArray
 
 from optimizer.charts.quantities import LOSS, VOLUME, Quantity, axis_quantities, component_columns
-from optimizer.charts.thinning import SHOWN_PER_CLASS, balanced_row, shown_rows
+from optimizer.charts.thinning import SHOWN_PER_CLASS, balanced_row, shown_rows, unit_range
 from optimizer.fronts import Front
 from optimizer.objectives import OBJECTIVES, distortion_column
 from optimizer.study import Study
@@ -24,6 +24,17 @@ PERCENT, KILO, MICRO = 100.0, 1e3, 1e-6
 ROUND = (1.0, 1.5, 2.0, 3.0, 4.0, 6.0, 8.0, 10.0)
 WORDS = ("design_id", "concept", "device", "modulation", "cooling")
 FIGURES = ("junction_temperature_c", "sink_temperature_c", "loss_rated_w", "parallel", "die_area_mm2")
+ENDS_DRAWN = ("mass", "distortion")
+"""Objectives whose extremes are always drawn, minimised or not."""
+TOLD_TOO = ("cost of ownership",)
+"""Objectives that the parallel coordinates show as well."""
+DECIDING = (
+    Quantity("switching_frequency_khz", "switching frequency", "kHz"),
+    Quantity("efficiency_rated_percent", "efficiency at rated load", "%"),
+    Quantity("junction_temperature_c", "worst junction", "°C"),
+)
+"""Axes of the parallel coordinates beside the objectives."""
+PLACES = "places"
 SIDES = ("inverter_inductor", "grid_inductor")
 
 
@@ -39,6 +50,8 @@ class DesignData:
         constraints: names, in the order of the `margin` lists.
         load_level: of the `efficiency` lists [-].
         balanced: id of the design shown until one is picked.
+        axes: what the parallel coordinates show.
+        headline: quantities that the picked design is told by.
     """
 
     records: Records
@@ -49,6 +62,8 @@ class DesignData:
     constraints: tuple[str, ...]
     load_level: tuple[float, ...]
     balanced: str
+    axes: tuple[Quantity, ...]
+    headline: tuple[Quantity, ...]
 
     def shown(self, concept: str) -> int:
         """Designs of a class that are drawn [-]."""
@@ -86,7 +101,7 @@ def design_data(study: Study, front: Front, per_class: int = SHOWN_PER_CLASS) ->
     quantities = axis_quantities(study)
     objectives = [OBJECTIVES[name].column for name in study.objectives]
     balanced = balanced_row(front.table, objectives)
-    extremes = [quantity.column for quantity in quantities]
+    extremes = [OBJECTIVES[name].column for name in dict.fromkeys((*study.objectives, *ENDS_DRAWN))]
     rows = shown_rows(front.table, objectives, extremes, per_class, also=balanced)
     table = front.table.iloc[rows].reset_index(drop=True)
     losses, volumes = component_columns(table, LOSS), component_columns(table, VOLUME)
@@ -97,6 +112,11 @@ def design_data(study: Study, front: Front, per_class: int = SHOWN_PER_CLASS) ->
     )
     columns |= {reach_of(LOSS): _reach(table[losses]), reach_of(VOLUME): _reach(table[volumes])}
     columns |= _builds(table)
+    marks = _marks(front.table, study, balanced)
+    columns["mark"] = [marks.get(int(row), "") for row in rows]
+    told = {OBJECTIVES[name].column for name in (*study.objectives, *ENDS_DRAWN, *TOLD_TOO)}
+    axes = (*(quantity for quantity in quantities if quantity.column in told), *DECIDING)
+    columns[PLACES] = _places(columns, axes)
     columns["margin"] = plain(PERCENT * front.margins.iloc[rows][named].to_numpy(dtype=float))
     columns["efficiency"] = plain(PERCENT * front.efficiency[rows])
     columns |= _spectra(front, rows)
@@ -112,7 +132,25 @@ def design_data(study: Study, front: Front, per_class: int = SHOWN_PER_CLASS) ->
         constraints=tuple(named),
         load_level=tuple(front.load_level.tolist()),
         balanced=str(front.table["design_id"].iloc[balanced]),
+        axes=axes,
+        headline=tuple(quantity for quantity in quantities if quantity.column in extremes),
     )
+
+
+def _marks(table: pd.DataFrame, study: Study, balanced: int) -> dict[int, str]:
+    """Words for the rows of a shortlist: the least of every objective on the overall front, the balanced."""
+    rows = np.flatnonzero(table["overall_front"].to_numpy(dtype=bool))
+    told: dict[int, list[str]] = {balanced: ["balanced"]}
+    for name in study.objectives if len(rows) else ():
+        values = table[OBJECTIVES[name].column].to_numpy(dtype=float)[rows]
+        told.setdefault(int(rows[values.argmin()]), []).append(f"least {OBJECTIVES[name].title}")
+    return {row: ", ".join(words) for row, words in told.items()}
+
+
+def _places(columns: Mapping[str, list[Any]], axes: Sequence[Quantity]) -> list[list[float]]:
+    """Places of every design on the axes of the parallel coordinates, 0 to 1."""
+    values = np.array([columns[axis.column] for axis in axes], dtype=float).T
+    return list(np.round(unit_range(values), 3).tolist())
 
 
 def _figures(study: Study, table: pd.DataFrame, as_they_are: Sequence[str]) -> dict[str, list[Any]]:

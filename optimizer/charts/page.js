@@ -133,6 +133,7 @@
     document.getElementById("clear").addEventListener("click", () =>
       window.dispatchEvent(new KeyboardEvent("keydown", { key: "Escape" })));
     pickFromTable(view);
+    sideBySide(view, designs, read("beside-rows"));
     showHead();
     showTable(view);
     showState(view);

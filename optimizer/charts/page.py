@@ -13,7 +13,7 @@ import pandas as pd
 
 from optimizer.charts.design_data import DesignData
 from optimizer.charts.library import library_beside
-from optimizer.charts.quantities import quantity_of
+from optimizer.charts.quantities import LOSS, VOLUME, component_words, quantity_of
 from optimizer.charts.task import task_words
 from optimizer.charts.views import content, linked_views
 from optimizer.charts.words import HELP, cautions, drawn, missing, origin
@@ -45,6 +45,8 @@ def dashboard_html(
             about=_items("p", about),
             spec=_json(spec),
             columns=_json(table_columns(study, found.designs)),
+            beside=_json(beside_rows(found.designs)),
+            beside_script=_part("side_by_side.js"),
             style=_part("page.css"),
             script=_part("page.js"),
             library=library(),
@@ -65,6 +67,31 @@ def table_columns(study: Study, designs: DesignData) -> dict[str, Any]:
     first = quantity_of(study.objectives[0])
     columns = [{"field": field, "title": title} for field, title in named]
     return {"columns": columns, "first": first.column, "firstTitle": first.title}
+
+
+def beside_rows(designs: DesignData) -> list[dict[str, str]]:
+    """What is told of two designs side by side: fields and titles in their order, headings between."""
+    losses, volumes = component_words(designs.losses, LOSS), component_words(designs.volumes, VOLUME)
+    built = (
+        ("device", "device"),
+        ("modulation", "modulation"),
+        ("parallel", "packages in parallel"),
+        ("die_area_mm2", "die area [mm²]"),
+        ("inverter_inductor_build", "inverter-side inductor"),
+        ("grid_inductor_build", "grid-side inductor"),
+        ("filter_capacitance_uf", "filter capacitor [µF]"),
+        ("dc_link_build", "dc link"),
+        ("cooling", "cooling"),
+    )
+    return [
+        *({"field": axis.column, "title": axis.label} for axis in designs.axes),
+        {"heading": "made of"},
+        *({"field": field, "title": title} for field, title in built),
+        {"heading": "losses at rated load [W]"},
+        *({"field": field, "title": title} for field, title in losses.items()),
+        {"heading": "volumes [l]"},
+        *({"field": field, "title": title} for field, title in volumes.items()),
+    ]
 
 
 def _part(name: str) -> str:

@@ -3,7 +3,7 @@
 from __future__ import annotations
 
 from collections.abc import Iterable
-from dataclasses import dataclass
+from dataclasses import dataclass, replace
 
 import pandas as pd
 
@@ -11,7 +11,6 @@ from optimizer.objectives import OBJECTIVES
 from optimizer.study import Study
 
 DISTORTION = "distortion"
-ALWAYS_OFFERED = ("mass", DISTORTION)
 CURRENCY = "currency"
 """The unit of prices: whatever the parts' prices are in."""
 LOSS, VOLUME = "loss", "volume"
@@ -58,8 +57,15 @@ def quantity_of(objective: str) -> Quantity:
 
 
 def axis_quantities(study: Study) -> tuple[Quantity, ...]:
-    """The study's objectives in its order, then mass and distortion where they are not among them."""
-    return tuple(quantity_of(name) for name in dict.fromkeys((*study.objectives, *ALWAYS_OFFERED)))
+    """The study's objectives in its order, then all others; prices in the study's currency."""
+    return tuple(
+        in_currency(quantity_of(name), study) for name in dict.fromkeys((*study.objectives, *OBJECTIVES))
+    )
+
+
+def in_currency(quantity: Quantity, study: Study) -> Quantity:
+    """The same quantity; a price in the study's currency."""
+    return replace(quantity, unit=study.currency) if quantity.unit == CURRENCY else quantity
 
 
 def component_columns(table: pd.DataFrame, kind: str) -> list[str]:

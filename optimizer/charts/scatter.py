@@ -7,9 +7,10 @@ from typing import Any
 
 import altair as alt
 
-from optimizer.charts.look import DIMMED, INK, QUIET, TEXT_SIZE, class_scales, heading
+from optimizer.charts.look import DIMMED, INK, PAPER, QUIET, TEXT_SIZE, class_scales, heading
 from optimizer.charts.quantities import Quantity
 from optimizer.charts.selections import (
+    HELD_TEST,
     POINTS,
     REACH,
     SIZE_VALUE,
@@ -66,7 +67,15 @@ def scatter(
     )
     # The points lie in a layer of their own, so that the group's rectangle stays below the pointer's reach.
     points = alt.LayerChart(layer=[_points(linked, place, concepts)])
-    pointed = [ring.transform_filter(linked.picked_test), reach.transform_filter(linked.classes)]
+    held = ring.properties(name="front_held").mark_point(
+        shape="circle", size=RING, stroke=INK, strokeWidth=1.4, strokeDash=[3, 3], fill=None, opacity=1.0
+    )
+    pointed = [
+        held.transform_filter(HELD_TEST),
+        *_marks(place),
+        ring.transform_filter(linked.picked_test),
+        reach.transform_filter(linked.classes),
+    ]
     below = "filled: on the front of all classes together; hollow: on the front of its own class only"
     return alt.LayerChart(
         layer=[points, *pointed, *_axis_titles(quantities, width, height)],
@@ -100,6 +109,17 @@ def _points(linked: Selections, place: dict[str, Any], concepts: Sequence[str]) 
         )
         .transform_filter(linked.classes)
     )
+
+
+def _marks(place: dict[str, Any]) -> list[alt.Chart]:
+    """Words beside the designs of the shortlist: the least of every objective, and the balanced one."""
+    words = alt.Chart().encode(**place, text="mark:N").transform_filter("datum.mark !== ''")
+    style: dict[str, Any] = {"align": "center", "baseline": "bottom", "dy": -10, "fontSize": TEXT_SIZE}
+    halo = words.mark_text(stroke=PAPER, strokeWidth=3.5, strokeJoin="round", color=PAPER, **style)
+    return [
+        halo.properties(name="front_marks_halo"),
+        words.mark_text(color=INK, **style).properties(name="front_marks"),
+    ]
 
 
 def _size_legend() -> alt.Legend:

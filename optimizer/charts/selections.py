@@ -19,6 +19,10 @@ X_VALUE, Y_VALUE, SIZE_VALUE = "x_value", "y_value", "size_value"
 CLASSES, GROUP, POINTED, PINNED = "classes", "group", "pointed", "pinned"
 FROM_TABLE, PICKED, PICKED_DESIGN = "from_table", "picked", "picked_design"
 EQUAL = "equal"
+HELD = "held"
+"""Id of the design that is held beside the picked one; empty where none is."""
+HELD_TEST = f"datum.design_id === ({HELD} || {PICKED})"
+"""True for the held design; for the picked one where none is held, since a layer must not be empty."""
 POINTS, REACH = "front_points", "front_reach"
 """Names of the layers that hold the selections: the rectangle and the legend below, the pointer above it."""
 DRAG = "[pointerdown[!event.altKey], window:pointerup] > window:pointermove!"
@@ -111,6 +115,7 @@ def _variables(at_start: str) -> list[alt.Parameter]:
     record = f"data('{DESIGNS}')[indexof(pluck(data('{DESIGNS}'), 'design_id'), {PICKED})]"
     return [
         alt.param(name=FROM_TABLE, value=""),
+        alt.param(name=HELD, value=""),
         alt.param(name=PICKED, expr=_picked(at_start)),
         alt.param(name=PICKED_DESIGN, expr=record),
     ]

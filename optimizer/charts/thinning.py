@@ -10,8 +10,8 @@ from numpy.typing import NDArray
 
 Array = NDArray[np.float64]
 Rows = NDArray[np.int64]
-SHOWN_PER_CLASS = 300
-"""Designs of one class drawn at most: more points hide each other and slow the pointer down."""
+SHOWN_PER_CLASS, MOST_SHOWN = 300, 1200
+"""Designs drawn at most of one class and in all: more hide each other, slow the pointer, swell the page."""
 
 
 def unit_range(points: Array) -> Array:
@@ -68,6 +68,7 @@ def shown_rows(
     """
     classes = table["concept"].to_numpy()
     kept = []
+    per_class = min(per_class, max(MOST_SHOWN // len(pd.unique(classes)), 1))
     for name in pd.unique(classes):
         rows = np.flatnonzero(classes == name)
         of_class = table.iloc[rows]
@@ -79,7 +80,19 @@ def shown_rows(
 
 
 def balanced_row(table: pd.DataFrame, columns: Sequence[str]) -> int:
-    """Position of the overall-front design nearest to the least of all columns, each scaled to its range."""
-    points = unit_range(table[list(columns)].to_numpy(dtype=float))
+    """Position of the overall-front design nearest to the ideal point: the least of every column at once.
+
+    Columns are scaled to the overall front's own range, its ideal point at 0 and its nadir at 1; constant
+    ones do not count. Where no row is on the overall front, all are taken.
+
+    Source: compromise programming, Zeleny (1973); Miettinen, Nonlinear Multiobjective Optimization (1999),
+        ch. 2.
+
+    Args:
+        table: front, with `overall_front`.
+        columns: what is to be small.
+    """
     eligible = table["overall_front"].to_numpy(dtype=bool)
-    return int(np.where(eligible, np.square(points).sum(-1), np.inf).argmin())
+    rows = np.flatnonzero(eligible if eligible.any() else np.ones(len(table), dtype=bool))
+    points = unit_range(table[list(columns)].to_numpy(dtype=float)[rows])
+    return int(rows[np.square(points).sum(-1).argmin()])

@@ -16,6 +16,7 @@ from optimizer.charts.frequency import envelope_view, envelope_views
 from optimizer.charts.load_curve import load_curve
 from optimizer.charts.look import configuration
 from optimizer.charts.margins import margins
+from optimizer.charts.parallel import parallel
 from optimizer.charts.quantities import LOSS, VOLUME, component_words
 from optimizer.charts.scatter import scatter
 from optimizer.charts.selections import DESIGNS, Selections, axis_values, selections
@@ -73,7 +74,7 @@ def _rows(study: Study, found: Content, linked: Selections) -> list[alt.LayerCha
     over_frequency = alt.VConcatChart(vconcat=envelopes, spacing=GAP, bounds="flush")
     rows: list[alt.LayerChart | alt.HConcatChart] = [
         _row(GAP, scatter(linked, designs.quantities, classes, 600, 420), over_frequency),
-        card(spec, designs.quantities, linked, WIDTH),
+        card(spec, designs.headline, linked, WIDTH),
         _row(
             NARROW_GAP,
             breakdown(LOSS, "Losses at rated load", "W", losses, linked, THIRD, 290),
@@ -86,6 +87,7 @@ def _rows(study: Study, found: Content, linked: Selections) -> list[alt.LayerCha
             load_curve(designs, classes, linked, 450, 230),
         ),
     ]
+    rows.append(parallel(designs, classes, linked, WIDTH, 200))
     if spec.emission_limit:
         rows.append(emission(spec, linked, WIDTH, 230))
     return rows

@@ -26,6 +26,7 @@ HELP = (
     "frequency and the table.",
     "Click a concept in the legend to see it alone; click further concepts to add or remove them.",
     "Click a row of the table to pin its design.",
+    "Hold a design with the button, then point at another: both stand side by side below the charts.",
     "Double-click, Escape, or the button let go of group and pin.",
 )
 

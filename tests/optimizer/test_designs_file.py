@@ -8,7 +8,7 @@ from optimizer.designs_file import read_designs
 from optimizer.errors import InputError
 from optimizer.evaluate import evaluated_table, written_table
 from optimizer.fronts import front
-from optimizer.populations import prepared_inverter
+from optimizer.prepared import prepared_inverter
 
 
 @pytest.fixture(scope="module")

@@ -4,8 +4,10 @@ import moocore
 import numpy as np
 import pytest
 
+from optimizer.concept_search import normalised_hypervolume, search_concept
 from optimizer.objectives import OBJECTIVES, margins_of, requirements_of
-from optimizer.populations import normalised_hypervolume, prepared_inverter, search, search_concept
+from optimizer.populations import search
+from optimizer.prepared import prepared_inverter
 from optimizer.problem import ClassProblem
 from optimizer.space import SearchSpace
 
@@ -46,7 +48,7 @@ def test_classes_of_one_seed_start_from_different_points(small_search):
 
 def test_every_evaluation_is_counted(small_search):
     for found in small_search.classes:
-        assert found.evaluations == 40 * 40
+        assert 40 * (16 + 39) <= found.evaluations <= 40 * (16 + 40)
         assert found.hypervolume[-1][0] == found.evaluations
 
 
@@ -66,7 +68,7 @@ def test_progress_is_reported_for_every_class(tiny):
     seen = []
     search(tiny, seed=1, workers=1, report=seen.append)
     assert {entry.concept for entry in seen} == set(tiny.concept_names)
-    assert max(entry.evaluations for entry in seen) == 20 * 12
+    assert max(entry.evaluations for entry in seen) >= 20 * (16 + 11)
 
 
 def test_hypervolume_grows_with_more_candidates(small_search):

@@ -5,7 +5,7 @@ import pytest
 from hypothesis import given
 from hypothesis import strategies as st
 
-from optimizer.populations import prepared_inverter
+from optimizer.prepared import prepared_inverter
 from optimizer.space import CATEGORY, LINEAR, LOGARITHMIC, WHOLE, SearchSpace, Variable
 
 
@@ -17,16 +17,16 @@ def space(rooftop):
 @given(st.floats(0.0, 1.0))
 def test_real_scales_reach_their_ends(unit):
     for scale in (LINEAR, LOGARITHMIC):
-        variable = Variable("x", scale, 2.0, 32.0)
+        variable = Variable("x", scale, 2.0, 32.0, "filter")
         assert variable.value(np.array(0.0)) == pytest.approx(2.0)
         assert variable.value(np.array(1.0)) == pytest.approx(32.0)
         assert 2.0 - 1e-9 <= variable.value(np.array(unit)) <= 32.0 + 1e-9
-    assert Variable("x", LOGARITHMIC, 2.0, 32.0).value(np.array(0.5)) == pytest.approx(8.0)
+    assert Variable("x", LOGARITHMIC, 2.0, 32.0, "filter").value(np.array(0.5)) == pytest.approx(8.0)
 
 
 @pytest.mark.parametrize(("scale", "low", "high"), [(CATEGORY, 0, 4), (WHOLE, 1, 3)])
 def test_choices_get_equal_parts(scale, low, high):
-    variable = Variable("x", scale, low, high)
+    variable = Variable("x", scale, low, high, "filter")
     values = variable.value((np.arange(6000) + 0.5) / 6000)
     choices, counts = np.unique(values, return_counts=True)
     assert choices.tolist() == list(range(low, high + 1))

@@ -7,7 +7,7 @@ import pytest
 
 from models.specification import DesignRules
 from optimizer import study_schema
-from optimizer.starter import ranges_block, rules_block, starter_text
+from optimizer.starter import energy_block, ranges_block, rules_block, starter_text
 from optimizer.study import Study
 
 SHOWN = {
@@ -18,6 +18,7 @@ SHOWN = {
     "bridge": study_schema.BRIDGE,
     "filter": study_schema.FILTER,
     "objectives": study_schema.MINIMISE,
+    "energy": study_schema.ENERGY,
     "search": study_schema.SEARCH,
     "catalog": study_schema.CATALOG,
     "rules": study_schema.RULES,
@@ -34,7 +35,7 @@ def read(tmp_path):
     return read_text
 
 
-@pytest.mark.parametrize("block", [ranges_block, rules_block])
+@pytest.mark.parametrize("block", [energy_block, ranges_block, rules_block])
 def test_generated_blocks_stand_in_the_starter_as_declared(block):
     assert block() in starter_text(), f"paste this into starter.toml:\n{block()}"
 
@@ -43,18 +44,17 @@ def uncommented(block):
     return "".join(line.removeprefix("# ") for line in block.splitlines(keepends=True))
 
 
-def test_uncommenting_ranges_and_rules_changes_nothing(read):
+def test_uncommenting_the_blocks_changes_nothing(read):
     text = starter_text()
     plain = read(text)
-    full = read(
-        text.replace(ranges_block(), uncommented(ranges_block())).replace(
-            rules_block(), uncommented(rules_block())
-        )
-    )
+    spelled_out = text
+    for block in (energy_block(), ranges_block(), rules_block()):
+        spelled_out = spelled_out.replace(block, uncommented(block))
+    full = read(spelled_out)
     assert full.file_hash != plain.file_hash
     assert full.specification == plain.specification
     assert full.specification.rules == DesignRules()
-    assert full.search == plain.search
+    assert (full.search, full.currency) == (plain.search, plain.currency)
 
 
 def test_the_blocks_say_every_range_and_rule():

@@ -38,6 +38,25 @@ def read(tmp_path):
     return read_text
 
 
+@pytest.mark.parametrize(
+    ("name", "folder"),
+    [
+        ("rooftop 5 kW", "rooftop 5 kW"),
+        ("../good", "_good"),
+        ("</script><img onerror=alert(1)>", "_script_img onerror_alert_1_"),
+        ("..", "study"),
+        ("Müller 10 kVA", "Müller 10 kVA"),
+    ],
+)
+def test_any_name_is_taken_and_makes_a_folder_s_name(tmp_path, name, folder):
+    path = tmp_path / "study.toml"
+    path.write_text(
+        (STUDIES / "rooftop_5kw.toml").read_text().replace('name = "rooftop 5 kW"', f"name = '{name}'", 1)
+    )
+    study = Study.read(path)
+    assert (study.name, study.folder_name) == (name, folder)
+
+
 def test_defaults_of_the_shortest_study(read):
     study = read(SHORTEST)
     asked, search = study.specification, study.search

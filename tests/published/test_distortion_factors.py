@@ -40,10 +40,10 @@ def test_ripple_of_the_tables(scheme: str) -> None:
         assert found == pytest.approx(FACTORS[scheme](index) / 576.0, rel=3e-3), index
 
 
-@pytest.mark.parametrize("scheme", [name for name in FACTORS if not name.startswith("discontinuous")])
+@pytest.mark.parametrize("scheme", FACTORS)
 @pytest.mark.parametrize("index", [0.3, 0.6, 0.9])
 def test_ripple_of_the_exact_line_period(scheme: str, index: float) -> None:
-    """At 501 pulses; clamped schemes add the slow current of their jumps, which the factor leaves out."""
+    """At 501 pulses, a multiple of three."""
     found = operating_waveforms(
         bridge=SIX_SWITCH_BRIDGE.name, modulation=scheme, modulation_index=index, displacement=0.2,
         dc_voltage=700.0, inductance=1e-3, switching_frequency=501 * 50.0, line_frequency=50.0, current=10.0,

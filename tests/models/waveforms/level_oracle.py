@@ -4,6 +4,11 @@ sampling and pulse number: one line period edge by edge.
 Shares no code with the models. Schemes are written out again from their definitions; a leg is one comparison
 with a carrier or two; edges come from bisection; currents are integrated piece by piece on a fine grid of
 their own. V_dc = 1, currents over the peak of the fundamental, ripple by `ripple_unit` = V_dc/(L f_s).
+
+What leaves room for choice is chosen here once more, in words: carrier valleys stand at line angle
+offset/ratio; symmetrical sampling reads at carrier peaks; a leg at line frequency turns with the polarity
+that the sampler sees; currents of three phases are balanced and lag the positive sequence; a carrier period
+of the ripple runs from peak to peak or from valley to valley, whichever shows more.
 """
 
 from __future__ import annotations
@@ -16,7 +21,7 @@ from numpy.typing import NDArray
 
 Array = NDArray[np.float64]
 TURN = 2.0 * np.pi
-FINE = 12  # points of the integration grid in the shortest of usual pieces
+FINE = 12  # steps of Simpson's rule in a piece of up to two degrees
 CONDUCTS = {
     "two-level": {"T1": {(1.0, 1)}, "D1": {(1.0, -1)}, "T2": {(0.0, -1)}, "D2": {(0.0, 1)}},
     "neutral-point clamped": {
@@ -29,6 +34,19 @@ CONDUCTS = {
         "T2": {(0.5, 1)}, "D3": {(0.5, 1)}, "T3": {(0.5, -1)}, "D2": {(0.5, -1)},
     },
 }  # fmt: skip
+
+EXCHANGES = {
+    "two-level": {(0.0, 1.0, 1): ("T1", "D2"), (0.0, 1.0, -1): ("T2", "D1")},
+    "neutral-point clamped": {
+        (0.5, 1.0, 1): ("T1", "D5"), (0.5, 1.0, -1): ("T3", "D1"), (0.0, 0.5, 1): ("T2", "D4"),
+        (0.0, 0.5, -1): ("T4", "D6"), (0.0, 1.0, 1): ("T1 T2", "D3 D4"), (0.0, 1.0, -1): ("T3 T4", "D1 D2"),
+    },
+    "T-type": {
+        (0.5, 1.0, 1): ("T1", "D3"), (0.5, 1.0, -1): ("T3", "D1"), (0.0, 0.5, 1): ("T2", "D4"),
+        (0.0, 0.5, -1): ("T4", "D2"), (0.0, 1.0, 1): ("T1", "D4"), (0.0, 1.0, -1): ("T4", "D1"),
+    },
+}  # fmt: skip
+"""Lower and upper level, sign of the outward current: the switch and the diode that exchange the current."""
 
 
 def references(scheme: str, angle: Array, index: float, lag: float) -> Array:
@@ -70,6 +88,7 @@ class Case:
     ripple_unit: float = 0.0
     sampling: str = "natural"
     conduction: float = np.pi
+    offset: float = 0.0
 
     @property
     def legs(self) -> int:
@@ -84,20 +103,23 @@ class Case:
 
     def _sampled(self, angle: Array) -> Array:
         """Angle at which the reference is read: itself, the last carrier peak, or the last peak or valley."""
-        place = angle * self.ratio / TURN  # valleys at whole numbers
+        place = self._place(angle)
         if self.sampling == "symmetrical regular":
             place = np.floor(place - 0.5 + 1e-12) + 0.5
         elif self.sampling == "asymmetrical regular":
             place = np.floor(2.0 * place + 1e-12) / 2.0
         after = 0.0 if self.sampling == "natural" else 1e-9  # what a jump at the instant leads to counts
-        return place * TURN / self.ratio + after
+        return (place * TURN + self.offset) / self.ratio + after
+
+    def _place(self, angle: Array) -> Array:
+        """Angle in carrier periods, valleys at whole numbers."""
+        return (angle * self.ratio - self.offset) / TURN
 
     def _over(self, leg: int, cell: int, angle: Array) -> Array:
         """Reference less carrier of one comparison."""
         slow = self.scheme == "one leg at line frequency" and leg == 1
-        seen = (angle if slow else self._sampled(angle)) % TURN
-        value = references(self.scheme, seen, self.index, self.lag)[leg]
-        triangle = np.abs((angle * self.ratio / TURN + 0.5) % 1.0 - 0.5) * 4.0 - 1.0
+        value = references(self.scheme, self._sampled(angle) % TURN, self.index, self.lag)[leg]
+        triangle = np.abs((self._place(angle) + 0.5) % 1.0 - 0.5) * 4.0 - 1.0
         if slow:
             return value
         if self.leg_type != "two-level":
@@ -115,9 +137,8 @@ class Case:
         if "following" in self.scheme:
             shift = np.clip(self.lag, -np.pi / 6, np.pi / 6)
             jumps = np.concatenate([jumps, (np.arange(12) * np.pi / 6.0 + shift) % TURN])
-        grid = np.unique(
-            np.concatenate([np.arange(2 * self.ratio * 8 + 1) * np.pi / (8 * self.ratio), jumps, [TURN]])
-        )
+        corners = (np.arange(2 * self.ratio * 8) * np.pi / 8.0 + self.offset) / self.ratio % TURN
+        grid = np.unique(np.concatenate([corners, jumps, [TURN]]))
         grid = grid[np.concatenate([[True], np.diff(grid) > 1e-11])]
         found = [np.array([0.0, TURN])]
         for leg in range(self.legs):
@@ -180,61 +201,94 @@ class Case:
 
     @cached_property
     def grid(self) -> tuple[Array, Array, NDArray[np.int64]]:
-        """Points of a midpoint rule, their weights, and the piece of each."""
+        """Points of Simpson's rule, their weights, and the piece of each."""
         widths = np.diff(self.edges)
-        parts = np.maximum(np.ceil(widths / (np.pi / 90.0)).astype(int), 1) * FINE
+        parts = np.maximum(np.ceil(widths / (np.pi / 90.0)).astype(int), 1)
         piece = np.repeat(np.arange(len(widths)), parts)
         place = np.arange(parts.sum()) - np.repeat(np.cumsum(parts) - parts, parts)
-        step = widths[piece] / parts[piece]
-        return self.edges[piece] + (place + 0.5) * step, step / TURN, piece
+        span = (widths[piece] / parts[piece])[:, None]
+        share = np.linspace(0.0, 1.0, FINE + 1)
+        rule = np.where(np.arange(FINE + 1) % 2 == 1, 4.0, 2.0) / (3.0 * FINE)
+        rule[[0, -1]] /= 2.0
+        points = self.edges[piece][:, None] + (place[:, None] + share) * span
+        return points.ravel(), (span * rule / TURN).ravel(), np.repeat(piece, FINE + 1)
+
+    @cached_property
+    def _ripple_parts(self) -> list[tuple[Array, complex, Array, float]]:
+        """Of every phase: pieces without mean, fundamental, integral at the edges, mean of the integral."""
+        found = []
+        for phase in range(3 if self.legs == 3 else 1):
+            pieces = self.output(phase)
+            pieces = pieces - np.sum(pieces * np.diff(self.edges)) / TURN
+            first = self.harmonic(pieces, 1)
+            raw = np.concatenate([[0.0], np.cumsum(pieces * np.diff(self.edges))])
+            points, weights, where = self.grid
+            mean = np.sum(self._integral(pieces, first, raw, points, where) * weights)
+            found.append((pieces, first, raw, float(mean)))
+        return found
+
+    def _integral(
+        self, pieces: Array, first: complex, raw: Array, points: Array, where: NDArray[np.int64]
+    ) -> Array:
+        smooth = np.real(first * (np.exp(1j * points) - 1.0) / 1j)
+        return raw[where] + pieces[where] * (points - self.edges[where]) - smooth
 
     def ripple(self, phase: int, angle: Array, piece: NDArray[np.int64]) -> Array:
         """Ripple current of a phase, zero mean."""
-        pieces = self.output(phase)
-        pieces = pieces - np.sum(pieces * np.diff(self.edges)) / TURN
-        first = self.harmonic(pieces, 1)
-        raw = np.concatenate([[0.0], np.cumsum(pieces * np.diff(self.edges))])
-
-        def at(points: Array, where: NDArray[np.int64]) -> Array:
-            smooth = np.real(first * (np.exp(1j * points) - 1.0) / 1j)
-            return raw[where] + pieces[where] * (points - self.edges[where]) - smooth
-
-        points, weights, where = self.grid
-        mean = np.sum(at(points, where) * weights)
-        return self.ripple_unit * self.ratio / TURN * (at(angle, piece) - mean)
+        *parts, mean = self._ripple_parts[phase]
+        return self.ripple_unit * self.ratio / TURN * (self._integral(*parts, angle, piece) - mean)
 
     def current(self, leg: int, angle: Array, piece: NDArray[np.int64]) -> Array:
-        """Current out of a leg; the fundamental lags the bridge's own fundamental."""
+        """Current out of a leg; balanced fundamentals lag the positive sequence of the bridge's."""
         phase = leg if self.legs == 3 else 0
         sign = -1.0 if self.legs == 2 and leg == 1 else 1.0
-        own = np.angle(1j * self.harmonic(self.output(phase), 1))
-        return sign * (np.sin(angle + own - self.lag) + self.ripple(phase, angle, piece))
+        smooth = np.sin(angle + self._lead - self.lag - phase * TURN / 3.0)
+        return sign * (smooth + self.ripple(phase, angle, piece))
+
+    @cached_property
+    def _lead(self) -> float:
+        """Angle of the fundamental voltage before sin(theta)."""
+        phases = range(3 if self.legs == 3 else 1)
+        first = sum(self.harmonic(self.output(k), 1) * np.exp(1j * k * TURN / 3.0) for k in phases)
+        return float(np.angle(1j * first))
 
     def ripple_rms(self) -> float:
         points, weights, piece = self.grid
         return float(np.sqrt(np.sum(self.ripple(0, points, piece) ** 2 * weights)))
 
-    def ripple_peak_to_peak(self) -> float:
-        """Greatest within a carrier period, from one carrier peak to the next; over the line period where
-        nothing switches at the carrier frequency.
-        """
+    @cached_property
+    def _course(self) -> tuple[Array, Array]:
+        """Angles and ripple of phase one at all points of the grid and all edges, ascending."""
         points, _, piece = self.grid
-        ends, pieces = self.edges[:-1], np.arange(len(self.edges) - 1)
-        every, where = np.concatenate([points, ends]), np.concatenate([piece, pieces])
-        value = self.ripple(0, every, where)
-        if self.line_switched:
-            return float(np.ptp(value))
-        number = np.floor(every * self.ratio / TURN + 0.5 + 1e-9).astype(int) % self.ratio
-        order = np.argsort(number, kind="stable")
-        starts = np.flatnonzero(np.concatenate([[True], np.diff(number[order]) > 0]))
-        return float(
-            np.max(np.maximum.reduceat(value[order], starts) - np.minimum.reduceat(value[order], starts))
-        )
+        every = np.concatenate([points, self.edges[:-1]])
+        where = np.concatenate([piece, np.arange(len(self.edges) - 1)])
+        order = np.argsort(every, kind="stable")
+        return every[order], self.ripple(0, every[order], where[order])
 
-    def positions(self) -> dict[str, tuple[float, float]]:
-        """Average and rms current of every position of leg one."""
+    def ripple_peak(self) -> float:
+        return float(np.abs(self._course[1]).max())
+
+    def local_ripple(self, middle: float) -> float:
+        """Peak to peak within half a carrier period on either side of an angle."""
+        angle, value = self._course
+        ends = middle % TURN + np.array([-1.0, 1.0]) * np.pi / self.ratio
+        at_ends = self.ripple(0, ends % TURN, np.searchsorted(self.edges, ends % TURN, side="right") - 1)
+        inside = [value[slice(*np.searchsorted(angle, ends + turn))] for turn in (-TURN, 0.0, TURN)]
+        return float(np.ptp(np.concatenate([*inside, at_ends])))
+
+    def ripple_peak_to_peak(self) -> float:
+        """Greatest within a carrier period; over the line period where nothing switches at the carrier
+        frequency.
+        """
+        if self.line_switched:
+            return float(np.ptp(self._course[1]))
+        middles = (np.arange(2 * self.ratio) * np.pi + self.offset) / self.ratio
+        return max(self.local_ripple(float(middle)) for middle in middles)
+
+    def positions(self, leg: int = 0) -> dict[str, tuple[float, float]]:
+        """Average and rms current of every position of a leg."""
         points, weights, piece = self.grid
-        current, level = self.current(0, points, piece), self.levels[0][piece]
+        current, level = self.current(leg, points, piece), self.levels[leg][piece]
         found = {}
         for name, pairs in CONDUCTS[self.leg_type].items():
             carried = sum(
@@ -243,27 +297,58 @@ class Case:
             found[name] = float(np.sum(carried * weights)), float(np.sqrt(np.sum(carried**2 * weights)))
         return found
 
-    def commutated(self) -> tuple[int, float, float]:
-        """Rising edges of leg one, sums of currents turned on hard and turned off."""
-        level = self.levels[0]
-        lasting = np.diff(self.edges) > 1e-7  # shorter ones are touches of carrier and reference
-        step = np.zeros_like(level)
-        step[lasting] = level[lasting] - np.roll(level[lasting], 1)
-        pieces = np.flatnonzero(np.abs(step) > 0.1)
-        size = np.abs(step[pieces]) * (1 if self.leg_type == "two-level" else 2)
-        current = self.current(0, self.edges[pieces], pieces)
-        rising = step[pieces] > 0.0
+    def _steps(self, leg: int) -> tuple[Array, Array, Array]:
+        """Levels before and after every level change of a leg, and its current there."""
+        level = self.levels[leg]
+        kept = np.flatnonzero(np.diff(self.edges) > 1e-7)  # shorter: touches of carrier and reference
+        before, after = np.roll(level[kept], 1), level[kept]
+        changed = before != after
+        pieces = kept[changed]
+        return before[changed], after[changed], self.current(leg, self.edges[pieces], pieces)
+
+    def commutated(self, leg: int = 0) -> tuple[int, int, float, float]:
+        """Rising level changes, hard turn-ons, sums of currents turned on hard and turned off; a jump over
+        two levels counts twice.
+        """
+        before, after, current = self._steps(leg)
+        size = np.rint(np.abs(after - before) * (1 if self.leg_type == "two-level" else 2))
+        rising = after > before
         hard = np.where(rising, current > 0.0, current < 0.0)
         magnitude = np.abs(current) * size
-        return int(round(np.sum(size[rising]))), float(magnitude[hard].sum()), float(magnitude[~hard].sum())
+        return (
+            int(np.sum(size[rising])), int(np.sum(size[hard])), float(magnitude[hard].sum()),
+            float(magnitude[~hard].sum()),
+        )  # fmt: skip
 
-    def rails(self) -> tuple[float, float, float]:
-        """Rms of the upper rail's current less its mean, its double-frequency part, and of the neutral's."""
+    def taken_over(self, leg: int = 0) -> dict[str, tuple[int, float, int, float]]:
+        """Times and currents with which every position takes over, and gives up, a leg's current."""
+        counts = {name: [0, 0.0, 0, 0.0] for name in CONDUCTS[self.leg_type]}
+        for before, after, current in zip(*self._steps(leg), strict=True):
+            sign = 1 if current > 0.0 else -1
+            switches, diodes = EXCHANGES[self.leg_type][(min(before, after), max(before, after), sign)]
+            hard = (after > before) == (sign > 0)
+            for names, takes in ((switches, hard), (diodes, not hard)):
+                for name in names.split():
+                    counts[name][0 if takes else 2] += 1
+                    counts[name][1 if takes else 3] += abs(current)
+        return {name: (int(one[0]), one[1], int(one[2]), one[3]) for name, one in counts.items()}
+
+    def rails(self) -> dict[str, float]:
+        """Upper rail: mean, rms about it, its double-frequency part and the rest; neutral: rms and peak of
+        its third harmonic.
+        """
         points, weights, piece = self.grid
         currents = np.array([self.current(leg, points, piece) for leg in range(self.legs)])
         rail = np.sum(currents * (self.levels[:, piece] == 1.0), axis=0)
         neutral = np.sum(currents * (self.levels[:, piece] == 0.5), axis=0)
-        mean = np.sum(rail * weights)
+        mean = float(np.sum(rail * weights))
+        square = max(float(np.sum(rail**2 * weights)) - mean**2, 0.0)
         double = abs(2.0 * np.sum(rail * weights * np.exp(-2j * points))) / np.sqrt(2.0)
-        whole = float(np.sqrt(max(np.sum(rail**2 * weights) - mean**2, 0.0)))
-        return whole, float(double), float(np.sqrt(np.sum(neutral**2 * weights)))
+        return {
+            "mean": mean,
+            "capacitor_rms": float(np.sqrt(square)),
+            "double_frequency_rms": float(double),
+            "switching_rms": float(np.sqrt(max(square - double**2, 0.0))),
+            "neutral_rms": float(np.sqrt(np.sum(neutral**2 * weights))),
+            "neutral_third": float(abs(2.0 * np.sum(neutral * weights * np.exp(-3j * points)))),
+        }

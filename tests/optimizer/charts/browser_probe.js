@@ -82,6 +82,7 @@
     count: document.getElementById("count").textContent,
     rows: rows(),
     thin: named(view, "load_curve_group").length,
+    parallel: named(view, "parallel_group").length,
     means: named(view, "loss_means").map((item) => item.datum.amount),
     bars: named(view, "loss_bars").map((item) => item.datum.amount),
     axis: named(view, "front_title_across").map((item) => item.text),
@@ -113,6 +114,22 @@
     axis.dispatchEvent(new Event("change", { bubbles: true }));
     await step(view);
     told.other_axis = state(view);
+    document.getElementById("hold").click();
+    await step(view);
+    send(view, "pointermove", named(view, "front_points")[3]);
+    document.querySelector("#table tbody tr:nth-child(3)").click();
+    await step(view);
+    told.beside = {
+      held: view.signal("held"), picked: view.signal("picked"),
+      names: ["held-name", "picked-name"].map((id) => document.getElementById(id).textContent),
+      volume: [...document.querySelectorAll("#beside tbody tr")].map((row) => [...row.children].map((cell) => cell.textContent))
+        .find((cells) => cells[0].startsWith("volume [")),
+      rings: named(view, "front_held").map((item) => item.datum.design_id),
+      dashed: named(view, "parallel_held").length,
+    };
+    document.getElementById("hold").click();
+    await step(view);
+    told.released = { held: view.signal("held"), hidden: document.getElementById("beside").hidden };
     document.getElementById("clear").click();
     await step(view);
     told.let_go = state(view);

@@ -96,10 +96,36 @@ def test_a_small_share_keeps_the_extremes_of_the_whole_front(drawn):
     for name in few.total:
         assert few.shown(name) <= 12
         whole = drawn.front.table[drawn.front.table.concept == name]
-        for quantity in few.quantities:
-            values = [record[quantity.column] for record in few.records if record["concept"] == name]
-            assert min(values) == pytest.approx(whole[quantity.column].min(), rel=1e-3)
-            assert max(values) == pytest.approx(whole[quantity.column].max(), rel=1e-3)
+        for column in ("loss_weighted_percent", "volume_l", "price", "mass_kg", "distortion_percent"):
+            values = [record[column] for record in few.records if record["concept"] == name]
+            assert min(values) == pytest.approx(whole[column].min(), rel=1e-3)
+            assert max(values) == pytest.approx(whole[column].max(), rel=1e-3)
+
+
+def test_the_shortlist_is_marked(drawn, data):
+    """The least of every objective on the overall front and the balanced design, each marked once."""
+    overall = drawn.front.table[drawn.front.table.overall_front]
+    marked = {record["design_id"]: record["mark"] for record in data.records if record["mark"]}
+    words = ", ".join(marked.values()).split(", ")
+    assert sorted(words) == sorted(["balanced", "least weighted loss", "least volume", "least price"])
+    for column, word in (
+        ("loss_weighted_percent", "weighted loss"),
+        ("volume_l", "volume"),
+        ("price", "price"),
+    ):
+        (name,) = [key for key, told in marked.items() if f"least {word}" in told.split(", ")]
+        row = overall[overall.design_id == name].iloc[0]
+        assert row[column] == overall[column].min()
+
+
+def test_places_on_the_parallel_axes_run_from_least_to_greatest(data):
+    for place, axis in enumerate(data.axes):
+        values = np.array([record[axis.column] for record in data.records])
+        places = np.array([record["places"][place] for record in data.records])
+        assert places[values.argmin()] == 0.0
+        assert places[values.argmax()] == 1.0
+        order = np.argsort(values, kind="stable")
+        assert np.all(np.diff(places[order]) >= 0.0)
 
 
 def test_everything_is_plain(data):

@@ -5,9 +5,12 @@ import json
 import re
 import shutil
 import subprocess
+from dataclasses import replace
 from pathlib import Path
 
 import pytest
+
+from optimizer.charts import dashboard_html
 
 BROWSER = shutil.which("chromium") or shutil.which("chromium-browser")
 FLAGS = (
@@ -125,7 +128,7 @@ def test_a_row_of_the_table_is_picked(told):
 
 
 def test_another_axis_renames_the_title_and_lets_go_of_the_group(told):
-    assert told["other_axis"]["axis"] == ["price [currency]"]
+    assert told["other_axis"]["axis"] == ["price [currency units]"]
     assert told["other_axis"]["group"] == {}
     assert told["other_axis"]["thin"] == 0
 
@@ -140,3 +143,52 @@ def test_the_legend_filters_classes(told, designs):
     assert told["one_class"]["classes"] == ["SiC MOSFET"]
     assert told["one_class"]["count"].startswith(f"{len(of_class)} designs")
     assert set(told["one_class"]["rows"]) <= set(of_class)
+
+
+def test_two_designs_stand_side_by_side_until_let_go(told, designs):
+    beside = told["beside"]
+    assert beside["held"] != beside["picked"]
+    assert beside["names"] == [beside["held"], beside["picked"]]
+    assert beside["rings"] == [beside["held"]]
+    assert beside["dashed"] > 0
+    before, after = (designs[beside[name]]["volume_l"] for name in ("held", "picked"))
+    _, left, right, change = beside["volume"]
+    assert float(left) == pytest.approx(before, rel=6e-3)
+    assert float(right) == pytest.approx(after, rel=6e-3)
+    assert change == "same" or float(change) == pytest.approx(after - before, rel=6e-3)
+    assert told["released"] == {"held": "", "hidden": True}
+
+
+def test_the_group_runs_across_the_parallel_axes(told):
+    assert told["at_start"]["parallel"] == 0
+    assert told["grouped"]["parallel"] > 0
+
+
+def test_markup_in_names_stays_text(drawn, tmp_path):
+    """Seen in the browser with the page's own security policy lifted, so that nothing but escaping holds."""
+    nasty = "</script><img src=x onerror=document.title='ran'>"
+    study = replace(drawn.study, name=nasty, description=f"at {nasty}")
+    page = dashboard_html(study, drawn.front, drawn.evaluated, drawn.summary)
+    page = re.sub(r'<meta http-equiv="Content-Security-Policy"[^>]*>', "", page)
+    path = tmp_path / "page.html"
+    path.write_text(page, encoding="utf-8")
+    command = [BROWSER, *FLAGS, f"--user-data-dir={tmp_path / 'profile'}", path.as_uri()]
+    done = subprocess.run(command, capture_output=True, text=True, timeout=SECONDS, check=False)
+    assert "<title>ran</title>" not in done.stdout
+    assert '<img src="x"' not in done.stdout
+    assert html.escape(nasty, quote=False) in done.stdout
+    assert 'data-ready="yes"' in done.stdout
+
+
+def test_a_picture_of_the_page_is_kept(drawn, tmp_path_factory):
+    """For people to look at: the session's temporary folder holds it."""
+    folder = tmp_path_factory.mktemp("screenshots")
+    (folder / "page.html").write_text(drawn.html, encoding="utf-8")
+    flags = [flag for flag in FLAGS if flag != "--dump-dom"]
+    target = folder / "dashboard.png"
+    command = [BROWSER, *flags, f"--screenshot={target}", f"--user-data-dir={folder / 'profile'}"]
+    subprocess.run(
+        [*command, (folder / "page.html").as_uri()], capture_output=True, timeout=SECONDS, check=False
+    )
+    assert target.read_bytes()[:4] == b"\x89PNG"
+    assert target.stat().st_size > 50_000  # an empty page is a tenth of it

@@ -78,7 +78,7 @@ class Inverter:
     @cached_property
     def tables(self) -> WaveformTables:
         """Waveform tables of the bridge."""
-        return waveform_tables(self.bridge.name, self.bands.exponents)
+        return waveform_tables(self.bridge.name, self.bands.exponents, self.specification.displacement)
 
     @cached_property
     def emission(self) -> EmissionModel:

@@ -205,3 +205,14 @@ def test_reading_takes_less_than_0_6_s_with_all_imports():
         for _ in range(3)
     ]
     assert min(map(float, runs)) < 0.6
+
+
+def test_clamping_that_follows_the_current_is_searched_where_it_differs(read):
+    three = SHORTEST.replace("phases = 1", "phases = 3").replace(
+        "single-phase full", "three-phase six-switch"
+    )
+    three = three.replace('"360 V"', '"700 V"').replace('"400 V"', '"750 V"').replace('"450 V"', '"800 V"')
+    following = "discontinuous following the current"
+    assert following not in read(three).search.modulations
+    assert following in read(three.replace("phases", "power_factor = 0.9\nphases")).search.modulations
+    assert read(three + f'modulations = ["{following}"]').search.modulations == (following,)

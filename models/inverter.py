@@ -20,7 +20,14 @@ from models.capacitors import (
 )
 from models.catalog.gathered import Gathered
 from models.catalog.parts import AcCapacitor, Catalog
-from models.cooling import SinkCurve, SinkPoint, sink_curve_cold_plate, sink_curve_forced, sink_curve_natural
+from models.cooling import (
+    SinkCurve,
+    SinkPoint,
+    shared_by_several,
+    sink_curve_cold_plate,
+    sink_curve_forced,
+    sink_curve_natural,
+)
 from models.designs import COLD_PLATE, FORCED, Designs
 from models.distortion import Distortion, worse
 from models.emission.emission_filter import Emission, EmissionModel
@@ -96,7 +103,7 @@ class Inverter:
             altitude_m=spec.altitude_m,
             price_per_kg=price,
         )
-        return natural, forced, sink_curve_cold_plate()
+        return natural, shared_by_several(forced), sink_curve_cold_plate()
 
     @cached_property
     def ac_capacitor(self) -> AcCapacitor:

@@ -12,15 +12,14 @@ from models.specification import GRID_CONNECTED, STAND_ALONE
 from models.waveforms.bridges import BRIDGES, Bridge, Modulation
 from optimizer.errors import InputError, Problem
 from optimizer.quantity import written
+from optimizer.search_ranges import GRID_RATIO, RANGES
 from optimizer.study_schema import (
     CUSTOM,
     CUSTOM_WEIGHTING,
     GRID_CONNECTED_ONLY,
-    GRID_RATIO,
     LC,
     LCL,
     ONLY_L,
-    RANGES,
     STAND_ALONE_ONLY,
     StudyContent,
 )

@@ -20,7 +20,14 @@ from models.capacitors import (
 )
 from models.catalog.gathered import Gathered
 from models.catalog.parts import AcCapacitor, Catalog
-from models.cooling import SinkCurve, SinkPoint, sink_curve_cold_plate, sink_curve_forced, sink_curve_natural
+from models.cooling import (
+    SinkCurve,
+    SinkPoint,
+    shared_by_several,
+    sink_curve_cold_plate,
+    sink_curve_forced,
+    sink_curve_natural,
+)
 from models.cooling.air import STANDARD_PRESSURE_PA, pressure_at_altitude
 from models.designs import COLD_PLATE, FORCED, Designs
 from models.distortion import Distortion, worse
@@ -80,7 +87,7 @@ class Inverter:
     @cached_property
     def tables(self) -> WaveformTables:
         """Waveform tables of the bridge."""
-        return waveform_tables(self.bridge.name, self.bands.exponents)
+        return waveform_tables(self.bridge.name, self.bands.exponents, self.specification.displacement)
 
     @cached_property
     def emission(self) -> EmissionModel:
@@ -98,7 +105,7 @@ class Inverter:
             altitude_m=spec.altitude_m,
             price_per_kg=price,
         )
-        return natural, forced, sink_curve_cold_plate()
+        return natural, shared_by_several(forced), sink_curve_cold_plate()
 
     @cached_property
     def ac_capacitor(self) -> AcCapacitor:

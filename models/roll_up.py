@@ -225,6 +225,7 @@ def _details(spec: Specification, points: OperatingPoints, found: Findings) -> d
         "rated_junction_temperature_c": losses.switch_temperature[:, points.rated],
         "rated_diode_temperature_c": losses.diode_temperature[:, points.rated],
         "rated_sink_temperature_c": losses.sink_temperature[:, points.rated],
+        "heatsinks": found.sink.count,
         "heat_worst_w": losses.heat[:, points.thermal].max(-1),
         "filter_capacitor_current_share": found.ac_capacitor.current_share,
         "dc_link_capacitance_f": link.capacitance,

@@ -189,6 +189,11 @@ class Specification:
     energy: EnergyTerms = field(default_factory=EnergyTerms)
 
     @property
+    def displacement(self) -> float:
+        """Lag of the delivered current behind the voltage [rad]."""
+        return math.copysign(math.acos(abs(self.power_factor)), self.power_factor)
+
+    @property
     def grid_inductance_min_h(self) -> float:
         """Inductance of the strongest grid per phase [H]."""
         return self._grid_inductance(self.short_circuit_ratio_max)

@@ -281,6 +281,7 @@ _RESULT_NAMES = {
     "junction_temperature_c",
     "diode_temperature_c",
     "sink_temperature_c",
+    "heatsinks",
     "heat_worst_w",
     "filter_capacitor_current_share",
     "dc_link_capacitance_f",

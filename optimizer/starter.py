@@ -12,7 +12,8 @@ from importlib.resources import files
 from models.ownership import EnergyTerms
 from models.specification import DesignRules
 from optimizer.quantity import written
-from optimizer.study_schema import CURRENCY, RANGES
+from optimizer.search_ranges import RANGES
+from optimizer.study_schema import CURRENCY
 
 DEFAULTS = DesignRules()
 TERMS = EnergyTerms()

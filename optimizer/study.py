@@ -22,6 +22,7 @@ from optimizer.concepts import Concept, concepts
 from optimizer.errors import InputError, Problem
 from optimizer.limit_checks import unfitting_limits
 from optimizer.quantity import show
+from optimizer.search_ranges import SearchRange
 from optimizer.study_checks import (
     bridges_of,
     check_content,
@@ -37,7 +38,6 @@ from optimizer.study_schema import (
     NO_EMISSION_LIMIT,
     SIDES,
     STAND_ALONE_ONLY,
-    SearchRange,
     StudyContent,
     read_content,
 )
@@ -65,7 +65,7 @@ class SearchSettings:
         core_materials, conductors: names out of the catalogue; empty means all of it.
         dc_links: technologies of dc-link capacitors.
         cooling: names out of models.designs.COOLING.
-        ranges: search ranges in SI units by name, as study_schema.RANGES declares them; without
+        ranges: search ranges in SI units by name, as search_ranges.RANGES declares them; without
             grid_inductance_ratio for an LC filter.
         population: candidates per generation and class [-].
         generations: at most [-].

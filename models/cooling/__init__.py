@@ -9,6 +9,7 @@ from models.cooling.fan import Fan
 from models.cooling.forced_curve import sink_curve_forced
 from models.cooling.natural_curve import sink_curve_natural
 from models.cooling.plate_fin import PlateFin, forced_conductance, natural_conductance, pressure_drop
+from models.cooling.several_sinks import shared_by_several
 from models.cooling.sink_curve import SinkCurve, SinkPoint
 
 __all__ = [
@@ -28,6 +29,7 @@ __all__ = [
     "natural_conductance",
     "pressure_at_altitude",
     "pressure_drop",
+    "shared_by_several",
     "sink_curve_cold_plate",
     "sink_curve_forced",
     "sink_curve_natural",

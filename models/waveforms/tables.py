@@ -119,18 +119,21 @@ class WaveformTables:
 
 
 @lru_cache(maxsize=8)
-def waveform_tables(bridge_name: str, exponents: tuple[tuple[float, float], ...] = ()) -> WaveformTables:
+def waveform_tables(
+    bridge_name: str, exponents: tuple[tuple[float, float], ...] = (), displacement: float = 0.0
+) -> WaveformTables:
     """Build the tables of a bridge for the given core-loss exponent pairs.
 
     Args:
         bridge_name: a key of BRIDGES.
         exponents: Steinmetz (alpha, beta) pairs to prepare [-].
+        displacement: lag of the current that schemes follow which do so [rad].
 
     Raises:
         KeyError: for an unknown bridge.
     """
     bridge = BRIDGES[bridge_name]
-    rows = [_scheme_rows(bridge, scheme, exponents) for scheme in bridge.modulations]
+    rows = [_scheme_rows(bridge, scheme.at(displacement), exponents) for scheme in bridge.modulations]
     stacked = {key: np.stack([row[key] for row in rows]) for key in rows[0]}
     angle = np.pi * (np.arange(ANGLE_CELLS) + 0.5) / ANGLE_CELLS
     limits = np.array([scheme.linear_limit for scheme in bridge.modulations])

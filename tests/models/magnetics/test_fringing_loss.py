@@ -19,9 +19,9 @@ RHO = np.array(2.2e-8)
 def share_by_the_field(clearance: float, height: float, pitch: float) -> float:
     """Mean square of the fringing field over a third of the even field's, point by point.
 
-    Narrow gaps in the pitch P along a wall of iron: the complex field is (F/P) coth(pi z/P), whose mean across
-    the pitch is the even field F/P far away (Schwarz-Christoffel, or the sum of the circular fields of all
-    gaps). No series of components is used.
+    Narrow gaps in the pitch P along a wall of iron: the complex field is (F/P) coth(pi z/P), whose mean
+    across the pitch is the even field F/P far away (Schwarz-Christoffel, or the sum of the circular
+    fields of all gaps). No series of components is used.
     """
     x = clearance + height * (np.arange(1500) + 0.5) / 1500
     y = pitch * (np.arange(400) + 0.5) / 400
@@ -55,7 +55,7 @@ def test_distance_and_sections_lower_it(clearance: float, height: float, pitch: 
 
 
 def test_gap_sections_closer_than_four_clearances_hardly_matter() -> None:
-    """Rule for distributed gaps: pitch below four times the distance to the winding (Hu and Sullivan 1998)."""
+    """Rule for distributed gaps: pitch below four times the way to the winding (Hu and Sullivan 1998)."""
     found = field_share(np.array(2e-3), np.array(8e-3), np.array(8e-3))
     assert float(found) < 0.05
 
@@ -67,7 +67,7 @@ def test_gap_loss_of_a_tape_core() -> None:
 
 
 def test_what_the_gap_adds_to_each_conductor(catalog: Catalog) -> None:
-    """Nothing without gap, less with more sections; foil suffers most, fine litz in proportion to its own
+    """Nothing without gap, less with more sections; fine litz suffers least, in proportion to its own
     proximity loss.
     """
     names = catalog.conductors.names
@@ -96,4 +96,4 @@ def test_what_the_gap_adds_to_each_conductor(catalog: Catalog) -> None:
     share = share_by_the_field(float(built.clearance[0]), float(built.layers.height[0]), float(pitch))
     assert (one[0] - 1.0) / (none[0] - 1.0) == pytest.approx(1.0 + share, rel=0.01)
     added = one - none
-    assert added[0] < added[1] < added[2]
+    assert added[0] < 0.1 * added[1:].min()

@@ -90,7 +90,7 @@ def test_energy_of_a_powder_core_has_a_best_number_of_turns() -> None:
     st.integers(5, 120), st.floats(1e-4, GAP_LIMIT * 0.04), st.floats(5e-4, 4e-3), st.sampled_from([1.0, 2.0])
 )
 def test_long_gaps_are_split(turns: int, gap: float, largest: float, legs: float) -> None:
-    """No section is longer than allowed, none is missing that another would spare, the inductance comes back."""
+    """No section is longer than allowed, none could be spared, the inductance comes back."""
     n, leg = np.array(float(turns)), np.array(legs)
     breadth = BREADTH * leg
     inductance = gapped_inductance(n, np.array(gap), AREA, PATH, MU, breadth, leg)

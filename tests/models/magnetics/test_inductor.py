@@ -91,8 +91,15 @@ def test_gap_gives_the_inductance(built: Build, found: Inductor) -> None:
     assert back[gapped] == pytest.approx(DUTY.inductance[gapped], rel=5e-3)
 
 
-def test_temperatures_are_in_balance_with_the_losses(built: Build, found: Inductor) -> None:
-    """Each node gives off its loss to the air and to the other node; winding loss at its own temperature."""
+def test_temperatures_are_in_balance_with_the_losses(
+    catalog: Catalog, built: Build, monkeypatch: pytest.MonkeyPatch
+) -> None:
+    """Each node gives off its loss to the air and to the other node; winding loss at its own temperature.
+
+    With the iteration carried to its end; how far its usual steps stay behind is the next test but one.
+    """
+    monkeypatch.setattr("models.magnetics.inductor.THERMAL_STEPS", 100)
+    found = inductor(catalog, built, DUTY, MAKING)
     surface = 6.4 * built.box_volume[:, None] ** (2.0 / 3.0)
     share = built.winding_surface_share[:, None]
     way = built.clearance / 0.25 + 0.5e-3 / 0.029 + 0.5 * built.layers.height / 1.0
@@ -108,9 +115,9 @@ def test_temperatures_are_in_balance_with_the_losses(built: Build, found: Induct
     below = (winding < 130.0) & (core < 130.0)
     assert below.sum() > 100
     own = given_off(winding, share * surface) + across
-    assert own[below] == pytest.approx(found.winding_loss[below], rel=0.02, abs=0.02)
+    assert own[below] == pytest.approx(found.winding_loss[below], rel=1e-3)
     own = given_off(core, (1.0 - share) * surface) - across
-    assert own[below] == pytest.approx(found.core_loss[below], rel=0.02, abs=0.03)
+    assert own[below] == pytest.approx(found.core_loss[below], rel=1e-3)
     ratio = resistance_ratio(
         built, DUTY.group_frequency, copper_resistivity(np.array(100.0)), found.gap_sections
     )
@@ -153,8 +160,10 @@ def test_losses_grow_with_current_and_temperature_with_ambient(
     assert np.all(np.diff(found.winding_loss, axis=-1) > 0.0)
     assert np.all(np.diff(found.core_loss, axis=-1) >= 0.0)
     hotter = inductor(catalog, built, replace(DUTY, air=Air(60.0, 1.0, np.zeros(COUNT))), MAKING)
+    sane = (hotter.winding_temperature < 250.0) & (hotter.core_temperature < 250.0)
+    assert sane.mean() > 0.5
     for name in ("winding_temperature", "core_temperature"):
-        assert np.all(getattr(hotter, name) > getattr(found, name))
+        assert np.all((getattr(hotter, name) > getattr(found, name))[sane])
         assert np.all(getattr(found, name) > 50.0)
 
 

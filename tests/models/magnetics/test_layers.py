@@ -14,6 +14,7 @@ from models.magnetics.build import build
 from models.magnetics.layers import (
     LEAST_HOLE,
     LITZ_PACKING,
+    MOST_LAYERS,
     foil_layers,
     former_wall,
     ring_layers,
@@ -53,7 +54,8 @@ def test_thickest_wire_fits_and_a_thicker_one_does_not(wires: int, breadth: floa
     number = np.array([float(wires)])
     widest = thickest_round(number, *room)
     assert round_layers(number, widest * (1.0 - 1e-12), *room).share <= 1.0 + 1e-9
-    assert round_layers(number, 1.01 * widest, *room).share > 1.0
+    thicker = round_layers(number, 1.01 * widest, *room)
+    assert thicker.share > 1.0 or thicker.count > MOST_LAYERS
 
 
 @given(st.integers(1, 200), st.floats(2e-4, 3e-3), st.floats(5e-3, 0.1), st.floats(1e-3, 0.03))

@@ -14,7 +14,13 @@ from numpy.typing import NDArray
 
 from models.designs import COOLING, Designs, InductorDesigns
 from models.inverter import Inverter
-from models.magnetics.sizing import CoreLadder, core_ladder, size_inductor
+from models.magnetics.sizing import (
+    CoreLadder,
+    core_ladder,
+    fitting_families,
+    materials_in,
+    size_inductor,
+)
 from models.output_filter import NO_CAPACITANCE
 from models.waveforms.leg_commutations import INNER, OUTER
 from models.waveforms.tables import WaveformTables
@@ -113,7 +119,16 @@ class SearchSpace:
     @cached_property
     def materials(self) -> Ints:
         """Catalogue indexes of the core materials to choose from [-]."""
-        return _chosen(self.inverter.catalog.core_materials.names, self.study.search.core_materials)
+        catalog = self.inverter.catalog
+        chosen = _chosen(catalog.core_materials.names, self.study.search.core_materials)
+        return chosen[np.isin(chosen, materials_in(catalog, self._families))]
+
+    @cached_property
+    def _families(self) -> frozenset[str]:
+        """Core families to choose from."""
+        wanted = frozenset(self.study.search.core_families)
+        fitting = fitting_families(self.inverter.catalog, self.study.specification.phases)
+        return fitting & wanted if wanted else fitting
 
     @cached_property
     def conductors(self) -> Ints:
@@ -313,7 +328,7 @@ class SearchSpace:
 
     @cached_property
     def _ladder(self) -> CoreLadder:
-        return core_ladder(self.inverter.catalog)
+        return core_ladder(self.inverter.catalog, self._families)
 
     @cached_property
     def _schemes(self) -> Ints:

@@ -133,6 +133,7 @@ ENERGY = (
 SEARCH = (
     Key("device_classes", Several(Text()), DEFAULT_CLASSES),
     Key("core_materials", Several(Text()), ()),
+    Key("core_families", Several(Text()), ()),
     Key("conductors", Several(Text()), ()),
     Key("dc_links", Several(Choice(DC_LINKS)), DC_LINKS),
     Key("cooling", Several(Choice(COOLING)), COOLING[:2]),

@@ -143,7 +143,8 @@ class CoreMaterial:
     origin: Mapping[str, str] = field(default_factory=dict, compare=False, repr=False)
 
 
-TAPE_FAMILIES = ("cut C", "three-limb")
+THREE_LIMB = "three-limb"  # one core for three phases; listed with a phase's share of it
+TAPE_FAMILIES = ("cut C", THREE_LIMB)
 
 
 @dataclass(frozen=True)
@@ -151,7 +152,7 @@ class CoreShape:
     """A core set of one size (pair of halves, ring, or cut core), bare of bobbin."""
 
     name: str
-    family: str  # "E", "ETD", "PQ", "RM", "U", "toroid powder", "toroid ferrite" or "cut C"
+    family: str  # "E", "ETD", "PQ", "RM", "U", "toroid powder", "toroid ferrite", "cut C" or "three-limb"
     area_m2: float  # effective area A_e [m2]
     path_length_m: float  # effective length l_e [m]
     core_volume_m3: float  # effective volume V_e [m3]

@@ -14,7 +14,7 @@ import numpy as np
 from numpy.typing import NDArray
 from scipy.constants import mu_0
 
-from models.catalog.parts import Catalog
+from models.catalog.parts import THREE_LIMB, Catalog
 from models.designs import InductorDesigns
 from models.magnetics.gap import powder_permeability_share
 from models.magnetics.layers import LITZ_PACKING, former_wall, thickest_round
@@ -42,9 +42,30 @@ class CoreLadder:
     stack: Ints
 
 
-def core_ladder(catalog: Catalog, stack_limit: int = STACK_LIMIT) -> CoreLadder:
-    """For every material, the cores that no other beats in both area product and boxed volume."""
-    rows = [_ladder_of(catalog, material, stack_limit) for material in range(len(catalog.core_materials))]
+def fitting_families(catalog: Catalog, phases: int) -> frozenset[str]:
+    """Core families that inductors of so many phases are made of."""
+    families = frozenset(shape.family for shape in catalog.core_shapes)
+    return families if phases == 3 else families - {THREE_LIMB}
+
+
+def materials_in(catalog: Catalog, families: frozenset[str]) -> Ints:
+    """Catalogue indexes of the core materials sold in any of some families [-]."""
+    parts = enumerate(catalog.core_materials)
+    return np.array([index for index, part in parts if families & set(part.families)], dtype=np.int64)
+
+
+def core_ladder(catalog: Catalog, families: frozenset[str], stack_limit: int = STACK_LIMIT) -> CoreLadder:
+    """For every material, the cores that no other beats in both area product and boxed volume.
+
+    Args:
+        catalog: parts.
+        families: of cores to choose from; materials sold in none of them have a ladder without use.
+        stack_limit: greatest number of stacked cores [-].
+    """
+    rows = [
+        _ladder_of(catalog, material, families, stack_limit)
+        for material in range(len(catalog.core_materials))
+    ]
     length = max(len(row[0]) for row in rows)
     padded = [
         [np.concatenate([part, np.repeat(part[-1:], length - len(part))]) for part in row] for row in rows
@@ -53,19 +74,19 @@ def core_ladder(catalog: Catalog, stack_limit: int = STACK_LIMIT) -> CoreLadder:
     return CoreLadder(product, shape, stack)
 
 
-def _ladder_of(catalog: Catalog, material: int, stack_limit: int) -> tuple[Array, Ints, Ints]:
+def _ladder_of(
+    catalog: Catalog, material: int, families: frozenset[str], stack_limit: int
+) -> tuple[Array, Ints, Ints]:
     part, shapes = catalog.core_materials[material], catalog.core_shapes
     entries = []
     for index, shape in enumerate(shapes):
-        if shape.family in part.families:
+        if shape.family in part.families and shape.family in families:
             for stack in range(1, (stack_limit if shape.stackable else 1) + 1):
                 product = shape.area_m2 * part.area_factor * stack * shape.window_area_m2
                 extra = shape.box_volume_m3 ** (2.0 / 3.0) * shape.stack_depth_m * (stack - 1)
                 entries.append((product, shape.box_volume_m3 + 1.17 * extra, index, stack))
     if not entries:
-        raise ValueError(
-            f"core material {part.name!r}: no core shape of the families {', '.join(part.families)}"
-        )
+        return np.zeros(1), np.zeros(1, dtype=np.int64), np.ones(1, dtype=np.int64)
     entries.sort(key=lambda entry: (-entry[0], entry[1]))
     kept, smallest = [], np.inf
     for entry in entries:

@@ -19,7 +19,7 @@ from models.magnetics.inductor import (
     inductor,
     where_present,
 )
-from models.magnetics.sizing import core_ladder, size_inductor
+from models.magnetics.sizing import core_ladder, fitting_families, size_inductor
 from models.magnetics.two_nodes import Air
 from models.magnetics.winding import copper_resistivity
 
@@ -35,7 +35,7 @@ def built(catalog: Catalog) -> Build:
         catalog,
         size_inductor(
             catalog,
-            core_ladder(catalog),
+            core_ladder(catalog, fitting_families(catalog, 1)),
             rng.integers(0, len(catalog.core_materials), COUNT),
             rng.integers(0, len(catalog.conductors), COUNT),
             np.full(COUNT, 3e-4),

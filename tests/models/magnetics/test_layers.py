@@ -21,7 +21,7 @@ from models.magnetics.layers import (
     round_layers,
     thickest_round,
 )
-from models.magnetics.sizing import core_ladder, size_inductor
+from models.magnetics.sizing import core_ladder, fitting_families, size_inductor
 
 COUNT = 400
 WALL = 1.5e-3
@@ -85,7 +85,7 @@ def test_sized_inductors_can_be_wound(catalog: Catalog) -> None:
     rng = np.random.default_rng(5)
     chosen = size_inductor(
         catalog,
-        core_ladder(catalog),
+        core_ladder(catalog, fitting_families(catalog, 1)),
         rng.integers(0, len(catalog.core_materials), COUNT),
         rng.integers(0, len(catalog.conductors), COUNT),
         np.full(COUNT, 3e-4),

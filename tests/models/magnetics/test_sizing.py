@@ -10,12 +10,19 @@ import pytest
 from models.catalog import Catalog
 from models.magnetics.build import build
 from models.magnetics.gap import gap_for_inductance, powder_inductance
-from models.magnetics.sizing import STACK_LIMIT, CoreLadder, core_ladder, size_inductor
+from models.magnetics.sizing import (
+    STACK_LIMIT,
+    CoreLadder,
+    core_ladder,
+    fitting_families,
+    materials_in,
+    size_inductor,
+)
 
 
 @pytest.fixture(scope="module")
 def ladder(catalog: Catalog) -> CoreLadder:
-    return core_ladder(catalog)
+    return core_ladder(catalog, fitting_families(catalog, 1))
 
 
 def sized(catalog: Catalog, ladder: CoreLadder, material: int, **changed: Any) -> Any:
@@ -124,13 +131,17 @@ def test_larger_factor_never_gives_a_smaller_core(catalog: Catalog, ladder: Core
         assert np.all(np.diff(boxes) >= 0.0)
 
 
-def test_material_without_a_shape() -> None:
-    class Part:
-        name, families = "orphan", ("EP",)
+def test_only_families_asked_for_are_on_the_ladder(catalog: Catalog) -> None:
+    toroids = frozenset({"toroid powder"})
+    ladder = core_ladder(catalog, toroids)
+    usable = materials_in(catalog, toroids)
+    assert {catalog.core_materials[index].kind for index in usable} == {"powder"}
+    assert {catalog.core_shapes[shape].family for shape in ladder.shape[usable].ravel()} == toroids
+    ferrite = catalog.core_materials.index("MnZn ferrite 25-200 kHz")
+    assert ferrite not in usable
+    assert ladder.area_product[ferrite].max() == 0.0  # nothing on it carries anything
 
-    class Stub:
-        core_materials = (Part(),)
-        core_shapes = ()
 
-    with pytest.raises(ValueError, match="core material 'orphan': no core shape of the families EP"):
-        core_ladder(Stub())  # type: ignore[arg-type]
+def test_three_limbs_are_for_three_phases(catalog: Catalog) -> None:
+    assert "three-limb" in fitting_families(catalog, 3)
+    assert fitting_families(catalog, 1) == fitting_families(catalog, 3) - {"three-limb"}

@@ -14,6 +14,7 @@ from numpy.typing import NDArray
 
 from models.designs import COOLING, Designs, InductorDesigns
 from models.inverter import Inverter
+from models.magnetics.alternatives import Offer
 from models.magnetics.sizing import (
     CoreLadder,
     core_ladder,
@@ -134,6 +135,19 @@ class SearchSpace:
     def conductors(self) -> Ints:
         """Catalogue indexes of the conductors to choose from [-]."""
         return _chosen(self.inverter.catalog.conductors.names, self.study.search.conductors)
+
+    @cached_property
+    def offer(self) -> Offer:
+        """What inductors may be made of."""
+        rules = self.study.specification.rules
+        return Offer(
+            self.inverter.catalog,
+            self._families,
+            self.materials,
+            self.conductors,
+            rules.saturation_use,
+            rules.coil_former_wall,
+        )
 
     @cached_property
     def dc_links(self) -> Ints:

@@ -132,7 +132,7 @@ def size_inductor(
     materials, shapes = catalog.core_materials, catalog.core_shapes
     powder = materials.column("kind")[material] == "powder"
     allowed_flux = np.where(
-        powder, _powder_flux(catalog)[material], materials.column("saturation_t")[material] * saturation_use
+        powder, powder_flux(catalog)[material], materials.column("saturation_t")[material] * saturation_use
     )
     needed = (
         inductance
@@ -145,11 +145,11 @@ def size_inductor(
     shape, stack = ladder.shape[material, rung], ladder.stack[material, rung]
     area = shapes.column("area_m2")[shape] * stack * materials.column("area_factor")[material]
     gapped_turns = np.ceil(inductance * peak_current / (allowed_flux * flux_use * area))
-    powder_turns = _powder_turns(
+    powder_turns = fewest_powder_turns(
         catalog, material, area, shapes.column("path_length_m")[shape], inductance, peak_current
     )
     turns = np.maximum(np.where(powder, powder_turns, gapped_turns), 1.0)
-    copper = _copper(catalog, shape, conductor, turns, window_use, wall)
+    copper = copper_that_fits(catalog, shape, conductor, turns, window_use, wall)
     return InductorDesigns(
         material=material,
         shape=shape,
@@ -160,7 +160,7 @@ def size_inductor(
     )
 
 
-def _copper(
+def copper_that_fits(
     catalog: Catalog, shape: Ints, conductor: Ints, turns: Array, window_use: Array, wall: float
 ) -> Array:
     """Copper of a turn: the wanted share of what the window takes, no more than fits in layers (n,) [m2]."""
@@ -191,14 +191,14 @@ def _copper(
     return np.where(in_hole, wanted, np.minimum(wanted, np.maximum(SNUG * fitting, 1e-3 * wanted)))
 
 
-def _powder_flux(catalog: Catalog) -> Array:
+def powder_flux(catalog: Catalog) -> Array:
     """Flux density mu_0 mu_i H_50/2 at which half of a powder's permeability is left (m,) [T]."""
     materials = catalog.core_materials
     field = materials.column("rolloff_field_a_per_m")
     return np.where(np.isfinite(field), 0.5 * mu_0 * materials.column("initial_permeability") * field, 1.0)
 
 
-def _powder_turns(
+def fewest_powder_turns(
     catalog: Catalog, material: Ints, area: Array, path: Array, inductance: Array, peak_current: Array
 ) -> Array:
     """Fewest turns whose inductance at peak current reaches the wanted one, by fixed-point steps [-]."""

@@ -59,12 +59,15 @@ def with_inductor(design: Designs, side: str, builds: InductorDesigns) -> Design
 
 @dataclass(frozen=True)
 class Found:
-    """Combinations offered and evaluated, how many beat the inductor, the greatest least gain of them [-]."""
+    """Combinations offered and evaluated, how many beat the inductor, the greatest least gain of them [-],
+    how many of them cost no more.
+    """
 
     offered: int
     evaluated: int
     beating: int
     gain: float
+    no_dearer: int
 
 
 def against_all(space: SearchSpace, design: Designs, side: str) -> Found:
@@ -86,15 +89,16 @@ def against_all(space: SearchSpace, design: Designs, side: str) -> Found:
         & (builds.layers.share <= 1.0)
         & (builds.window_fill <= 1.0)
     )
-    beating, gain = 0, 0.0
+    beating, gain, no_dearer, price = 0, 0.0, 0, float(result.prices[side][0])
     for start in range(0, len(worth), BLOCK):
         other = inverter.evaluate(with_inductor(design, side, take(offered, worth[start : start + BLOCK])))
         volumes, losses = volume_and_loss(space, other, side)
         better = (volumes <= GAIN * volume) & (losses <= GAIN * loss) & feasible(space, other)
         beating += int(better.sum())
+        no_dearer += int((better & (other.prices[side] <= price)).sum())
         gains = np.minimum(1.0 - volumes / volume, 1.0 - losses / loss)[better]
         gain = max(gain, float(gains.max(initial=0.0)))
-    return Found(len(offered.turns), len(worth), beating, gain)
+    return Found(len(offered.turns), len(worth), beating, gain, no_dearer)
 
 
 def drawn(name: str, count: int, rng: np.random.Generator) -> list[tuple[SearchSpace, Designs, str]]:
@@ -120,18 +124,22 @@ def front_rows(objectives: Array, resolution: float) -> NDArray[np.int64]:
 
 def main(names: list[str], count: int) -> None:
     """Print how many inductors are beaten."""
-    rng, beaten, total, worst, started = np.random.default_rng(1), 0, 0, 0.0, time.perf_counter()
+    rng, started = np.random.default_rng(1), time.perf_counter()
+    total, beaten, at_the_price, worst = 0, 0, 0, 0.0
     for name in names:
         for space, design, side in drawn(name, -(-count // len(names)), rng):
             found = against_all(space, design, side)
             total, beaten = total + 1, beaten + (found.beating > 0)
+            at_the_price += found.no_dearer > 0
             worst = max(worst, found.gain)
             if found.beating:
-                words = f"{found.beating} better, the best by {found.gain:.1%} in both"
+                words = (
+                    f"{found.beating} better ({found.no_dearer} no dearer), best by {found.gain:.1%} in both"
+                )
                 print(f"  {name}, {side}: {words} ({found.evaluated:,} of {found.offered:,} evaluated)")
     print(
         f"{beaten} of {total} inductors are beaten by 2 % in volume and loss, the worst by {worst:.1%} "
-        f"(goal: none); {time.perf_counter() - started:.0f} s"
+        f"(goal: none), {at_the_price} of them at no higher price; {time.perf_counter() - started:.0f} s"
     )
 
 

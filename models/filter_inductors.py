@@ -12,28 +12,26 @@ from models.designs import Designs
 from models.magnetics.build import build
 from models.magnetics.core_bands import CoreBands
 from models.magnetics.core_loss import steinmetz_loss, switched_loss
-from models.magnetics.inductor import Inductor, InductorDuty, inductor, where_present
+from models.magnetics.inductor import Inductor, InductorDuty, InductorMaking, inductor, where_present
+from models.magnetics.two_nodes import Air
 from models.output_filter import LinePhasors
 from models.uncertainty import NOMINAL, ModelFactors
-from models.waveforms.spectrum import CARRIER_GROUPS
 from models.waveforms.state import WaveformState
-from models.waveforms.tables import WaveformTables
+from models.waveforms.tables import GROUP_MULTIPLES, WaveformTables
 
 Array = NDArray[np.float64]
 Ints = NDArray[np.int64]
-GROUPS = np.arange(1.0, CARRIER_GROUPS + 1)
 
 
 @dataclass(frozen=True)
 class Surroundings:
-    """What both inductors share: line frequency [Hz], air around them [degC], rise factor (n,) [-], labour
-    [currency], factors on what the models say.
+    """What both inductors share: line frequency [Hz], the air around them, how they are made, factors on what
+    the models say.
     """
 
     line_frequency_hz: float
-    ambient_c: float
-    rise_factor: Array
-    labour: float
+    air: Air
+    making: InductorMaking
     factors: ModelFactors = NOMINAL
 
 
@@ -74,7 +72,7 @@ def bridge_side(
         view: ripple points.
         around: surroundings.
     """
-    built = build(catalog, designs.inverter_inductor)
+    built = build(catalog, designs.inverter_inductor, around.making.former_wall)
     columns = list(view.columns)
     scheme, row, weight = state.scheme, state.row[:, columns], state.weight[:, columns]
     unit = state.ripple_unit[:, columns]
@@ -100,14 +98,13 @@ def bridge_side(
             peak_current=peak_current,
             line_current=np.abs(phasors.inverter_current),
             group_mean_square=groups[:, view.spread],
-            group_frequency=frequency[:, None] * GROUPS,
+            group_frequency=frequency[:, None] * GROUP_MULTIPLES,
             switched_loss_density=density[:, view.spread],
             line_frequency_hz=around.line_frequency_hz,
-            ambient_c=around.ambient_c,
-            rise_factor=around.rise_factor,
+            air=around.air,
             factors=around.factors,
         ),
-        around.labour,
+        around.making,
     )
 
 
@@ -126,7 +123,7 @@ def grid_side(
         ripple_rms: switching-frequency rms current at the greatest dc voltage (n,) [A]; others as in
             `bridge_side`.
     """
-    built = build(catalog, designs.grid_inductor)
+    built = build(catalog, designs.grid_inductor, around.making.former_wall)
     frequency = designs.switching_frequency_hz * tables.main_carrier[designs.modulation]
     material = designs.grid_inductor.material
     turns_area = built.turns * built.area
@@ -150,10 +147,9 @@ def grid_side(
             group_frequency=frequency[:, None],
             switched_loss_density=np.repeat(density[:, None], points, axis=1),
             line_frequency_hz=around.line_frequency_hz,
-            ambient_c=around.ambient_c,
-            rise_factor=around.rise_factor,
+            air=around.air,
             factors=around.factors,
         ),
-        around.labour,
+        around.making,
     )
-    return where_present(part, designs.grid_inductance_h > 0.0, around.ambient_c)
+    return where_present(part, designs.grid_inductance_h > 0.0, around.air.ambient_c)

@@ -3,7 +3,7 @@
 from __future__ import annotations
 
 from dataclasses import dataclass, replace
-from functools import cached_property, lru_cache
+from functools import cached_property
 
 import numpy as np
 from numpy.typing import NDArray
@@ -19,15 +19,17 @@ from models.capacitors import (
     switching_ripple_capacitance,
 )
 from models.catalog.gathered import Gathered
-from models.catalog.parts import AcCapacitor, Catalog, Fan
-from models.cooling import SinkCurve, SinkPoint, sink_curve_cold_plate, sink_curve_forced, sink_curve_natural
+from models.catalog.parts import AcCapacitor, Catalog
+from models.cooling import SinkCurve, SinkPoint, sink_kinds
+from models.cooling.air import STANDARD_PRESSURE_PA, pressure_at_altitude
 from models.designs import COLD_PLATE, FORCED, Designs
 from models.distortion import Distortion, worse
 from models.emission.emission_filter import Emission, EmissionModel
 from models.evaluation import Evaluation, joined
 from models.filter_inductors import RippleView, Surroundings, bridge_side, grid_side
 from models.magnetics.core_bands import CoreBands, core_bands
-from models.magnetics.inductor import Inductor
+from models.magnetics.inductor import Inductor, InductorMaking
+from models.magnetics.two_nodes import Air
 from models.operating_points import OperatingPoints, operating_points
 from models.output_distortion import Spectrum, current_distortion, spectrum, voltage_distortion
 from models.output_filter import Filter, LinePhasors, line_phasors, resonance_hz
@@ -79,7 +81,7 @@ class Inverter:
     @cached_property
     def tables(self) -> WaveformTables:
         """Waveform tables of the bridge."""
-        return waveform_tables(self.bridge.name, self.bands.exponents)
+        return waveform_tables(self.bridge.name, self.bands.exponents, self.specification.displacement)
 
     @cached_property
     def emission(self) -> EmissionModel:
@@ -90,7 +92,7 @@ class Inverter:
     def sinks(self) -> tuple[SinkCurve, SinkCurve, SinkCurve]:
         """Least-volume heatsinks over thermal resistance, in the order of COOLING."""
         spec, price = self.specification, self.catalog.cost.heatsink_price_per_kg
-        return _sink_curves(spec.ambient_c, spec.altitude_m, tuple(self.catalog.fans), price)
+        return sink_kinds(spec.ambient_c, spec.altitude_m, tuple(self.catalog.fans), price)
 
     @cached_property
     def ac_capacitor(self) -> AcCapacitor:
@@ -271,10 +273,17 @@ class Inverter:
         rules = spec.rules
         around = Surroundings(
             spec.line_frequency_hz,
-            spec.ambient_c + rules.internal_air_rise,
-            np.where(designs.cooling == FORCED, rules.forced_inductor_rise_factor, 1.0)
-            * factors.inductor_rise,
-            float(self.catalog.cost.inductor_labour_at(spec.apparent_power_va)),
+            Air(
+                spec.ambient_c + rules.internal_air_rise,
+                float(pressure_at_altitude(np.asarray(spec.altitude_m))) / STANDARD_PRESSURE_PA,
+                np.where(designs.cooling == FORCED, rules.inductor_air_speed, 0.0),
+            ),
+            InductorMaking(
+                float(self.catalog.cost.inductor_labour_at(spec.apparent_power_va)),
+                rules.coil_former_wall,
+                rules.largest_gap_section,
+                rules.gap_section_price,
+            ),
             factors,
         )
         count = points.losses.stop
@@ -362,15 +371,6 @@ class Inverter:
             for moments in (self.tables.rail_slow, self.tables.rail_fast)
         )
         return slow, fast
-
-
-@lru_cache(maxsize=16)
-def _sink_curves(
-    ambient_c: float, altitude_m: float, fans: tuple[Fan, ...], price: float
-) -> tuple[SinkCurve, SinkCurve, SinkCurve]:
-    natural = sink_curve_natural(ambient_c=ambient_c, altitude_m=altitude_m, price_per_kg=price)
-    forced = sink_curve_forced(fans=fans, ambient_c=ambient_c, altitude_m=altitude_m, price_per_kg=price)
-    return natural, forced, sink_curve_cold_plate()
 
 
 def _circuit(designs: Designs) -> Filter:

@@ -70,7 +70,7 @@ def operating_points(specification: Specification) -> OperatingPoints:
     low_ac = spec.phase_voltage_v if spec.application == STAND_ALONE else spec.phase_voltage_min_v
     high_ac = spec.phase_voltage_v if spec.application == STAND_ALONE else spec.phase_voltage_max_v
     angle = float(np.arccos(spec.power_factor_min))
-    lag = float(np.copysign(np.arccos(abs(spec.power_factor)), spec.power_factor))
+    lag = spec.displacement
     rows = [(level, spec.phase_voltage_v, lag, spec.dc_voltage_v) for level in levels]
     count = len(rows)
     rows += [(1.0, low_ac, 0.0, spec.dc_voltage_max_v), (1.0, low_ac, -angle, spec.dc_voltage_max_v)]

@@ -10,7 +10,7 @@ from numpy.typing import NDArray
 from models.capacitors import AcFilterCapacitor, DcLink
 from models.catalog.parts import Catalog
 from models.cooling import SinkPoint
-from models.designs import Designs
+from models.designs import Designs, InductorDesigns
 from models.distortion import Distortion
 from models.emission.emission_filter import Emission
 from models.evaluation import Constraint, at_least, at_most
@@ -70,7 +70,7 @@ def requirements(
             spec.rules,
             points,
             found.inductors[0],
-            found.designs.inverter_inductor.material,
+            found.designs.inverter_inductor,
             catalog,
         ),
         *_inductor(
@@ -78,7 +78,7 @@ def requirements(
             spec.rules,
             points,
             found.inductors[1],
-            found.designs.grid_inductor.material,
+            found.designs.grid_inductor,
             catalog,
         ),
         *_filter(spec, found),
@@ -145,20 +145,25 @@ def _inductor(
     rules: DesignRules,
     points: OperatingPoints,
     part: Inductor,
-    material: NDArray[np.int64],
+    build: InductorDesigns,
     catalog: Catalog,
 ) -> tuple[Constraint, ...]:
-    limit = np.minimum(
-        rules.winding_temperature_limit, catalog.core_materials.column("temperature_limit_c")[material]
+    core_limit = catalog.core_materials.column("temperature_limit_c")[build.material]
+    insulation = catalog.conductors.column("insulation_limit_c")[build.conductor]
+    limit = np.minimum(rules.winding_temperature_limit, insulation)
+    winding, core = (
+        temperature[:, points.thermal].max(-1)
+        for temperature in (part.winding_temperature, part.core_temperature)
     )
-    temperature = part.temperature[:, points.thermal].max(-1)
     return (
         at_most(f"{name} flux density", "of saturation", part.flux_share, rules.saturation_use),
         at_least(f"{name} inductance left at peak", "", part.inductance_left, rules.inductance_left),
         at_least(f"{name} inductance possible", "of required", part.inductance_share, 0.999),
         at_most(f"{name} gap", "of winding breadth", part.gap_share, rules.gap_share_limit),
         at_most(f"{name} window fill", "", part.window_fill, 1.0),
-        at_most(f"{name} temperature", "degC", temperature, limit, limit - 40.0),
+        at_most(f"{name} layers", "of the window's room", part.layer_share, 1.0),
+        at_most(f"{name} winding temperature", "degC", winding, limit, limit - 40.0),
+        at_most(f"{name} core temperature", "degC", core, core_limit, core_limit - 40.0),
     )
 
 

@@ -231,6 +231,7 @@ def _details(spec: Specification, points: OperatingPoints, found: Findings) -> d
         "rated_junction_temperature_c": losses.switch_temperature[:, points.rated],
         "rated_diode_temperature_c": losses.diode_temperature[:, points.rated],
         "rated_sink_temperature_c": losses.sink_temperature[:, points.rated],
+        "heatsinks": found.sink.count,
         "heat_worst_w": losses.heat[:, points.thermal].max(-1),
         "filter_capacitor_current_share": found.ac_capacitor.current_share,
         "dc_link_capacitance_f": link.capacitance,
@@ -257,7 +258,10 @@ def _details(spec: Specification, points: OperatingPoints, found: Findings) -> d
             f"{name}_gap_m": part.gap,
             f"{name}_window_fill": part.window_fill,
             f"{name}_inductance_left": part.inductance_left,
-            f"{name}_temperature_c": part.temperature[:, points.thermal].max(-1),
+            f"{name}_gap_sections": part.gap_sections,
+            f"{name}_layer_share": part.layer_share,
+            f"{name}_winding_temperature_c": part.winding_temperature[:, points.thermal].max(-1),
+            f"{name}_core_temperature_c": part.core_temperature[:, points.thermal].max(-1),
             f"{name}_resistance_ohm": part.resistance,
         }
     return details

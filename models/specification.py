@@ -38,10 +38,17 @@ class DesignRules:
     winding_temperature_limit: float = rule(
         130.0, "degC", "mean winding temperature allowed (class F with reserve)"
     )
-    gap_share_limit: float = rule(0.3, "", "greatest total air gap over the winding breadth")
-    forced_inductor_rise_factor: float = rule(
-        0.5, "", "temperature rise of inductors in the fan's air over still air"
+    coil_former_wall: float = rule(
+        0.0015, "m", "wall of coil formers, between core and winding and at the winding's ends"
     )
+    gap_share_limit: float = rule(0.3, "", "greatest total air gap over the winding breadth of all legs")
+    largest_gap_section: float = rule(
+        0.002, "m", "greatest length of one section of an inductor's air gap; longer gaps are split"
+    )
+    gap_section_price: float = rule(
+        0.5, "", "price of a further gap section: block of core, spacer, bonding [currency]"
+    )
+    inductor_air_speed: float = rule(2.0, "m/s", "air speed past inductors in the fan's air")
     resonance_over_line: float = rule(10.0, "", "least resonance frequency over the line frequency")
     resonance_over_switching: float = rule(
         0.5, "", "greatest resonance frequency over the switching frequency"
@@ -180,6 +187,11 @@ class Specification:
     voltage_thd_limit_rectifier: float = 0.08
     rules: DesignRules = field(default_factory=DesignRules)
     energy: EnergyTerms = field(default_factory=EnergyTerms)
+
+    @property
+    def displacement(self) -> float:
+        """Lag of the delivered current behind the voltage [rad]."""
+        return math.copysign(math.acos(abs(self.power_factor)), self.power_factor)
 
     @property
     def grid_inductance_min_h(self) -> float:

@@ -13,8 +13,8 @@ from numpy.typing import NDArray
 
 from models.evaluation import Constraint
 from optimizer.quantity import written
+from optimizer.search_ranges import RANGES
 from optimizer.space import WHOLE, SearchSpace, Variable
-from optimizer.study_schema import RANGES
 
 Array = NDArray[np.float64]
 

@@ -281,6 +281,7 @@ _RESULT_NAMES = {
     "junction_temperature_c",
     "diode_temperature_c",
     "sink_temperature_c",
+    "heatsinks",
     "heat_worst_w",
     "filter_capacitor_current_share",
     "dc_link_capacitance_f",
@@ -298,7 +299,9 @@ _RESULT_NAMES = {
 _RESULT_ENDS = (
     "_flux_t",
     "_gap_m",
+    "_gap_sections",
     "_window_fill",
+    "_layer_share",
     "_inductance_left",
     "_temperature_c",
     "_resistance_ohm",

@@ -255,8 +255,11 @@ def design_table(
     names = np.array([entry.name for entry in constraints])
     columns["tightest_constraint"] = names[np.argmin(margins, axis=-1)]
     columns["tightest_margin"] = margins.min(-1)
-    table = pd.DataFrame(columns)
-    return table.astype(dict.fromkeys(table.select_dtypes("category"), object))
+    plain = {
+        name: np.asarray(column, dtype=object) if isinstance(column, pd.Categorical) else column
+        for name, column in columns.items()
+    }
+    return pd.DataFrame(plain)
 
 
 def choices(inverter: Inverter, designs: Designs) -> dict[str, Any]:

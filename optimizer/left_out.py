@@ -10,7 +10,7 @@ from numpy.typing import NDArray
 
 from models.designs import FORCED
 from models.inverter import Inverter
-from models.magnetics.sizing import core_ladder, size_inductor
+from models.magnetics.sizing import core_ladder, fitting_families, size_inductor
 from models.waveforms.leg_commutations import INNER
 from optimizer.errors import Problem
 
@@ -126,7 +126,7 @@ def _inductor(side: str, inductance: Array, peak: Array, inverter: Inverter) -> 
     kinds = [conductor.kind for conductor in catalog.conductors]
     built = size_inductor(
         catalog,
-        core_ladder(catalog),
+        core_ladder(catalog, fitting_families(catalog, 1)),  # single inductors
         np.full(count, catalog.core_materials.index(INDUCTOR_MATERIAL)),
         np.full(count, kinds.index(INDUCTOR_CONDUCTOR_KIND)),
         inductance,
@@ -136,6 +136,7 @@ def _inductor(side: str, inductance: Array, peak: Array, inverter: Inverter) -> 
         np.full(count, FLUX_USE),
         np.full(count, WINDOW_USE),
         spec.rules.saturation_use,
+        spec.rules.coil_former_wall,
     )
     return {
         f"{side}_inductor_core_material": built.material,

@@ -21,8 +21,8 @@ from optimizer.evolution.survival import survivors
 from optimizer.objectives import requirements_of
 from optimizer.problem import ClassProblem, violation_of
 from optimizer.screening import quasi_random, rules_of_thumb
+from optimizer.search_ranges import RANGES
 from optimizer.space import LOGARITHMIC, SearchSpace
-from optimizer.study_schema import RANGES
 from optimizer.study_values import (
     DC_TOGETHER,
     HIGH,

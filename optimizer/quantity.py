@@ -28,6 +28,7 @@ KINDS = {
     "degC": ("a temperature", '"45 degC"'),
     "kg": ("a mass", '"12 kg"'),
     "m": ("a length", '"1000 m"'),
+    "m/s": ("a speed", '"2 m/s"'),
     "m^2": ("an area", '"60 mm^2"'),
     "m^3": ("a volume", '"150 cm^3"'),
     "m^3/VA": ("a volume per power", '"20 cm^3/kVA"'),

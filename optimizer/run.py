@@ -207,12 +207,12 @@ def shortfalls(result: SearchResult, workers: int | None = None) -> tuple[Shortf
 
 
 def ruled_out(result: SearchResult) -> list[tuple[str, float, str]]:
-    """Constraints that candidates failed, over all classes, with how near the nearest candidate came."""
-    weights = np.array([found.evaluations for found in result.classes], dtype=float)
-    shares = np.average([found.failures for found in result.classes], axis=0, weights=weights)
+    """Constraints that the nearest candidate of all concepts fails: names, the share of its concept's
+    candidates that fail them too, how near it came.
+    """
     closest = min(result.classes, key=lambda found: float(np.maximum(-found.nearest, 0.0).sum()))
     told = []
-    for name, share, margin in zip(closest.constraints, shares, closest.nearest, strict=True):
+    for name, share, margin in zip(closest.constraints, closest.failures, closest.nearest, strict=True):
         if margin < 0.0:
             told.append((name, float(share), f"{-margin:.1%} beyond its limit ({closest.concept.name})"))
     return told

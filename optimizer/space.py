@@ -14,7 +14,14 @@ from numpy.typing import NDArray
 
 from models.designs import COOLING, Designs, InductorDesigns
 from models.inverter import Inverter
-from models.magnetics.sizing import CoreLadder, core_ladder, size_inductor
+from models.magnetics.alternatives import Offer
+from models.magnetics.sizing import (
+    CoreLadder,
+    core_ladder,
+    fitting_families,
+    materials_in,
+    size_inductor,
+)
 from models.output_filter import NO_CAPACITANCE
 from models.waveforms.leg_commutations import INNER, OUTER
 from models.waveforms.tables import WaveformTables
@@ -113,12 +120,34 @@ class SearchSpace:
     @cached_property
     def materials(self) -> Ints:
         """Catalogue indexes of the core materials to choose from [-]."""
-        return _chosen(self.inverter.catalog.core_materials.names, self.study.search.core_materials)
+        catalog = self.inverter.catalog
+        chosen = _chosen(catalog.core_materials.names, self.study.search.core_materials)
+        return chosen[np.isin(chosen, materials_in(catalog, self._families))]
+
+    @cached_property
+    def _families(self) -> frozenset[str]:
+        """Core families to choose from."""
+        wanted = frozenset(self.study.search.core_families)
+        fitting = fitting_families(self.inverter.catalog, self.study.specification.phases)
+        return fitting & wanted if wanted else fitting
 
     @cached_property
     def conductors(self) -> Ints:
         """Catalogue indexes of the conductors to choose from [-]."""
         return _chosen(self.inverter.catalog.conductors.names, self.study.search.conductors)
+
+    @cached_property
+    def offer(self) -> Offer:
+        """What inductors may be made of."""
+        rules = self.study.specification.rules
+        return Offer(
+            self.inverter.catalog,
+            self._families,
+            self.materials,
+            self.conductors,
+            rules.saturation_use,
+            rules.coil_former_wall,
+        )
 
     @cached_property
     def dc_links(self) -> Ints:
@@ -308,11 +337,12 @@ class SearchSpace:
             values[f"{side} flux use"],
             values[f"{side} window use"],
             self.study.specification.rules.saturation_use,
+            self.study.specification.rules.coil_former_wall,
         )
 
     @cached_property
     def _ladder(self) -> CoreLadder:
-        return core_ladder(self.inverter.catalog)
+        return core_ladder(self.inverter.catalog, self._families)
 
     @cached_property
     def _schemes(self) -> Ints:

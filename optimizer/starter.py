@@ -13,7 +13,8 @@ from models.ownership import EnergyTerms
 from models.specification import DesignRules
 from models.uncertainty import Uncertainty
 from optimizer.quantity import written
-from optimizer.study_schema import CURRENCY, RANGES
+from optimizer.search_ranges import RANGES
+from optimizer.study_schema import CURRENCY
 
 DEFAULTS, TERMS, UNCERTAINTY = DesignRules(), EnergyTerms(), Uncertainty()
 

@@ -23,6 +23,7 @@ from optimizer.concepts import Concept, concepts
 from optimizer.errors import InputError, Problem
 from optimizer.limit_checks import unfitting_limits
 from optimizer.quantity import show
+from optimizer.search_ranges import SearchRange
 from optimizer.study_checks import (
     bridges_of,
     check_content,
@@ -39,7 +40,6 @@ from optimizer.study_schema import (
     NOMINAL_VALUES,
     SIDES,
     STAND_ALONE_ONLY,
-    SearchRange,
     StudyContent,
     read_content,
 )
@@ -64,10 +64,10 @@ class SearchSettings:
         filter_kind: LCL, LC or L.
         damping_branches: where the damping resistor may stand.
         device_classes: classes of semiconductors; each gets a front of its own.
-        core_materials, conductors: names out of the catalogue; empty means all of it.
+        core_materials, core_families, conductors: names out of the catalogue; empty means all that fit.
         dc_links: technologies of dc-link capacitors.
         cooling: names out of models.designs.COOLING.
-        ranges: search ranges in SI units by name, as study_schema.RANGES declares them; without
+        ranges: search ranges in SI units by name, as search_ranges.RANGES declares them; without
             grid_inductance_ratio for an LC filter.
         population: candidates per generation and class [-].
         generations: at most [-].
@@ -85,6 +85,7 @@ class SearchSettings:
     damping_branches: tuple[str, ...]
     device_classes: tuple[str, ...]
     core_materials: tuple[str, ...]
+    core_families: tuple[str, ...]
     conductors: tuple[str, ...]
     dc_links: tuple[str, ...]
     cooling: tuple[str, ...]
@@ -204,10 +205,14 @@ class Study:
         Raises:
             InputError: with every unknown name and the nearest known one.
         """
+        from models.magnetics.sizing import fitting_families
+
         search = self.search
+        fitting = sorted(fitting_families(catalog, self.specification.phases))
         chosen: tuple[tuple[str, tuple[str, ...], Iterable[str]], ...] = (
             ("search.device_classes", search.device_classes, catalog.devices.column("device_class")),
             ("search.core_materials", search.core_materials, catalog.core_materials.names),
+            ("search.core_families", search.core_families, fitting),
             ("search.conductors", search.conductors, catalog.conductors.names),
             ("search.dc_links", search.dc_links, catalog.dc_link_capacitors.column("technology")),
         )
@@ -222,9 +227,21 @@ class Study:
             for key, name, known in asked
             if name not in set(known)
         ]
+        problems = problems or self._unmade_inductors(catalog)
         problems = problems or unfitting_limits(self.specification, catalog, str(self.path))
         if problems:
             raise InputError(*problems)
+
+    def _unmade_inductors(self, catalog: Catalog) -> list[Problem]:
+        """Trouble where no core material asked for is sold in a core family asked for."""
+        materials, families = self.search.core_materials, frozenset(self.search.core_families)
+        wanted = materials or catalog.core_materials.names
+        sold = [part for part in catalog.core_materials if part.name in wanted]
+        if not families or any(families & set(part.families) for part in sold):
+            return []
+        known = sorted(frozenset().union(*(part.families for part in sold)))
+        expected = f"a family that search.core_materials are sold in: {one_of(known)}"
+        return [Problem(show(sorted(families)[0]), expected, "search.core_families[0]", str(self.path))]
 
 
 def _known(name: str, known: Iterable[str]) -> str:

@@ -12,15 +12,14 @@ from models.specification import GRID_CONNECTED, STAND_ALONE
 from models.waveforms.bridges import BRIDGES, Bridge, Modulation
 from optimizer.errors import InputError, Problem
 from optimizer.quantity import written
+from optimizer.search_ranges import GRID_RATIO, RANGES
 from optimizer.study_schema import (
     CUSTOM,
     CUSTOM_WEIGHTING,
     GRID_CONNECTED_ONLY,
-    GRID_RATIO,
     LC,
     LCL,
     ONLY_L,
-    RANGES,
     STAND_ALONE_ONLY,
     StudyContent,
 )
@@ -50,12 +49,16 @@ def bridges_of(content: StudyContent) -> tuple[str, ...]:
 
 def chosen_modulations(content: StudyContent) -> tuple[str, ...]:
     """Names of the modulation schemes the search may choose from, in the bridges' order; none where the
-    study's are in trouble.
+    study's are in trouble. Unnamed, they are all that differ at the study's power factor: what follows the
+    current clamps at the voltage's peak where that is in phase.
     """
     if "modulations" not in content.bridge:
         return ()
-    known = dict.fromkeys(scheme.name for name in bridges_of(content) for scheme in BRIDGES[name].modulations)
-    names = content.bridge["modulations"] or tuple(known)
+    schemes = [scheme for name in bridges_of(content) for scheme in BRIDGES[name].modulations]
+    known = dict.fromkeys(scheme.name for scheme in schemes)
+    in_phase = content.application.get("power_factor", 1.0) == 1.0
+    differing = (scheme.name for scheme in schemes if not (in_phase and scheme.follows_current))
+    names = content.bridge["modulations"] or tuple(differing)
     return tuple(name for name in known if name in names) if set(names) <= set(known) else ()
 
 

@@ -16,6 +16,7 @@ from models.ownership import ENERGY_SHARES, TIME_SHARES, EnergyTerms
 from models.specification import GRID_CONNECTED, STAND_ALONE, DesignRules, Specification
 from models.uncertainty import SPREAD, TOLERANCE, Uncertainty
 from models.waveforms.bridges import BRIDGES
+from optimizer.search_ranges import LARGE_POWER_VA, SearchRange, read_ranges
 from optimizer.study_table import Choice, Key, Kind, Quantity, Reading, Several, SubTable, Text, Whole
 
 OBJECTIVES = (
@@ -32,79 +33,9 @@ DEFAULT_CLASSES = ("silicon IGBT", "superjunction MOSFET", "SiC MOSFET", "GaN HE
 DC_LINKS = ("electrolytic", "film")
 LCL, LC, ONLY_L = "LCL", "LC", "L"
 SERIES_R, PARALLEL_RC = "series resistor", "parallel R-C"
-GRID_RATIO = "grid_inductance_ratio"
 EUROPEAN, CALIFORNIAN, CUSTOM = "european", "californian", "custom"
 RANKINGS = NOMINAL_VALUES, HIGH_VALUES = "nominal", "95 percent"
 """What candidates are ranked by: the models' own values, or those that 95 % of inverters stay below."""
-
-
-@dataclass(frozen=True)
-class SearchRange:
-    """From where to where a quantity is searched.
-
-    Attributes:
-        low, high: least and greatest value, in the unit the range is declared with.
-    """
-
-    low: float
-    high: float
-
-
-@dataclass(frozen=True)
-class RangeEntry:
-    """One quantity of the search, as [search.ranges] knows it.
-
-    Attributes:
-        name: its key.
-        unit: unit of its values; "" where dimensionless.
-        default: the range where the study names none, as a study would write it.
-        hard_bounds: what no study may leave; below and above the models say nothing sensible.
-        meaning: what it is.
-        whole: whether it takes whole numbers only.
-    """
-
-    name: str
-    unit: str
-    default: tuple[str | float, str | float]
-    hard_bounds: tuple[float, float]
-    meaning: str
-    whole: bool = False
-
-    @property
-    def kind(self) -> Kind:
-        """How an end of the range is read."""
-        low, high = self.hard_bounds
-        return Whole(int(low), int(high)) if self.whole else Quantity(self.unit, low, high)
-
-
-# Judgement values for early concept work: where designs of 1..20 kVA are usually found, with room around.
-RANGES = (
-    RangeEntry("switching_frequency", "Hz", ("8 kHz", "200 kHz"), (1e3, 1e6), "carrier frequency of one leg"),
-    RangeEntry("parallel", "", (1, 3), (1, 8), "packages in parallel per switch position", whole=True),
-    RangeEntry("ripple", "", (0.08, 0.8), (0.01, 2.0), "peak-to-peak ripple over rated peak current"),
-    RangeEntry(
-        GRID_RATIO, "", (0.02, 1.0), (1e-3, 10.0), "grid-side over inverter-side inductance, not for LC"
-    ),
-    RangeEntry(
-        "filter_capacitance_share",
-        "",
-        (0.003, 0.08),
-        (1e-4, 0.5),
-        "capacitor reactive power over rated power",
-    ),
-    RangeEntry(
-        "damping",
-        "",
-        (0.05, 1.5),
-        (1e-3, 10.0),
-        "damping resistance over the capacitor's reactance at resonance",
-    ),
-    RangeEntry("sink_resistance", "K/W", ("0.05 K/W", "3 K/W"), (0.005, 20.0), "heatsink to ambient"),
-    RangeEntry("core_size_factor", "", (0.8, 6.0), (0.5, 20.0), "core area product over the least needed"),
-    RangeEntry("flux_use", "", (0.3, 1.0), (0.05, 1.0), "share of the allowed flux density used"),
-    RangeEntry("window_use", "", (0.3, 1.0), (0.05, 1.0), "share of the allowed copper fill used"),
-)
-
 NO_EMISSION_LIMIT = "none"
 SIDES = ("lagging", "leading")
 DEFAULT_LIMITS = {GRID_CONNECTED: "IEEE 1547-2018", STAND_ALONE: "IEC 62040-3 stand-alone output"}
@@ -206,6 +137,7 @@ ENERGY = (
 SEARCH = (
     Key("device_classes", Several(Text()), DEFAULT_CLASSES),
     Key("core_materials", Several(Text()), ()),
+    Key("core_families", Several(Text()), ()),
     Key("conductors", Several(Text()), ()),
     Key("dc_links", Several(Choice(DC_LINKS)), DC_LINKS),
     Key("cooling", Several(Choice(COOLING)), COOLING[:2]),
@@ -287,9 +219,11 @@ class StudyContent:
 
 def read_content(reading: Reading) -> StudyContent:
     """Return all values of a study file; problems are noted in the reading."""
+    top = reading.table("", TOP)
+    application = reading.table("application", APPLICATION + STAND_ALONE_ONLY + GRID_CONNECTED_ONLY)
     return StudyContent(
-        top=reading.table("", TOP),
-        application=reading.table("application", APPLICATION + STAND_ALONE_ONLY + GRID_CONNECTED_ONLY),
+        top=top,
+        application=application,
         dc_voltage=reading.table("application.dc_voltage", DC_VOLTAGE),
         short_circuit_ratio=reading.table("application.short_circuit_ratio", SHORT_CIRCUIT),
         weighting=reading.table("weighting", WEIGHTING + CUSTOM_WEIGHTING),
@@ -299,7 +233,7 @@ def read_content(reading: Reading) -> StudyContent:
         at_most=_stated(reading.table("objectives.at_most", AT_MOST)),
         energy=reading.table("energy", ENERGY),
         search=reading.table("search", SEARCH),
-        ranges=_read_ranges(reading),
+        ranges=read_ranges(reading, application.get("apparent_power", LARGE_POWER_VA)),
         rules=reading.table("rules", RULES),
         uncertainty=reading.table("uncertainty", UNCERTAINTY),
         catalog=reading.table("catalog", CATALOG),
@@ -308,16 +242,3 @@ def read_content(reading: Reading) -> StudyContent:
 
 def _stated(values: Mapping[str, Any]) -> dict[str, float]:
     return {name: value for name, value in values.items() if value is not None}
-
-
-def _read_ranges(reading: Reading) -> Mapping[str, SearchRange]:
-    place = "search.ranges"
-    reading.table(place, tuple(Key(entry.name, SubTable(), None) for entry in RANGES))
-    ranges = {}
-    for entry in RANGES:
-        low, high = (entry.kind.read(end) for end in entry.default)
-        keys = (Key("min", entry.kind, low), Key("max", entry.kind, high))
-        ends = reading.table(f"{place}.{entry.name}", keys)
-        if len(ends) == 2:
-            ranges[entry.name] = SearchRange(ends["min"], ends["max"])
-    return ranges

@@ -10,9 +10,9 @@ from typing import Any
 from models.inverter import Inverter
 from models.specification import STAND_ALONE, DesignRules
 from optimizer.quantity import written
+from optimizer.search_ranges import RANGES, SearchRange
 from optimizer.space import SearchSpace
 from optimizer.study import Study
-from optimizer.study_schema import RANGES, SearchRange
 
 LITRE = 1e-3
 LOW, HIGH = "min", "max"

@@ -8,6 +8,7 @@ such parts turns `bridge_losses` into a meter of currents, so that the tests loo
 from __future__ import annotations
 
 from dataclasses import dataclass
+from functools import cache
 from types import SimpleNamespace
 from typing import Any
 
@@ -64,6 +65,12 @@ METERS: dict[str, dict[str, float | bool]] = {
 }
 
 
+@cache
+def tables_of(bridge: str, displacement: float) -> WaveformTables:
+    """Tables of a bridge, kept for all tests."""
+    return waveform_tables(bridge, (), displacement)
+
+
 def packages(bridge: Bridge, part: Any, parallel: Array, area: Array) -> tuple[Packages, ...]:
     """Packages of the same part in every role of a bridge's legs."""
     blocking, roles = blocking_shares(bridge.leg_type), list(ROLES[bridge.leg_type].values())
@@ -94,7 +101,8 @@ class At:
 
     @property
     def tables(self) -> WaveformTables:
-        return waveform_tables(self.bridge)
+        followed = self.lag if self.entry.scheme(self.scheme).follows_current else 0.0
+        return tables_of(self.bridge, followed)
 
     def state(self, count: int = 1) -> WaveformState:
         """Waveform state of `count` equal candidates at one operating point."""

@@ -143,12 +143,16 @@ class CoreMaterial:
     origin: Mapping[str, str] = field(default_factory=dict, compare=False, repr=False)
 
 
+THREE_LIMB = "three-limb"  # one core for three phases; listed with a phase's share of it
+TAPE_FAMILIES = ("cut C", THREE_LIMB)
+
+
 @dataclass(frozen=True)
 class CoreShape:
     """A core set of one size (pair of halves, ring, or cut core), bare of bobbin."""
 
     name: str
-    family: str  # "E", "ETD", "PQ", "RM", "U", "toroid powder", "toroid ferrite" or "cut C"
+    family: str  # "E", "ETD", "PQ", "RM", "U", "toroid powder", "toroid ferrite", "cut C" or "three-limb"
     area_m2: float  # effective area A_e [m2]
     path_length_m: float  # effective length l_e [m]
     core_volume_m3: float  # effective volume V_e [m3]
@@ -160,6 +164,16 @@ class CoreShape:
     stack_depth_m: float  # depth by which one more stacked core grows; 0 where not practised [m]
     stackable: bool
     origin: Mapping[str, str] = field(default_factory=dict, compare=False, repr=False)
+
+    @property
+    def in_hole(self) -> bool:
+        """Whether the winding goes through the hole of a ring, without a coil former."""
+        return self.family.startswith("toroid")
+
+    @property
+    def wound_of_tape(self) -> bool:
+        """Whether the core is wound of tape or strip, whose width is the stack depth."""
+        return self.family in TAPE_FAMILIES
 
 
 @dataclass(frozen=True)

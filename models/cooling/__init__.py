@@ -9,7 +9,9 @@ from models.cooling.fan import Fan
 from models.cooling.forced_curve import sink_curve_forced
 from models.cooling.natural_curve import sink_curve_natural
 from models.cooling.plate_fin import PlateFin, forced_conductance, natural_conductance, pressure_drop
+from models.cooling.several_sinks import shared_by_several
 from models.cooling.sink_curve import SinkCurve, SinkPoint
+from models.cooling.sink_kinds import sink_kinds
 
 __all__ = [
     "Air",
@@ -28,7 +30,9 @@ __all__ = [
     "natural_conductance",
     "pressure_at_altitude",
     "pressure_drop",
+    "shared_by_several",
     "sink_curve_cold_plate",
     "sink_curve_forced",
     "sink_curve_natural",
+    "sink_kinds",
 ]

@@ -24,6 +24,7 @@ METAL_SHARE = 0.85
 ALUMINIUM_DENSITY = 2700.0
 PRICE_PER_KG = 30.0
 LEAST_AREA = 1.6e-3
+LEAST_RESISTANCE = 0.001  # plates side by side on one manifold [K/W]
 AUXILIARY_SHARE = 0.03
 
 
@@ -114,7 +115,7 @@ def sink_curve_cold_plate(
     Raises:
         ValueError: specific resistance not above zero.
     """
-    grid = resistance_grid()
+    grid = resistance_grid(LEAST_RESISTANCE)
     area = np.maximum(specific_resistance / grid, least_area)
     plates = cold_plate(np.asarray(specific_resistance), area, thickness=thickness, price_per_kg=price_per_kg)
     zeros = np.zeros(len(grid))
@@ -130,6 +131,7 @@ def sink_curve_cold_plate(
         geometry=None,
         fan_count=np.zeros(len(grid), dtype=np.int64),
         fan_index=np.full(len(grid), NO_FAN, dtype=np.int64),
+        sink_count=np.ones(len(grid), dtype=np.int64),
         reference_rise_k=1.0,
         rise_exponent=0.0,
         rise_deviation=0.0,

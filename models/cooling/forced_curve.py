@@ -236,6 +236,7 @@ def sink_curve_forced(
         geometry=best,
         fan_count=fan_count.astype(np.int64),
         fan_index=which.astype(np.int64),
+        sink_count=np.ones(len(rows), dtype=np.int64),
         reference_rise_k=rise_k,
         rise_exponent=0.0,
         rise_deviation=0.0,

@@ -137,6 +137,7 @@ def sink_curve_natural(
         geometry=best,
         fan_count=np.zeros(len(rows), dtype=np.int64),
         fan_index=np.full(len(rows), NO_FAN, dtype=np.int64),
+        sink_count=np.ones(len(rows), dtype=np.int64),
         reference_rise_k=rise_k,
         rise_exponent=exponent,
         rise_deviation=deviation,

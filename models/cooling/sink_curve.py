@@ -33,6 +33,7 @@ class SinkPoint:
         base_area_m2: mounting area [m2].
         fan_power_w: electrical, all fans [W].
         price: in the study's currency [-].
+        count: equal sinks that share the heat [-].
         available: False where the resistance lies outside the curve; the other values are then those of the
             nearer end.
     """
@@ -42,6 +43,7 @@ class SinkPoint:
     base_area_m2: Array
     fan_power_w: Array
     price: Array
+    count: Ints
     available: NDArray[np.bool_]
 
 
@@ -59,8 +61,10 @@ class SinkCurve:
         price: in the study's currency [-].
         air_flow_m3_per_s: of all fans together, 0 without [m3/s].
         geometry: the sinks; None for a cold plate.
-        fan_count: fans side by side, 0 without [-].
+        fan_count: of all fans, 0 without [-].
         fan_index: which of the given fans, -1 without [-].
+        sink_count: equal sinks that share the heat; the other columns are those of all of them, base
+            thickness and geometry those of one [-].
         reference_rise_k: base over ambient for which the resistances hold [K].
         rise_exponent: m of R = R_ref (rise/reference)^-m, 0 for forced air [-].
         rise_deviation: greatest relative departure of the model from that power law over 10..60 K [-].
@@ -77,6 +81,7 @@ class SinkCurve:
     geometry: PlateFin | None
     fan_count: Ints
     fan_index: Ints
+    sink_count: Ints
     reference_rise_k: float
     rise_exponent: float
     rise_deviation: float
@@ -123,6 +128,7 @@ class SinkCurve:
             base_area_m2=values[..., 2],
             price=values[..., 3],
             fan_power_w=rows[..., 4],
+            count=self.sink_count[self._built(cell, fraction)],
             available=inside,
         )
 
@@ -136,7 +142,11 @@ class SinkCurve:
             Index into the curve's arrays; the nearer end outside the curve [-].
         """
         cell, fraction, _ = self._position(np.asarray(resistance, dtype=np.float64))
-        return cell + (fraction > 1e-6)
+        return self._built(cell, fraction)
+
+    @staticmethod
+    def _built(cell: Ints, fraction: Array) -> Ints:
+        return np.asarray(cell + (fraction > 1e-6))
 
     def rise(self, power: Array, resistance: Array) -> Array:
         """Rise of the base over ambient, from rise = P R (rise/reference)^-m in closed form.

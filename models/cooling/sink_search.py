@@ -16,7 +16,7 @@ Ints = NDArray[np.int64]
 
 LEAST_RESISTANCE = 0.01
 GREATEST_RESISTANCE = 5.0
-GRID_POINTS = 217
+POINTS_A_DECADE = 80
 # A judgement: a sink at most this much larger is taken where it is cheaper.
 INDIFFERENCE = 0.03
 
@@ -78,13 +78,17 @@ def with_heat_entry(
     return film + base_resistance(sinks, film, np.asarray(conductivity), source, devices)
 
 
-def resistance_grid() -> Array:
-    """Thermal resistances of every curve, 5 down to 0.01 K/W, 80 a decade.
+def resistance_grid(least: float = LEAST_RESISTANCE) -> Array:
+    """Thermal resistances of every curve, 5 K/W down, POINTS_A_DECADE of them.
+
+    Args:
+        least: [K/W].
 
     Returns:
         Falling resistances [K/W].
     """
-    return np.geomspace(GREATEST_RESISTANCE, LEAST_RESISTANCE, GRID_POINTS)
+    points = round(POINTS_A_DECADE * float(np.log10(GREATEST_RESISTANCE / least))) + 1
+    return np.geomspace(GREATEST_RESISTANCE, least, points)
 
 
 def least_in_cells(values: Array, cell: Ints, cells: int) -> tuple[Array, Ints]:

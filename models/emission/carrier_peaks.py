@@ -38,14 +38,15 @@ class CarrierPeaks:
 
 
 @lru_cache(maxsize=8)
-def carrier_peaks(bridge_name: str) -> CarrierPeaks:
+def carrier_peaks(bridge_name: str, displacement: float = 0.0) -> CarrierPeaks:
     """Tabulate a bridge's carrier groups on the grid of `waveforms.tables`.
 
     Args:
         bridge_name: a key of BRIDGES.
+        displacement: lag of the current that schemes follow which do so [rad].
     """
     bridge = BRIDGES[bridge_name]
-    rows = [_scheme(bridge, scheme) for scheme in bridge.modulations]
+    rows = [_scheme(bridge, scheme.at(displacement)) for scheme in bridge.modulations]
     differential, common = (np.stack([row[part] for row in rows]) for part in (0, 1))
     return CarrierPeaks(differential, common)
 

@@ -102,7 +102,7 @@ class EmissionModel:
     @cached_property
     def peaks(self) -> CarrierPeaks:
         """Carrier groups of the bridge."""
-        return carrier_peaks(self.bridge.name)
+        return carrier_peaks(self.bridge.name, self.specification.displacement)
 
     @property
     def lines(self) -> int:

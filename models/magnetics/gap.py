@@ -7,15 +7,16 @@ from numpy.typing import NDArray
 from scipy.constants import mu_0
 
 Array = NDArray[np.float64]
+GAP_STEPS = 5
 
 
 def fringing_factor(gap: Array, area: Array, window_breadth: Array) -> Array:
     """Gap permeance over that of the ideal gap, F = 1 + (l_g/sqrt A) ln(2 G/l_g) [-].
 
     Args:
-        gap: length of the gap [m].
+        gap: length of the gap, of one section where it is split [m].
         area: core area [m2].
-        window_breadth: breadth G of the winding beside the gap [m].
+        window_breadth: breadth G of the winding beside the gap, of a section its share of it [m].
 
     Source: McLyman, Transformer and Inductor Design Handbook, ch. 8.
     """
@@ -24,31 +25,51 @@ def fringing_factor(gap: Array, area: Array, window_breadth: Array) -> Array:
 
 
 def gapped_inductance(
-    turns: Array, gap: Array, area: Array, path: Array, permeability: Array, breadth: Array
+    turns: Array, gap: Array, area: Array, path: Array, permeability: Array, breadth: Array, sections: Array
 ) -> Array:
-    """Inductance of a core with an air gap of one limb, with fringing [H].
+    """Inductance of a core with an air gap in equal sections, with the fringing of each [H].
 
     Args:
         turns: [-].
-        gap: [m]; area [m2]; path: effective length [m]; permeability: of the ungapped set [-]; breadth:
-            window [m].
+        gap: of all sections together [m]; area [m2]; path: effective length [m]; permeability: of the
+            ungapped set [-].
+        breadth: of the windings on all legs together [m].
+        sections: number of sections on all legs together, evenly along the windings [-].
     """
-    gap_reluctance = gap / (mu_0 * area * fringing_factor(gap, area, breadth))
+    fringing = fringing_factor(gap / sections, area, breadth / sections)
+    gap_reluctance = gap / (mu_0 * area * fringing)
     return turns**2 / (gap_reluctance + path / (mu_0 * permeability * area))
 
 
 def gap_for_inductance(
-    turns: Array, inductance: Array, area: Array, path: Array, permeability: Array, breadth: Array
-) -> Array:
-    """Air gap that gives the inductance, fringing included; negative where even no gap gives too little [m].
+    turns: Array,
+    inductance: Array,
+    area: Array,
+    path: Array,
+    permeability: Array,
+    breadth: Array,
+    legs: Array,
+    largest_section: float,
+) -> tuple[Array, Array]:
+    """Air gap that gives the inductance, fringing included, and the sections it is split into.
 
-    Arguments as in `gapped_inductance`; solved by fixed-point steps of l_g = F(l_g) l_ideal.
+    Args:
+        turns, inductance, area, path, permeability, breadth: as in `gapped_inductance`.
+        legs: that have a gap each at least [-].
+        largest_section: greatest length of one section [m].
+
+    Returns:
+        Gap of all sections together, negative where even no gap gives too little [m], and their number [-].
+        Solved by fixed-point steps of l_g = F(l_g) l_ideal, in which the number never falls.
     """
     ideal = mu_0 * area * turns**2 / inductance - path / permeability
-    gap = np.maximum(ideal, 0.0)
-    for _ in range(5):
-        gap = np.minimum(np.maximum(ideal, 0.0) * fringing_factor(gap, area, breadth), breadth)
-    return np.where(ideal >= 0.0, gap, ideal)
+    start = np.maximum(ideal, 0.0)
+    gap, per_leg = start, np.ones_like(ideal)
+    for _ in range(GAP_STEPS):
+        per_leg = np.maximum(per_leg, np.ceil(gap / (legs * largest_section) - 1e-9))
+        sections = per_leg * legs
+        gap = np.minimum(start * fringing_factor(gap / sections, area, breadth / sections), breadth)
+    return np.where(ideal >= 0.0, gap, ideal), per_leg * legs
 
 
 def powder_permeability_share(field: Array, half_field: Array, exponent: Array) -> Array:

@@ -23,6 +23,24 @@ def skin_depth(frequency_hz: Array, resistivity: Array) -> Array:
     return np.sqrt(resistivity / (np.pi * mu_0 * frequency_hz))
 
 
+def skin_and_proximity(penetration: Array) -> tuple[Array, Array]:
+    """Dowell's two functions of layer thickness over skin depth, thickness included [-].
+
+    Args:
+        penetration: layer thickness over skin depth [-].
+
+    Returns:
+        Depth (sinh 2x + sin 2x)/(cosh 2x - cos 2x), the layer's own resistance over dc, and depth
+        (sinh x - sin x)/(cosh x + cos x), a third of the loss in a field that the whole layer lies in.
+    """
+    depth = np.clip(penetration, 1e-3, 40.0)
+    grown = np.exp(depth)
+    sinh, cosh = 0.5 * (grown - 1.0 / grown), 0.5 * (grown + 1.0 / grown)
+    sine, cosine = np.sin(depth), np.cos(depth)
+    skin = (sinh * cosh + sine * cosine) / (sinh**2 + sine**2)
+    return depth * skin, depth * (sinh - sine) / (cosh + cosine)
+
+
 def dowell_ratio(penetration: Array, layers: Array) -> Array:
     """Ac over dc resistance of a winding portion whose mmf rises from zero, layer by layer.
 
@@ -35,11 +53,8 @@ def dowell_ratio(penetration: Array, layers: Array) -> Array:
 
     Source: Dowell (1966); porosity after Ferreira (1994).
     """
-    depth = np.clip(penetration, 1e-3, 40.0)
-    double = 2.0 * depth
-    skin = (np.sinh(double) + np.sin(double)) / (np.cosh(double) - np.cos(double))
-    near = (np.sinh(depth) - np.sin(depth)) / (np.cosh(depth) + np.cos(depth))
-    return depth * (skin + 2.0 / 3.0 * (np.square(layers) - 1.0) * near)
+    skin, near = skin_and_proximity(penetration)
+    return skin + 2.0 / 3.0 * (np.square(layers) - 1.0) * near
 
 
 def round_wire_skin_ratio(diameter_over_skin_depth: Array) -> Array:
@@ -77,29 +92,36 @@ def litz_ratio(
     return 1.0 + np.square(field) * strand_diameter**6 / 768.0
 
 
+def wire_porosity(wires: Array, layers: Array, diameter: Array, breadth: Array) -> tuple[Array, Array]:
+    """Round wires as sheets: side d sqrt(pi)/2 of the square of equal area [m], and its share of the breadth.
+
+    Args:
+        wires: turns of the winding portion times parallel wires [-].
+        layers: in which they lie [-].
+        diameter: bare [m].
+        breadth: of the winding [m].
+
+    Source: Dowell (1966).
+    """
+    side = 0.5 * np.sqrt(np.pi) * diameter
+    return side, np.minimum(side * wires / (layers * breadth), 1.0)
+
+
 def wire_ratio(
     frequency_hz: Array,
-    strands: Array,
-    turns: Array,
+    wires: Array,
+    layers: Array,
     diameter: Array,
-    outer_factor: Array,
     breadth: Array,
     resistivity: Array,
 ) -> Array:
     """Ac over dc resistance of a winding of (parallel) solid round wires by Dowell's method [-].
 
-    A wire of diameter d counts as a square one of side d sqrt(pi)/2; the porosity is the copper's share of
-    the breadth.
-
     Args:
-        frequency_hz, strands, turns, breadth, resistivity: as in `litz_ratio`.
-        diameter: bare wire diameter [m].
-        outer_factor: outer over bare diameter [-].
+        frequency_hz, breadth, resistivity: as in `litz_ratio`.
+        wires, layers, diameter: as in `wire_porosity`.
     """
-    per_layer = np.maximum(breadth / (diameter * outer_factor), 1.0)
-    layers = np.maximum(strands * turns / per_layer, 1.0)
-    side = 0.5 * np.sqrt(np.pi) * diameter
-    porosity = np.minimum(side * np.minimum(per_layer, strands * turns) / breadth, 1.0)
+    side, porosity = wire_porosity(wires, layers, diameter, breadth)
     return dowell_ratio(side / skin_depth(frequency_hz, resistivity) * np.sqrt(porosity), layers)
 
 

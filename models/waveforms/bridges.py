@@ -15,6 +15,7 @@ from __future__ import annotations
 
 from collections.abc import Callable
 from dataclasses import dataclass, replace
+from functools import partial
 
 import numpy as np
 from numpy.typing import NDArray
@@ -47,6 +48,12 @@ class Modulation:
     switching_legs: tuple[int, ...]
     follows_current: bool = False
 
+    def at(self, displacement: float) -> Modulation:
+        """The scheme for a current that lags by a displacement angle [rad]."""
+        if not self.follows_current:
+            return self
+        return replace(self, references=partial(self.references, displacement=displacement))
+
 
 @dataclass(frozen=True)
 class Bridge:
@@ -65,8 +72,7 @@ class Bridge:
             [-].
         leg_type: a key of `leg_positions.LEG_POSITIONS`, or "" where the waveforms do not depend on it.
         slow_order: lowest multiple of the line frequency in the dc-link current, 0 where there is none [-].
-        further: schemes that only `line_period` evaluates: line-switched ones, and those that follow the
-            current.
+        further: line-switched schemes, which only `line_period` evaluates.
     """
 
     name: str
@@ -135,14 +141,17 @@ def _clamped_at_voltage_peak(angle: Array, index: Array) -> Array:
 
 def _clamped_at_current_peak(angle: Array, index: Array, displacement: float = 0.0) -> Array:
     """The clamp follows the current's peak as far as 30 degrees from the voltage's, where its phase still
-    leads.
+    leads; a current that brakes peaks against the voltage.
     """
+    behind = displacement - np.pi * np.round(displacement / np.pi)
     angle, index = np.broadcast_arrays(angle, index)
     sines = _three_sines(angle, index)
-    order = _three_sines(angle - np.clip(displacement, -np.pi / 6.0, np.pi / 6.0), np.ones_like(index))
+    order = _three_sines(angle - np.clip(behind, -np.pi / 6.0, np.pi / 6.0), np.ones_like(index))
     chosen = np.abs(order).argmax(-1)[..., None]
     rail = np.sign(np.take_along_axis(order, chosen, -1))
-    return sines + rail - np.take_along_axis(sines, chosen, -1)
+    references = sines + (rail - np.take_along_axis(sines, chosen, -1))
+    np.put_along_axis(references, chosen, rail, -1)  # free of rounding: a clamped leg does not switch
+    return references
 
 
 def _polarity_of_sine(angle: Array, index: Array) -> Array:
@@ -199,8 +208,6 @@ SIX_SWITCH_BRIDGE = Bridge(
             (1, 1, 1),
             (1, 1, 1),
         ),
-    ),
-    further=(
         Modulation(
             "discontinuous following the current",
             INJECTION_LIMIT,
@@ -209,8 +216,8 @@ SIX_SWITCH_BRIDGE = Bridge(
             (1, 1, 1),
             follows_current=True,
         ),
-        Modulation("six-step", SQUARE_INDEX, _polarity_of_three_sines, (1, 1, 1), (0, 0, 0)),
     ),
+    further=(Modulation("six-step", SQUARE_INDEX, _polarity_of_three_sines, (1, 1, 1), (0, 0, 0)),),
 )
 THREE_LEVEL_HALF_BRIDGE = Bridge(
     name="single-phase three-level half bridge",

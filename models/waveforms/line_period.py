@@ -116,9 +116,8 @@ class LinePeriod:
 
     def _references(self, angle: Array) -> Array:
         """References of all legs, legs on the last axis [-]."""
-        follows = (self.displacement,) if self.scheme.follows_current else ()
         index = np.full(np.shape(angle), self.modulation_index)
-        return self.scheme.references(np.asarray(angle), index, *follows)
+        return self.scheme.at(self.displacement).references(np.asarray(angle), index)
 
     @cached_property
     def _jumps(self) -> Array:

@@ -14,6 +14,7 @@ import numpy as np
 from numpy.typing import NDArray
 
 from models.waveforms.bridges import Bridge, Modulation
+from models.waveforms.minor_loops import ClosedLoops, closed_loops
 
 Array = NDArray[np.float64]
 
@@ -129,10 +130,11 @@ class SwitchingPeriod:
         passed = np.clip(instant - self.times[..., :-1], 0.0, self.steps)
         return self.flux[..., 0] + np.sum(self.ripple_voltage * passed, axis=-1)
 
-    def loss_shape(self, alpha: float, beta: float) -> Array:
-        """Integral of |v|^alpha over the period times flux^(beta - alpha), the waveform part of the iGSE [-].
+    @cached_property
+    def loops(self) -> ClosedLoops:
+        """Closed loops of the flux."""
+        return closed_loops(self.flux, self.steps, self.ripple_voltage)
 
-        Source: Venkatachalam, Sullivan, Abdallah, Tacca (2002).
-        """
-        swing = np.maximum(self.peak_to_peak, 1e-9)
-        return np.sum(np.abs(self.ripple_voltage) ** alpha * self.steps, axis=-1) * swing ** (beta - alpha)
+    def loss_shape(self, alpha: float, beta: float) -> Array:
+        """Waveform part of the iGSE with minor loops split off, see `ClosedLoops.loss_shape` [-]."""
+        return self.loops.loss_shape(alpha, beta)

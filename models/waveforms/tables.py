@@ -26,6 +26,11 @@ PEAK_ANGLES = 361  # angles over half a line period at which the greatest ripple
 ANGLE_CELLS = 18  # a multiple of 6, so that 30 degree sectors end at cell bounds
 FINE = 6  # samples per cell for means and maxima
 SIDEBAND_COUNT = 24
+GROUPS_BEYOND = (
+    11.0  # multiple at which all groups beyond the listed ones count together: mean of m^2 weighted
+)
+# by V^2/m^2 of voltages that fall as 1/m. Where the winding loss goes with frequency squared it drops out.
+GROUP_MULTIPLES = np.array([*range(1, CARRIER_GROUPS + 1), GROUPS_BEYOND], dtype=float)
 
 
 @dataclass(frozen=True)
@@ -52,7 +57,8 @@ class WaveformTables:
         sideband_carrier, sideband_line: (s, k) multiples m and n [-].
         sideband_listed: (s, k) false for the rest lines of carrier groups [-].
         sideband_amplitude: (s, i, k) peak of the filter voltage [V_dc].
-        group_ripple: (s, i, m - 1) mean square ripple current of each carrier group [(V_dc/(L f_s))^2].
+        group_ripple: (s, i, g) mean square ripple current of the carrier groups of GROUP_MULTIPLES [(V_dc/(L
+            f_s))^2].
         main_carrier: (s,) carrier multiple that carries most of the ripple [-].
         core_loss_shape: (s, i, exponent pair) mean iGSE shape integral for `exponents` [-].
         exponents: the (alpha, beta) pairs.
@@ -113,18 +119,21 @@ class WaveformTables:
 
 
 @lru_cache(maxsize=8)
-def waveform_tables(bridge_name: str, exponents: tuple[tuple[float, float], ...] = ()) -> WaveformTables:
+def waveform_tables(
+    bridge_name: str, exponents: tuple[tuple[float, float], ...] = (), displacement: float = 0.0
+) -> WaveformTables:
     """Build the tables of a bridge for the given core-loss exponent pairs.
 
     Args:
         bridge_name: a key of BRIDGES.
         exponents: Steinmetz (alpha, beta) pairs to prepare [-].
+        displacement: lag of the current that schemes follow which do so [rad].
 
     Raises:
         KeyError: for an unknown bridge.
     """
     bridge = BRIDGES[bridge_name]
-    rows = [_scheme_rows(bridge, scheme, exponents) for scheme in bridge.modulations]
+    rows = [_scheme_rows(bridge, scheme.at(displacement), exponents) for scheme in bridge.modulations]
     stacked = {key: np.stack([row[key] for row in rows]) for key in rows[0]}
     angle = np.pi * (np.arange(ANGLE_CELLS) + 0.5) / ANGLE_CELLS
     limits = np.array([scheme.linear_limit for scheme in bridge.modulations])
@@ -145,8 +154,8 @@ def _scheme_rows(
     spectrum = sidebands(bridge, scheme, usable, period.voltage_mean_square.mean(-1), SIDEBAND_COUNT)
     slow, fast = rail_moments(bridge, scheme, usable)
     constant, slope = _leg_references(bridge, scheme)
-    groups = np.arange(1, CARRIER_GROUPS + 1)
-    group_ripple = spectrum.group_mean_square / (2.0 * np.pi * groups) ** 2
+    beyond = 0.5 * spectrum.amplitude[:, -1:] ** 2
+    group_ripple = np.hstack([spectrum.group_mean_square, beyond]) / (2.0 * np.pi * GROUP_MULTIPLES) ** 2
     return {
         "peak_ripple": _peak_ripple(bridge, scheme, usable),
         "ripple_mean_square": period.mean_square.mean(-1),
@@ -165,7 +174,7 @@ def _scheme_rows(
         "sideband_listed": spectrum.listed,
         "sideband_amplitude": spectrum.amplitude,
         "group_ripple": group_ripple,
-        "main_carrier": np.array(float(groups[np.argmax(group_ripple.mean(0))])),
+        "main_carrier": np.array(GROUP_MULTIPLES[np.argmax(group_ripple.mean(0))]),
         "core_loss_shape": np.stack(shapes, axis=-1) if shapes else np.zeros((INDEX_POINTS, 0)),
     }
 

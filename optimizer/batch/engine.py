@@ -81,7 +81,7 @@ class ClusterEngine:
         from distributed import as_completed as completed
 
         futures = {self.client.submit(search_task, task, pure=False, retries=RETRIES): task for task in tasks}
-        for future in completed(list(futures)):
+        for future in completed(list(futures), loop=self.client.loop):
             task = futures.pop(future)
             yield task, future.result()
             future.release()

@@ -38,7 +38,10 @@ def front_picture(study: Study, front: Front, evaluated: pd.DataFrame | None = N
         alt.vconcat(*envelopes, spacing=60, bounds="flush"),
         spacing=60,
         bounds="flush",
-    ).properties(config=configuration() | {"font": PICTURE_FONT}, padding=12)
+    ).properties(
+        config=configuration() | {"font": PICTURE_FONT},
+        padding={"left": 12, "top": 12, "bottom": 12, "right": 48},
+    )
     spec = chart.to_dict() | {"datasets": found.datasets()}
     return vl_convert.vegalite_to_png(spec, scale=PIXELS_PER_POINT)
 

@@ -15,7 +15,7 @@ from models.designs import Designs
 from models.evaluation import Evaluation
 from models.magnetics.build import Build
 from models.magnetics.core_loss import igse_factor, steinmetz_loss
-from models.magnetics.inductor import InductorDuty, inductor
+from models.magnetics.inductor import InductorDuty, InductorMaking, inductor
 
 sys.path.insert(0, str(Path(__file__).parent / "waveforms"))
 from closed_loops import split_loss
@@ -30,9 +30,9 @@ def seen(spaces: Spaces, draw: Draw, monkeypatch: pytest.MonkeyPatch) -> Seen:
     """Random candidates, their evaluation, and build and duty of either inductor, bridge side first."""
     calls: list[tuple[Build, InductorDuty]] = []
 
-    def recording(catalog: Any, built: Build, duty: InductorDuty, labour: float) -> Any:
+    def recording(catalog: Any, built: Build, duty: InductorDuty, making: InductorMaking) -> Any:
         calls.append((built, duty))
-        return inductor(catalog, built, duty, labour)
+        return inductor(catalog, built, duty, making)
 
     monkeypatch.setattr(filter_inductors, "inductor", recording)
     designs = draw(spaces[SPACE], 40, 12)
@@ -40,11 +40,13 @@ def seen(spaces: Spaces, draw: Draw, monkeypatch: pytest.MonkeyPatch) -> Seen:
 
 
 def test_bridge_side_ripple_by_carrier_groups(seen: Seen, spaces: Spaces) -> None:
-    """Groups stand at multiples of the switching frequency and together have the ripple's mean square."""
+    """Groups stand at multiples of the switching frequency, those beyond the sixth together, and have the
+    ripple's mean square.
+    """
     designs, found, calls = seen
     _, duty = calls[0]
     multiples = duty.group_frequency / designs.switching_frequency_hz[:, None]
-    assert multiples == pytest.approx(np.broadcast_to(np.arange(1.0, 7.0), multiples.shape))
+    assert multiples == pytest.approx(np.broadcast_to([*np.arange(1.0, 7.0), 11.0], multiples.shape))
     inverter = spaces[SPACE].inverter
     names = [scheme.name for scheme in inverter.bridge.modulations]
     spec = inverter.specification

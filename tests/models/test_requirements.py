@@ -52,6 +52,7 @@ def test_every_requirement_is_violated_by_some_candidate_and_met_by_another(
         "filter resonance over line frequency", "grid-side inductor gap", "inverter-side inductor gap",
         "filter reactance", "inverter-side inductor flux density", "grid-side inductor flux density",
         "inverter-side inductor window fill", "grid-side inductor window fill",
+        "inverter-side inductor layers", "grid-side inductor layers",
         "switching frequency over the device's greatest", "dc-link life",
     }  # fmt: skip
 
@@ -84,8 +85,15 @@ def test_hot_ambient_is_said_by_the_temperatures(rooftop: SearchSpace, draw: Dra
     cool, hot = (
         Inverter(replace(ROOFTOP, ambient_c=ambient), catalog).evaluate(designs) for ambient in (20.0, 60.0)
     )
-    for name in ("switch junction temperature", "heatsink temperature", "inverter-side inductor temperature"):
-        assert np.all(margin(hot, name) < margin(cool, name)), name
+    for name in (
+        "switch junction temperature",
+        "heatsink temperature",
+        "inverter-side inductor winding temperature",
+        "inverter-side inductor core temperature",
+    ):
+        near = margin(cool, name) > -2.0  # what is hopeless at either ambient need not settle
+        assert near.mean() > 0.5
+        assert np.all((margin(hot, name) < margin(cool, name))[near]), name
 
 
 def test_runaway_is_infeasible_with_its_reason(spaces: Spaces, draw: Draw) -> None:

@@ -6,7 +6,7 @@ import tomllib
 import pytest
 
 from models.specification import DesignRules
-from optimizer import study_schema
+from optimizer import search_ranges, study_schema
 from optimizer.starter import energy_block, ranges_block, rules_block, starter_text
 from optimizer.study import Study
 
@@ -58,7 +58,7 @@ def test_uncommenting_the_blocks_changes_nothing(read):
 
 
 def test_the_blocks_say_every_range_and_rule():
-    assert set(tomllib.loads(uncommented(ranges_block()))) == {entry.name for entry in study_schema.RANGES}
+    assert set(tomllib.loads(uncommented(ranges_block()))) == {entry.name for entry in search_ranges.RANGES}
     assert set(tomllib.loads(uncommented(rules_block()))) == set(DesignRules.__dataclass_fields__)
 
 

@@ -10,8 +10,9 @@ from pathlib import Path
 import pytest
 
 from models.specification import CALIFORNIAN_WEIGHTS, EUROPEAN_WEIGHTS, DesignRules
+from optimizer.search_ranges import RANGES, SearchRange
 from optimizer.study import Study
-from optimizer.study_schema import DEFAULT_CLASSES, RANGES, SearchRange
+from optimizer.study_schema import DEFAULT_CLASSES
 
 STUDIES = Path(__file__).parents[2] / "studies"
 SHORTEST = """
@@ -205,3 +206,33 @@ def test_reading_takes_less_than_0_6_s_with_all_imports():
         for _ in range(3)
     ]
     assert min(map(float, runs)) < 0.6
+
+
+def test_clamping_that_follows_the_current_is_searched_where_it_differs(read):
+    three = SHORTEST.replace("phases = 1", "phases = 3").replace(
+        "single-phase full", "three-phase six-switch"
+    )
+    three = three.replace('"360 V"', '"700 V"').replace('"400 V"', '"750 V"').replace('"450 V"', '"800 V"')
+    following = "discontinuous following the current"
+    assert following not in read(three).search.modulations
+    assert following in read(three.replace("phases", "power_factor = 0.9\nphases")).search.modulations
+    assert read(three + f'modulations = ["{following}"]').search.modulations == (following,)
+
+
+@pytest.mark.parametrize("power", [1e3, 20e3, 250e3, 5e6])
+def test_default_ranges_go_with_the_power_of_large_inverters(power):
+    for entry in RANGES:
+        low, high = entry.default_at(power)
+        assert entry.hard_bounds[0] <= low < high <= entry.hard_bounds[1]
+        small = tuple(entry.kind.read(end) for end in entry.default)
+        assert power > 20e3 or (low, high) == small
+    sink = next(entry for entry in RANGES if entry.name == "sink_resistance")
+    # heat goes with the power, so that the same rise takes a resistance that goes with its inverse
+    assert sink.default_at(200e3) == pytest.approx((0.005, 0.3))
+
+
+def test_a_stated_range_stands_whatever_the_power(read):
+    text = SHORTEST.replace('"5 kVA"', '"250 kVA"') + "[search.ranges]\nparallel = { max = 2 }\n"
+    ranges = read(text).search.ranges
+    assert ranges["parallel"] == SearchRange(1, 2)
+    assert ranges["sink_resistance"].high < 0.5

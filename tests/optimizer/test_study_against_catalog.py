@@ -125,3 +125,16 @@ def test_limits_made_for_something_else(catalog, name, changed, words):
 def test_limits_that_fit(catalog):
     for name in ("rooftop_5kw", "depot_10kw_three_phase", "backup_3kva"):
         Study.read(STUDIES / f"{name}.toml").check_against(catalog)
+
+
+def test_core_families(catalog):
+    study = Study.read(ROOFTOP)
+
+    def asked(**changes):
+        replace(study, search=replace(study.search, **changes)).check_against(catalog)
+
+    asked(core_families=("toroid powder", "E"))
+    with pytest.raises(InputError, match=r'core_families\[0\]: given "three-limb", expected a name in the'):
+        asked(core_families=("three-limb",))  # for three phases only
+    with pytest.raises(InputError, match="expected a family that search.core_materials are sold in: .*cut C"):
+        asked(core_families=("E",), core_materials=("amorphous tape 25 um",))

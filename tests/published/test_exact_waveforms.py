@@ -9,6 +9,7 @@ from pathlib import Path
 
 import numpy as np
 import pytest
+from probe_device import At
 
 from models.waveforms.leg_positions import NEUTRAL_POINT_CLAMPED, T_TYPE
 from models.waveforms.operating_waveforms import (
@@ -116,6 +117,17 @@ def test_following_the_current_keeps_the_least_switching_loss():
         )
         ratio = float((one.turn_on_sum + one.turn_off_sum) / (other.turn_on_sum + other.turn_off_sum))
         assert ratio == pytest.approx(0.5, abs=0.004)
+
+
+@pytest.mark.parametrize("degrees", [-30.0, -10.0, 20.0, 30.0])
+def test_the_search_finds_the_same_where_it_follows_the_current(degrees):
+    """The factor 0.5 of Hava, Kerkman, Lipo (1999) again, read from the tables."""
+    one, other = (
+        At(SIX, name, 0.9, np.radians(degrees)).read()
+        for name in ("discontinuous following the current", "centred space vector")
+    )
+    assert one["turn_on"] / other["turn_on"] == pytest.approx(0.5, abs=0.004)
+    assert one["turn_off"] / other["turn_off"] == pytest.approx(0.5, abs=0.004)
 
 
 @pytest.mark.parametrize("row", rows("DCL-3P-M0"))

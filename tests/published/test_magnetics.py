@@ -25,6 +25,7 @@ from models.magnetics.winding import (
     skin_depth,
 )
 
+ONE = np.array(1.0)
 GAUGE_RESISTANCE = [name for name in starting("MAG-AWG") if name.endswith("-R")]
 GAUGE_SIZE = [
     name for name in starting("MAG-AWG") if name.endswith(("-A", "-d")) and f"{name[:-2]}-R" in CHECKS
@@ -183,6 +184,7 @@ def test_inductance_factor_of_a_gapped_core(row: dict[str, Any]) -> None:
         np.array(asked["le_mm"] * 1e-3),
         np.array(asked["mu_e_ungapped"]),
         np.array(asked["window_height_mm"] * 1e-3),
+        ONE,
     )
     assert_meets(row, 1e9 * float(found))
 
@@ -192,7 +194,7 @@ def test_inductance_factor_of_an_ungapped_core(row: dict[str, Any]) -> None:
     asked = row["inputs"]
     area, path = np.array(asked["Ae_mm2"] * 1e-6), np.array(asked["le_mm"] * 1e-3)
     found = gapped_inductance(
-        np.array(1.0), np.array(0.0), area, path, np.array(asked["mu_e"]), np.array(0.03)
+        np.array(1.0), np.array(0.0), area, path, np.array(asked["mu_e"]), np.array(0.03), ONE
     )
     assert_meets(row, 1e9 * float(found))
 
@@ -206,7 +208,13 @@ def test_ideal_gap_stores_the_energy_at_the_flux_limit() -> None:
     turns, gap = row["expected"]
     area = asked["Ae_m2"]
     found = gapped_inductance(
-        np.array(turns), np.array(gap * 1e-3), np.array(area), np.array(0.05), np.array(1e12), np.array(1e-9)
+        np.array(turns),
+        np.array(gap * 1e-3),
+        np.array(area),
+        np.array(0.05),
+        np.array(1e12),
+        np.array(1e-9),
+        ONE,
     )
     assert float(found) == pytest.approx(asked["L_H"], rel=row["tolerance"]["rel"])
     assert float(found) * asked["I_peak_A"] / (turns * area) == pytest.approx(

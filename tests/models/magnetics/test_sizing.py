@@ -10,12 +10,19 @@ import pytest
 from models.catalog import Catalog
 from models.magnetics.build import build
 from models.magnetics.gap import gap_for_inductance, powder_inductance
-from models.magnetics.sizing import STACK_LIMIT, CoreLadder, core_ladder, size_inductor
+from models.magnetics.sizing import (
+    STACK_LIMIT,
+    CoreLadder,
+    core_ladder,
+    fitting_families,
+    materials_in,
+    size_inductor,
+)
 
 
 @pytest.fixture(scope="module")
 def ladder(catalog: Catalog) -> CoreLadder:
-    return core_ladder(catalog)
+    return core_ladder(catalog, fitting_families(catalog, 1))
 
 
 def sized(catalog: Catalog, ladder: CoreLadder, material: int, **changed: Any) -> Any:
@@ -28,7 +35,9 @@ def sized(catalog: Catalog, ladder: CoreLadder, material: int, **changed: Any) -
         "window_use": 0.7,
     } | changed
     values = {name: np.array([value]) for name, value in asked.items()}
-    return size_inductor(catalog, ladder, np.array([material]), np.array([0]), **values, saturation_use=0.85)
+    return size_inductor(
+        catalog, ladder, np.array([material]), np.array([0]), **values, saturation_use=0.85, wall=1.5e-3
+    )
 
 
 def kind(catalog: Catalog, name: str) -> list[int]:
@@ -68,7 +77,7 @@ def test_gapped_core_uses_no_more_than_the_flux_asked_for(catalog: Catalog, ladd
     for material in kind(catalog, "gapped"):
         for use in (0.3, 0.8, 1.0):
             chosen = sized(catalog, ladder, material, flux_use=use)
-            found = build(catalog, chosen)
+            found = build(catalog, chosen, 1.5e-3)
             flux = 4e-4 * 30.0 / (found.turns * found.area)
             assert flux <= use * 0.85 * catalog.core_materials[material].saturation_t * (1.0 + 1e-9)
             one_less = 4e-4 * 30.0 / ((found.turns - 1.0) * found.area)
@@ -77,14 +86,16 @@ def test_gapped_core_uses_no_more_than_the_flux_asked_for(catalog: Catalog, ladd
 
 def test_gapped_core_can_have_its_gap(catalog: Catalog, ladder: CoreLadder) -> None:
     for material in kind(catalog, "gapped"):
-        found = build(catalog, sized(catalog, ladder, material))
-        gap = gap_for_inductance(
+        found = build(catalog, sized(catalog, ladder, material), 1.5e-3)
+        gap, _ = gap_for_inductance(
             found.turns,
             np.array([4e-4]),
             found.area,
             found.path,
             found.material.initial_permeability,
-            found.breadth,
+            found.breadth * found.coils,
+            found.coils,
+            2e-3,
         )
         assert gap > 0.0
 
@@ -95,7 +106,7 @@ def test_powder_core_reaches_the_inductance_at_peak_current_where_the_core_is_la
     reached = []
     for material in kind(catalog, "powder"):
         part = catalog.core_materials[material]
-        found = build(catalog, sized(catalog, ladder, material, size_factor=6.0, inductance=1e-4))
+        found = build(catalog, sized(catalog, ladder, material, size_factor=6.0, inductance=1e-4), 1.5e-3)
         core = (part.initial_permeability, part.rolloff_field_a_per_m, part.rolloff_exponent)
         at_peak = powder_inductance(
             found.turns, np.array([30.0]), found.area, found.path, *(np.array([value]) for value in core)
@@ -108,25 +119,29 @@ def test_copper_fills_the_share_of_the_window(catalog: Catalog, ladder: CoreLadd
     foil_free = [i for i, part in enumerate(catalog.conductors) if part.kind == "round"]
     chosen = sized(catalog, ladder, kind(catalog, "gapped")[0], window_use=0.6)
     assert foil_free
-    assert build(catalog, chosen).window_fill == pytest.approx(0.6, rel=0.1)
+    assert build(catalog, chosen, 1.5e-3).window_fill == pytest.approx(0.6, rel=0.1)
 
 
 def test_larger_factor_never_gives_a_smaller_core(catalog: Catalog, ladder: CoreLadder) -> None:
     for material in range(len(catalog.core_materials)):
         boxes = [
-            build(catalog, sized(catalog, ladder, material, size_factor=factor)).box_volume[0]
+            build(catalog, sized(catalog, ladder, material, size_factor=factor), 1.5e-3).box_volume[0]
             for factor in (0.5, 1.0, 2.0, 4.0, 8.0)
         ]
         assert np.all(np.diff(boxes) >= 0.0)
 
 
-def test_material_without_a_shape() -> None:
-    class Part:
-        name, families = "orphan", ("EP",)
+def test_only_families_asked_for_are_on_the_ladder(catalog: Catalog) -> None:
+    toroids = frozenset({"toroid powder"})
+    ladder = core_ladder(catalog, toroids)
+    usable = materials_in(catalog, toroids)
+    assert {catalog.core_materials[index].kind for index in usable} == {"powder"}
+    assert {catalog.core_shapes[shape].family for shape in ladder.shape[usable].ravel()} == toroids
+    ferrite = catalog.core_materials.index("MnZn ferrite 25-200 kHz")
+    assert ferrite not in usable
+    assert ladder.area_product[ferrite].max() == 0.0  # nothing on it carries anything
 
-    class Stub:
-        core_materials = (Part(),)
-        core_shapes = ()
 
-    with pytest.raises(ValueError, match="core material 'orphan': no core shape of the families EP"):
-        core_ladder(Stub())  # type: ignore[arg-type]
+def test_three_limbs_are_for_three_phases(catalog: Catalog) -> None:
+    assert "three-limb" in fitting_families(catalog, 3)
+    assert fitting_families(catalog, 1) == fitting_families(catalog, 3) - {"three-limb"}

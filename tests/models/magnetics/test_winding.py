@@ -121,17 +121,9 @@ def test_foil_is_dowell_with_a_turn_a_layer() -> None:
 @given(st.floats(1e3, 1e6), st.floats(2e-4, 2e-3), st.integers(1, 80), st.integers(1, 6))
 def test_wire_grows_with_frequency(frequency: float, diameter: float, turns: int, strands: int) -> None:
     def ratio(hertz: float) -> float:
-        return float(
-            wire_ratio(
-                np.array(hertz),
-                np.array(float(strands)),
-                np.array(float(turns)),
-                np.array(diameter),
-                np.array(1.1),
-                np.array(0.03),
-                RHO,
-            )
-        )
+        wires, breadth = np.array(float(strands * turns)), np.array(0.03)
+        layers = np.ceil(wires * 1.1 * diameter / breadth)
+        return float(wire_ratio(np.array(hertz), wires, layers, np.array(diameter), breadth, RHO))
 
     assert 1.0 - 1e-9 <= ratio(frequency) <= ratio(1.5 * frequency) + 1e-9
 
@@ -141,13 +133,7 @@ def test_one_layer_of_wire_is_near_an_isolated_one_at_low_frequency() -> None:
     diameter = 1e-3
     frequency = 4e3  # d/delta = 0.85
     found = wire_ratio(
-        np.array(frequency),
-        np.array(1.0),
-        np.array(4.0),
-        np.array(diameter),
-        np.array(1.1),
-        np.array(0.04),
-        RHO,
+        np.array(frequency), np.array(4.0), np.array(1.0), np.array(diameter), np.array(0.04), RHO
     )
     alone = round_wire_skin_ratio(diameter / skin_depth(np.array(frequency), RHO))
     assert float(found) == pytest.approx(float(alone), rel=0.05)

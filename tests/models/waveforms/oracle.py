@@ -14,8 +14,8 @@ Units: V_dc = 1; time is the line angle; current in units of the fundamental's p
 from __future__ import annotations
 
 from collections.abc import Callable
-from dataclasses import dataclass
-from functools import cached_property
+from dataclasses import dataclass, replace
+from functools import cached_property, partial
 
 import numpy as np
 from numpy.typing import NDArray
@@ -78,9 +78,18 @@ def _greatest_clamped(angle: Array, index: float) -> Array:
     return sines + np.sign(greatest) - greatest
 
 
-SIXTHS = tuple(np.arange(1, 12, 2) * np.pi / 6.0)
+def _greatest_current_clamped(angle: Array, index: float, turned: float = 0.0) -> Array:
+    """The phase whose current is greatest stays at its rail, within 30 degrees of its voltage's peak."""
+    sines = _sines(angle, index)
+    greatest = np.argmax(np.abs(_sines(angle - turned, 1.0)), axis=0)[None]
+    own = np.take_along_axis(sines, greatest, axis=0)
+    return sines + np.sign(np.take_along_axis(_sines(angle - turned, 1.0), greatest, axis=0)) - own
+
+
+SECTORS = tuple(np.arange(1, 6) * np.pi / 3.0)
 TOGETHER = (1, 1, 1), (2.0 / 3.0, -1.0 / 3.0, -1.0 / 3.0), (1, 1, 1), (0.0, THIRD, 2.0 * THIRD)
 WIDE = 2.0 / np.sqrt(3.0)
+FOLLOWING = "discontinuous following the current"
 SCHEMES = {
     "bipolar": Scheme(_pair, (1, -1), (1.0, -1.0), (1, -1), (0.0, 0.0), (), 1.0),
     "unipolar": Scheme(_pair, (1, 1), (1.0, -1.0), (1, -1), (0.0, 0.0), (), 1.0),
@@ -88,8 +97,21 @@ SCHEMES = {
     "sine-triangle": Scheme(_sines, *TOGETHER, (), 1.0),
     "third harmonic one sixth": Scheme(_with_third, *TOGETHER, (), WIDE),
     "centred space vector": Scheme(_middle_out, *TOGETHER, (), WIDE),
-    "discontinuous clamped at voltage peak": Scheme(_greatest_clamped, *TOGETHER, SIXTHS, WIDE),
+    "discontinuous clamped at voltage peak": Scheme(_greatest_clamped, *TOGETHER, SECTORS, WIDE),
+    FOLLOWING: Scheme(_greatest_current_clamped, *TOGETHER, SECTORS, WIDE),
 }
+
+
+def scheme_at(name: str, lag: float) -> Scheme:
+    """A scheme for a current that lags by an angle [rad]."""
+    scheme = SCHEMES[name]
+    if name != FOLLOWING:
+        return scheme
+    turned = min(max(lag, -np.pi / 6.0), np.pi / 6.0)
+    breaks = np.sort((np.array((0.0, *scheme.breaks)) + turned) % TURN)
+    return replace(
+        scheme, reference=partial(scheme.reference, turned=turned), breaks=tuple(breaks[breaks > SHORTEST])
+    )
 
 
 def triangle(angle: Array, ratio: int) -> Array:

@@ -54,9 +54,7 @@ def test_sums_equal_quadrature(bridge: str, scheme: str, index: float, lag: floa
     """(1 + u)/2 of the current while it is positive, straight from the reference, leg by leg."""
     entry = BRIDGES[bridge]
     angle = 2.0 * np.pi * (np.arange(20000) + 0.5) / 20000
-    references = entry.modulations[entry.modulation_index(scheme)].references(
-        angle, np.full_like(angle, index)
-    )
+    references = entry.scheme(scheme).at(lag).references(angle, np.full_like(angle, index))
     averages, squares = [], []
     for leg, sign in zip(entry.modelled_legs, entry.current_sign, strict=True):
         current = np.maximum(sign * np.sin(angle - lag), 0.0)

@@ -108,7 +108,7 @@ def test_everything_is_finite_and_nothing_negative(bridge: Bridge) -> None:
 
 
 @given(st.floats(-0.5, 3.0))
-@settings(max_examples=60)
+@settings(max_examples=60, deadline=None)
 def test_position_stays_on_the_grid(index: float) -> None:
     tables: WaveformTables = waveform_tables("single-phase full bridge")
     row, weight = tables.position(np.array([index]))

@@ -118,7 +118,7 @@ def test_the_same_on_a_cluster_whose_worker_is_killed_under_way(study_file, case
         distributed.LocalCluster(
             n_workers=2, threads_per_worker=1, processes=True, dashboard_address=None, silence_logs=50
         ) as cluster,
-        distributed.Client(cluster) as client,
+        distributed.Client(cluster, set_as_default=False) as client,
     ):
         killed = threading.Event()
         victims = client.run(os.getpid)

@@ -16,6 +16,7 @@ from optimizer.study import Study
 
 PICTURE_FONT = "Liberation Sans, Arial, Helvetica, sans-serif"
 PIXELS_PER_POINT = 1.1
+PADDING = {"left": 12, "top": 12, "bottom": 12, "right": 48}
 PICTURED_PER_CLASS = 90
 
 

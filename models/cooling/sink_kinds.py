@@ -4,8 +4,8 @@ from __future__ import annotations
 
 from functools import lru_cache
 
-from models.catalog.parts import Fan
 from models.cooling.cold_plate import sink_curve_cold_plate
+from models.cooling.fan import Fan
 from models.cooling.forced_curve import sink_curve_forced
 from models.cooling.natural_curve import sink_curve_natural
 from models.cooling.several_sinks import shared_by_several

@@ -14,6 +14,8 @@ from optimizer.fronts import front
 from optimizer.objectives import OBJECTIVES
 from optimizer.prepared import search_space
 
+SPREADING = [name for name in FACTORS if law_of(name) == SPREAD]
+"""What figures go one way with; of an inductance losses have a minimum, whose band ends there."""
 NONE = Uncertainty(**{entry.name: 0.0 for entry in fields(Uncertainty)})
 
 
@@ -41,7 +43,7 @@ def test_without_uncertainty_bands_have_no_width_and_all_limits_hold(picked):
 
 
 @settings(max_examples=8)
-@given(st.sampled_from(FACTORS), st.floats(0.05, 0.3), st.floats(1.5, 3.0))
+@given(st.sampled_from(SPREADING), st.floats(0.05, 0.3), st.floats(1.5, 3.0))
 def test_bands_widen_with_the_uncertainty(picked, name, value, times):
     narrow, wide = (
         of(picked, replace(NONE, **{name: width}), samples=256) for width in (value, times * value)

@@ -201,10 +201,10 @@ def test_several_bridges_are_compared_and_evaluated_again(tmp_path):
         "silicon IGBT, T-type", "SiC MOSFET, T-type",
     }  # fmt: skip
     mixed = table[table.bridge == "three-phase bridge, T-type"]
-    assert (
-        mixed.inner_device.str.contains("650 V").mean() > 0.5
-    )  # twice the rating costs more and conducts worse
-    assert mixed.device.str.contains("1200 V").all()
+    # a higher rating costs more and conducts worse, which even a short search finds for most
+    assert mixed.inner_device.str.contains("650 V").mean() > 0.5
+    assert mixed.device.str.contains("1200 V").mean() > 0.5
+    assert not mixed.device.str.contains("650 V").any()
     out = tmp_path / "again.csv"
     again = wattfront(
         "evaluate", str(study), "--designs", str(run / "front.csv"), "--out", str(out), cwd=tmp_path

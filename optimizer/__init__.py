@@ -11,19 +11,19 @@ from importlib import import_module
 from typing import TYPE_CHECKING, Any
 
 if TYPE_CHECKING:
-    from optimizer.fronts import Front, front
+    from optimizer.evolution.populations import SearchResult
     from optimizer.notebook import search
-    from optimizer.populations import SearchResult
-    from optimizer.study import Study
+    from optimizer.runs.fronts import Front, front
+    from optimizer.study.study import Study
 
 __all__ = ["Front", "SearchResult", "Study", "front", "search"]
 
 _HOMES = {
-    "Front": "optimizer.fronts",
-    "front": "optimizer.fronts",
-    "SearchResult": "optimizer.populations",
+    "Front": "optimizer.runs.fronts",
+    "front": "optimizer.runs.fronts",
+    "SearchResult": "optimizer.evolution.populations",
     "search": "optimizer.notebook",
-    "Study": "optimizer.study",
+    "Study": "optimizer.study.study",
 }
 
 

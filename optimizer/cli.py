@@ -42,8 +42,8 @@ StudyFile = Annotated[Path, typer.Argument(help="Study file (TOML).", show_defau
 @app.command(epilog="Example: wattfront new my_inverter.toml")
 def new(file: Annotated[Path, typer.Argument(help="Study file to write.", show_default=False)]) -> None:
     """Write a commented starter study."""
-    from optimizer.run_folder import write_whole
-    from optimizer.starter import starter_text
+    from optimizer.runs.run_folder import write_whole
+    from optimizer.study.starter import starter_text
 
     if file.exists():
         raise InputError(Problem("a file that exists already", "a new file name", file=str(file)))
@@ -91,7 +91,7 @@ def search(
     """
     from optimizer.batch.cases import read_cases
     from optimizer.progress import SearchBar
-    from optimizer.run import run_search
+    from optimizer.runs.run import run_search
     from optimizer.summary import print_batch, print_summary
 
     cases = [case.with_effort(population, generations) for case in read_cases(study)]
@@ -138,11 +138,11 @@ def evaluate(
     json: Annotated[bool, typer.Option("--json", help="JSON instead of CSV on standard output.")] = False,
 ) -> None:
     """Evaluate designs given by hand: every figure, every margin, losses by part, spectrum."""
-    from optimizer.designs_file import INNER_COLUMNS, bridges_in, read_designs
-    from optimizer.evaluate import evaluated_table, joined, spectrum_table, written_table
+    from optimizer.given.designs_file import INNER_COLUMNS, bridges_in, read_designs
+    from optimizer.given.evaluate import evaluated_table, joined, spectrum_table, written_table
     from optimizer.prepared import prepared_inverter
-    from optimizer.run_folder import write_whole
-    from optimizer.study import Study
+    from optimizer.runs.run_folder import write_whole
+    from optimizer.study.study import Study
 
     asked = Study.read(study)
     tables, spectra = [], []
@@ -181,7 +181,7 @@ def audit(
     json: Annotated[bool, typer.Option("--json", help="Print JSON instead of a table.")] = False,
 ) -> None:
     """Say how complete a run's fronts are: quasi-random designs by the million, and a local polish."""
-    from optimizer.audited_run import audit_run, taken_in
+    from optimizer.audit.audited_run import audit_run, taken_in
     from optimizer.progress import AuditBar
     from optimizer.summary import print_audit
 
@@ -203,13 +203,13 @@ def shortlist(
     json: Annotated[bool, typer.Option("--json", help="JSON instead of text on standard output.")] = False,
 ) -> None:
     """Pick a few designs from a run's front and tell them in plain words."""
-    from optimizer.audited_run import stored_points
+    from optimizer.audit.audited_run import stored_points
     from optimizer.certainty.tolerance import sampler
     from optimizer.decision import shortlist as picked
     from optimizer.decision.telling import as_csv, as_json, print_shortlist, table_suffix
     from optimizer.decision.weights import read_weights
-    from optimizer.run_folder import write_whole
-    from optimizer.stored_run import read_run
+    from optimizer.runs.run_folder import write_whole
+    from optimizer.runs.stored_run import read_run
 
     suffix = table_suffix(out) if out else ""
     asked = read_weights(weights) if weights is not None else None
@@ -242,7 +242,7 @@ def neighbourhood(
     """Say what a design's figures hang on and how sure they are: bar charts and tables, CSV, JSON."""
     from optimizer.certainty.neighbourhood import FOLDER, as_json, write_neighbourhood
     from optimizer.certainty.neighbourhood import neighbourhood as look_around
-    from optimizer.stored_run import read_run
+    from optimizer.runs.stored_run import read_run
 
     found = look_around(read_run(run), design)
     if json:
@@ -265,13 +265,13 @@ def report(
     weights: Weights = None,
 ) -> None:
     """Write a run's report: one page for a decision, an appendix for engineers."""
-    from optimizer.audited_run import stored_points
+    from optimizer.audit.audited_run import stored_points
     from optimizer.certainty.tolerance import sampler
     from optimizer.decision import shortlist as picked
     from optimizer.decision.weights import read_weights
     from optimizer.report import report as content_of
     from optimizer.report.writing import FOLDER, check_libraries, write_report
-    from optimizer.stored_run import read_run
+    from optimizer.runs.stored_run import read_run
 
     formats = [kind.value for kind in kinds or ReportFormat]
     check_libraries(formats)
@@ -295,8 +295,8 @@ def compare(
     from optimizer.comparison import compare as compared
     from optimizer.comparison.page import comparison_page
     from optimizer.comparison.telling import as_json, check_page, print_comparison
-    from optimizer.run_folder import write_whole
-    from optimizer.stored_run import read_run
+    from optimizer.runs.run_folder import write_whole
+    from optimizer.runs.stored_run import read_run
 
     if out is not None:
         check_page(out)

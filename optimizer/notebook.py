@@ -9,15 +9,15 @@ from typing import TYPE_CHECKING
 
 import pandas as pd
 
-from optimizer import populations
 from optimizer.errors import InputError, NothingFeasible, Problem
-from optimizer.fronts import Front, front
+from optimizer.evolution import populations
+from optimizer.evolution.populations import Progress, SearchResult
 from optimizer.objectives import OBJECTIVES
-from optimizer.populations import Progress, SearchResult
-from optimizer.quantity import show
-from optimizer.run import evaluated_table, ruled_out, shortfalls
-from optimizer.study import Study
-from optimizer.study_table import one_of
+from optimizer.runs.fronts import Front, front
+from optimizer.runs.run import evaluated_table, ruled_out, shortfalls
+from optimizer.study.quantity import show
+from optimizer.study.study import Study
+from optimizer.study.table import one_of
 
 if TYPE_CHECKING:
     import altair as alt
@@ -44,7 +44,7 @@ def search(
     """Search all concepts of a study.
 
     Args:
-        study, seed, workers, report: as in `optimizer.populations.search`.
+        study, seed, workers, report: as in `optimizer.evolution.populations.search`.
 
     Returns:
         The result, with fronts, charts and shortlist.

@@ -4,9 +4,9 @@ from __future__ import annotations
 
 from models.inverter import Inverter
 from optimizer.catalog_listing import read_catalog
-from optimizer.concepts import Concept
 from optimizer.space import SearchSpace
-from optimizer.study import Study
+from optimizer.study.concepts import Concept
+from optimizer.study.study import Study
 
 _prepared: dict[tuple[str, str], Inverter] = {}
 

@@ -9,9 +9,9 @@ from rich.console import Console
 from rich.progress import BarColumn, Progress, TaskID, TextColumn, TimeElapsedColumn, TimeRemainingColumn
 
 from optimizer.batch.cases import Case
-from optimizer.concept_search import Progress as ClassProgress
-from optimizer.screening import planned_evaluations
-from optimizer.study import Study
+from optimizer.evolution.concept_search import Progress as ClassProgress
+from optimizer.evolution.screening import planned_evaluations
+from optimizer.study.study import Study
 
 
 class AuditBar:

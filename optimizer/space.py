@@ -26,8 +26,8 @@ from models.output_filter import NO_CAPACITANCE
 from models.waveforms.leg_commutations import INNER, OUTER
 from models.waveforms.tables import WaveformTables
 from optimizer.evolution.mating import Axes
-from optimizer.study import Study
-from optimizer.study_schema import LCL, ONLY_L, PARALLEL_RC
+from optimizer.study.schema import LCL, ONLY_L, PARALLEL_RC
+from optimizer.study.study import Study
 
 Array = NDArray[np.float64]
 Ints = NDArray[np.int64]

@@ -12,9 +12,9 @@ from rich.table import Table
 from optimizer.objectives import OBJECTIVES
 
 if TYPE_CHECKING:
-    from optimizer.audited_run import Audited
+    from optimizer.audit.audited_run import Audited
     from optimizer.batch.batch_run import BatchOutcome
-    from optimizer.run import Outcome
+    from optimizer.runs.run import Outcome
 
 
 def print_summary(outcome: Outcome, *, as_json: bool) -> None:
@@ -75,7 +75,7 @@ def _table(outcome: Outcome) -> Table:
 
 def print_audit(audited: Audited, *, as_json: bool) -> None:
     """Print what an audit found, as a table or as JSON by concept."""
-    from optimizer.audited_run import audit_entries
+    from optimizer.audit.audited_run import audit_entries
 
     if as_json:
         print(json.dumps(audit_entries(audited.found)))

@@ -7,11 +7,11 @@ from pathlib import Path
 import pytest
 from hypothesis import settings
 
-from optimizer.populations import SearchResult, search
+from optimizer.evolution.populations import SearchResult, search
 from optimizer.prepared import prepared_inverter
-from optimizer.run import run_search
-from optimizer.stored_run import StoredRun, read_run
-from optimizer.study import Study
+from optimizer.runs.run import run_search
+from optimizer.runs.stored_run import StoredRun, read_run
+from optimizer.study.study import Study
 
 settings.register_profile("untimed", deadline=None)  # speed is never tested by time
 settings.load_profile("untimed")

@@ -17,7 +17,7 @@ from models.designs import Designs
 from models.inverter import Inverter
 from models.specification import GRID_CONNECTED, STAND_ALONE, Specification
 from optimizer.space import SearchSpace
-from optimizer.study import Study
+from optimizer.study.study import Study
 
 __all__ = ["BACKUP", "DEPOT", "ROOFTOP", "Draw", "Spaces", "catalog", "draw", "inverter", "spaces", "studies"]
 

@@ -16,15 +16,15 @@ import pandas as pd
 from optimizer.batch.cases import Case
 from optimizer.batch.engine import Engine, Task
 from optimizer.batch.page import batch_page
-from optimizer.concept_search import ClassResult
-from optimizer.csv_table import csv_bytes
 from optimizer.errors import NothingFeasible
+from optimizer.evolution.concept_search import ClassResult
+from optimizer.evolution.populations import SearchResult
+from optimizer.evolution.unfinished import Unfinished
 from optimizer.objectives import OBJECTIVES
-from optimizer.populations import SearchResult
 from optimizer.prepared import prepare
-from optimizer.run import RUN_FORMAT, json_text, ruled_out, version_of_program, write_result
-from optimizer.run_folder import RUN_FILE, STUDY_FILE, Content, check_folder, write_run
-from optimizer.unfinished import Unfinished
+from optimizer.runs.csv_table import csv_bytes
+from optimizer.runs.run import RUN_FORMAT, json_text, ruled_out, version_of_program, write_result
+from optimizer.runs.run_folder import RUN_FILE, STUDY_FILE, Content, check_folder, write_run
 
 CASES = "cases"
 FRONT, SUMMARY = "front.csv", "cases.csv"
@@ -66,7 +66,7 @@ def run_batch(
 
     Raises:
         NothingFeasible: where no case has a feasible design; nothing is written then.
-        InputError: as `optimizer.run.run_search`.
+        InputError: as `optimizer.runs.run.run_search`.
     """
     started = time.perf_counter()
     check_folder(folder)

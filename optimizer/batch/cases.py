@@ -14,9 +14,9 @@ from typing import Any
 import tomli_w
 
 from optimizer.errors import InputError, Problem
-from optimizer.quantity import show
-from optimizer.study import Study, read_bytes, read_toml
-from optimizer.study_schema import LIST_KEYS
+from optimizer.study.quantity import show
+from optimizer.study.schema import LIST_KEYS
+from optimizer.study.study import Study, read_bytes, read_toml
 
 MOST_CASES = 500
 

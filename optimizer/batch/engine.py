@@ -9,12 +9,12 @@ from contextlib import AbstractContextManager, contextmanager
 from dataclasses import dataclass
 from typing import Any, Protocol
 
-from optimizer.concept_search import ClassResult, search_concept
-from optimizer.concepts import Concept
 from optimizer.errors import InputError, Problem
-from optimizer.populations import process_context
+from optimizer.evolution.concept_search import ClassResult, search_concept
+from optimizer.evolution.populations import process_context
 from optimizer.prepared import prepared_inverter
-from optimizer.study import Study
+from optimizer.study.concepts import Concept
+from optimizer.study.study import Study
 
 RETRIES = 10
 """How often a task is begun anew after its worker was lost."""

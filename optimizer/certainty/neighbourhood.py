@@ -11,13 +11,13 @@ import numpy as np
 import pandas as pd
 from numpy.typing import NDArray
 
-from optimizer.audited_run import stored_points
+from optimizer.audit.audited_run import stored_points
 from optimizer.certainty.sensitivity import MARGIN, sensitivities
 from optimizer.certainty.tolerance import Tolerance, design_at, place_of, tolerance
 from optimizer.decision import Shortlist, shortlist
 from optimizer.errors import InputError, Problem
-from optimizer.run_folder import write_whole
-from optimizer.stored_run import StoredRun
+from optimizer.runs.run_folder import write_whole
+from optimizer.runs.stored_run import StoredRun
 
 Array = NDArray[np.float64]
 FOLDER = "neighbourhood"

@@ -10,11 +10,11 @@ import pandas as pd
 from numpy.typing import NDArray
 
 from models.evaluation import Evaluation
-from optimizer.binding import variable_words
+from optimizer.limits.binding import variable_words
 from optimizer.objectives import OBJECTIVES, requirements_of
 from optimizer.space import LINEAR, LOGARITHMIC, SearchSpace
-from optimizer.study import Study
-from optimizer.study_values import RULES, StudyValue, energy_price, space_of, specification_values
+from optimizer.study.study import Study
+from optimizer.study.values import RULES, StudyValue, energy_price, space_of, specification_values
 
 Array = NDArray[np.float64]
 

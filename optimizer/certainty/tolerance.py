@@ -14,11 +14,11 @@ from scipy.stats import rankdata
 from models.designs import Designs
 from models.inverter import Inverter
 from models.uncertainty import FACTORS, Uncertainty, factors_at
-from optimizer.evaluate import LAST_DIGIT
+from optimizer.evolution.screening import quasi_random
+from optimizer.given.evaluate import LAST_DIGIT
 from optimizer.objectives import OBJECTIVES, requirements_of
 from optimizer.prepared import search_space
-from optimizer.screening import quasi_random
-from optimizer.study import Study
+from optimizer.study.study import Study
 
 Array = NDArray[np.float64]
 

@@ -11,8 +11,8 @@ from optimizer.charts.envelope_data import SHOWN_FREQUENCY, Envelope, envelope
 from optimizer.charts.quantities import quantity_of
 from optimizer.charts.selections import DESIGNS
 from optimizer.charts.thinning import SHOWN_PER_CLASS
-from optimizer.fronts import Front
-from optimizer.study import Study
+from optimizer.runs.fronts import Front
+from optimizer.study.study import Study
 
 ENVELOPED = ("weighted loss", "volume")
 """Objectives whose least value is drawn over the switching frequency, minimised or not."""

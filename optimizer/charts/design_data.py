@@ -12,9 +12,9 @@ from numpy.typing import ArrayLike, NDArray
 
 from optimizer.charts.quantities import LOSS, VOLUME, Quantity, axis_quantities, component_columns
 from optimizer.charts.thinning import SHOWN_PER_CLASS, balanced_row, shown_rows, unit_range
-from optimizer.fronts import Front
 from optimizer.objectives import OBJECTIVES, distortion_column
-from optimizer.study import Study
+from optimizer.runs.fronts import Front
+from optimizer.study.study import Study
 
 Records = list[dict[str, Any]]
 DIGITS = 4

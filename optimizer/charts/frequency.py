@@ -13,7 +13,7 @@ from optimizer.charts.envelope_data import FEWEST, FILTER_COLUMN, SHOWN_FREQUENC
 from optimizer.charts.look import FAINT, INK, class_scales, heading
 from optimizer.charts.quantities import Quantity, quantity_of
 from optimizer.charts.selections import Selections
-from optimizer.study import Study
+from optimizer.study.study import Study
 
 FREQUENCY_TITLE = "switching frequency [kHz]"
 ROOM = 0.04

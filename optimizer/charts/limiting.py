@@ -10,8 +10,8 @@ import altair as alt
 import numpy as np
 import pandas as pd
 
-from optimizer.binding import BINDING, KINDS, RANGE
 from optimizer.charts.look import FAINT, INK, QUIET, TEXT_SIZE, heading, layered
+from optimizer.limits.binding import BINDING, KINDS, RANGE
 
 TINTS = ("#e9dfd0", "#d8cdea", "#f5c3a6", "#b9d6ec", "#f4e497", "#cbe3bd", "#dcdedd", "#ffffff")
 """One tint a kind of limit, light enough for words on it; the words carry the meaning."""

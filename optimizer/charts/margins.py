@@ -8,9 +8,9 @@ from typing import Any
 
 import altair as alt
 
-from optimizer.binding import BINDING
 from optimizer.charts.look import ABOVE, ALERT, BAR, INK, QUIET, TEXT_SIZE, heading, layered
 from optimizer.charts.selections import Selections
+from optimizer.limits.binding import BINDING
 
 SHOWN = 10
 MARKED = 100.0 * BINDING

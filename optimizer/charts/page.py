@@ -17,8 +17,8 @@ from optimizer.charts.quantities import LOSS, VOLUME, component_words, quantity_
 from optimizer.charts.task import task_words
 from optimizer.charts.views import content, linked_views
 from optimizer.charts.words import HELP, cautions, drawn, missing, origin, ranked
-from optimizer.fronts import Front
-from optimizer.study import Study
+from optimizer.runs.fronts import Front
+from optimizer.study.study import Study
 
 
 def dashboard_html(

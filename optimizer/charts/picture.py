@@ -11,8 +11,8 @@ from optimizer.charts.look import configuration, heading
 from optimizer.charts.quantities import Quantity
 from optimizer.charts.scatter import class_encodings, class_legend
 from optimizer.charts.selections import DESIGNS
-from optimizer.fronts import Front
-from optimizer.study import Study
+from optimizer.runs.fronts import Front
+from optimizer.study.study import Study
 
 PICTURE_FONT = "Liberation Sans, Arial, Helvetica, sans-serif"
 PIXELS_PER_POINT = 1.1

@@ -8,7 +8,7 @@ from dataclasses import dataclass, replace
 import pandas as pd
 
 from optimizer.objectives import OBJECTIVES
-from optimizer.study import Study
+from optimizer.study.study import Study
 
 DISTORTION = "distortion"
 CURRENCY = "currency"

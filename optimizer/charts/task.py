@@ -3,7 +3,7 @@
 from __future__ import annotations
 
 from models.specification import GRID_CONNECTED, Specification
-from optimizer.study import Study
+from optimizer.study.study import Study
 
 KILO, PERCENT = 1e3, 100.0
 ROOT_3 = 3.0**0.5

@@ -22,8 +22,8 @@ from optimizer.charts.quantities import LOSS, VOLUME, component_words
 from optimizer.charts.scatter import scatter
 from optimizer.charts.selections import DESIGNS, Selections, axis_values, selections
 from optimizer.charts.spectrum import spectrum
-from optimizer.fronts import Front
-from optimizer.study import Study
+from optimizer.runs.fronts import Front
+from optimizer.study.study import Study
 
 APART = alt.ScaleResolveMap(
     color="independent", fill="independent", stroke="independent", shape="independent", size="independent"

@@ -6,8 +6,8 @@ from collections.abc import Mapping, Sequence
 from typing import Any
 
 from optimizer.charts.design_data import DesignData
-from optimizer.study import Study
-from optimizer.study_schema import HIGH_VALUES
+from optimizer.study.schema import HIGH_VALUES
+from optimizer.study.study import Study
 
 CAUTION = (
     "Early-concept figures from analytic models and representative parts. A dc link stores lethal energy; "

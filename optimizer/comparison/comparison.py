@@ -17,7 +17,7 @@ from optimizer.decision.picks import on_front
 from optimizer.decision.wording import TELLING, headline, listed
 from optimizer.errors import InputError, Problem
 from optimizer.report.designs import KINDS
-from optimizer.stored_run import StoredRun
+from optimizer.runs.stored_run import StoredRun
 
 BALANCED, EQUAL_VOLUME = "balanced design", "least loss at equal volume"
 MOST_TOLD = 3

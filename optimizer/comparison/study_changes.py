@@ -8,7 +8,7 @@ from collections.abc import Iterator, Mapping
 from dataclasses import dataclass
 from typing import Any
 
-from optimizer.stored_run import StoredRun
+from optimizer.runs.stored_run import StoredRun
 
 NOTHING = "nothing (its default)"
 RUN_KEYS = ("seed", "population", "generations", "version")

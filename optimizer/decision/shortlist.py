@@ -15,7 +15,7 @@ from optimizer.decision.picks import EQUAL_COST, least_row, recommended_row, wei
 from optimizer.decision.weights import written_weights
 from optimizer.decision.wording import beside, headline, how_sure, limited_by, limits_kept, what_it_is
 from optimizer.objectives import OBJECTIVES
-from optimizer.study import Study
+from optimizer.study.study import Study
 
 BALANCED, WEIGHTED = "balanced", "best by your weights"
 LEAST = {

@@ -7,8 +7,8 @@ from collections.abc import Mapping
 
 from optimizer.errors import InputError, Problem
 from optimizer.objectives import OBJECTIVES
-from optimizer.quantity import show
-from optimizer.study_table import nearest, one_of
+from optimizer.study.quantity import show
+from optimizer.study.table import nearest, one_of
 
 KEY = "--weights"
 EXAMPLE = '"volume=2, price=1"'

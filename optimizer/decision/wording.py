@@ -7,9 +7,9 @@ from typing import Any
 
 import pandas as pd
 
-from optimizer.binding import BINDING, requirement_words
 from optimizer.certainty.tolerance import Tolerance, factor_words
 from optimizer.decision.figures import LOSS, Told, figure
+from optimizer.limits.binding import BINDING, requirement_words
 
 KILO, MICRO, PERCENT = 1e3, 1e-6, 100.0
 TELLING = 0.01

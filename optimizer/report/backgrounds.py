@@ -13,11 +13,11 @@ from models.specification import DesignRules
 from optimizer.catalog_listing import read_catalog
 from optimizer.charts.task import task_words
 from optimizer.decision.figures import figure
-from optimizer.quantity import written
 from optimizer.report.blocks import Table
 from optimizer.report.naming import quantity_words, told_value
 from optimizer.report.sources import model_sources
-from optimizer.study import Study
+from optimizer.study.quantity import written
+from optimizer.study.study import Study
 
 DEFAULTS = DesignRules()
 

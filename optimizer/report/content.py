@@ -4,7 +4,7 @@ from __future__ import annotations
 
 from dataclasses import dataclass
 
-from optimizer.audited_run import stored_points
+from optimizer.audit.audited_run import stored_points
 from optimizer.certainty.neighbourhood import around
 from optimizer.charts.task import task_words
 from optimizer.charts.words import CAUTION, CAUTIONS
@@ -22,7 +22,7 @@ from optimizer.report.blocks import Picture, Section, Table
 from optimizer.report.certainty import HOW, bands_table, drivers_table, effects_table, holding_table
 from optimizer.report.designs import build_table, component_tables, margin_table, words_table
 from optimizer.report.pictures import pictures
-from optimizer.stored_run import StoredRun
+from optimizer.runs.stored_run import StoredRun
 
 GAINED = (LOSS, VOLUME, PRICE, COST)
 MOST_FURTHER, FURTHER_SHARE = 2, 0.1

@@ -8,7 +8,7 @@ from pathlib import Path
 
 from optimizer.errors import InputError, Problem
 from optimizer.report.content import Report
-from optimizer.run_folder import write_whole
+from optimizer.runs.run_folder import write_whole
 
 HTML, PDF, SLIDES = "html", "pdf", "pptx"
 LIBRARIES = {PDF: ("reportlab", "reportlab"), SLIDES: ("pptx", "python-pptx")}

@@ -19,9 +19,9 @@ from pathlib import Path
 import numpy as np
 
 from models.designs import Designs
-from optimizer.concept_search import search_concept
+from optimizer.evolution.concept_search import search_concept
 from optimizer.prepared import search_space
-from optimizer.study import Study
+from optimizer.study.study import Study
 
 ROOT = Path(__file__).parents[2]
 LARGE, POPULATION, REPEATS = 16_384, 100, 9

@@ -19,10 +19,10 @@ from pathlib import Path
 import moocore
 import numpy as np
 
-from optimizer.audit import REFERENCE
-from optimizer.audited_run import audit_run
+from optimizer.audit.audit import REFERENCE
+from optimizer.audit.audited_run import audit_run
 from optimizer.objectives import OBJECTIVES
-from optimizer.stored_run import read_run
+from optimizer.runs.stored_run import read_run
 
 ROOT = Path(__file__).parents[2]
 STUDIES = ("rooftop_5kw", "depot_10kw_three_phase", "backup_3kva")

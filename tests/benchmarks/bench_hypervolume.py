@@ -22,13 +22,13 @@ from pymoo.core.repair import Repair
 from pymoo.optimize import minimize
 from pymoo.termination import get_termination
 
-from optimizer.audit import hypervolume_share
-from optimizer.concept_search import search_concept
-from optimizer.concepts import Concept
+from optimizer.audit.audit import hypervolume_share
+from optimizer.evolution.concept_search import search_concept
+from optimizer.evolution.problem import ClassProblem
+from optimizer.evolution.screening import SCREENED_PER_PLACE
 from optimizer.prepared import search_space
-from optimizer.problem import ClassProblem
-from optimizer.screening import SCREENED_PER_PLACE
-from optimizer.study import Study
+from optimizer.study.concepts import Concept
+from optimizer.study.study import Study
 
 Array = NDArray[np.float64]
 ROOT = Path(__file__).parents[2]

@@ -24,12 +24,12 @@ from models.evaluation import Evaluation
 from models.magnetics.alternatives import alternatives
 from models.magnetics.build import build
 from models.magnetics.inductor import dc_resistance
-from optimizer.fronts import distinct_rows
+from optimizer.evolution.populations import search
 from optimizer.objectives import margins_of, requirements_of
-from optimizer.populations import search
 from optimizer.prepared import search_space
+from optimizer.runs.fronts import distinct_rows
 from optimizer.space import SearchSpace
-from optimizer.study import Study
+from optimizer.study.study import Study
 
 Array = NDArray[np.float64]
 ROOT = Path(__file__).parents[2]

@@ -17,7 +17,7 @@ from models.designs import COLD_PLATE, FORCED, Designs
 from models.evaluation import Evaluation
 from models.inverter import BLOCK, Inverter
 from optimizer.space import SearchSpace
-from optimizer.study import Study
+from optimizer.study.study import Study
 
 SIC = ("rooftop_5kw", "SiC MOSFET")
 

@@ -3,11 +3,11 @@
 import numpy as np
 import pytest
 
-from optimizer.fronts import front
+from optimizer.evolution.populations import search
 from optimizer.objectives import OBJECTIVES
-from optimizer.populations import search
-from optimizer.study import Study
-from optimizer.study_schema import OBJECTIVES as NAMES
+from optimizer.runs.fronts import front
+from optimizer.study.schema import OBJECTIVES as NAMES
+from optimizer.study.study import Study
 
 STUDY = """
 name = "costs"

@@ -26,9 +26,9 @@ import pytest
 from numpy.typing import NDArray
 
 from models.specification import CALIFORNIAN_WEIGHTS
-from optimizer.fronts import Front, front
-from optimizer.populations import search
-from optimizer.study import Study
+from optimizer.evolution.populations import search
+from optimizer.runs.fronts import Front, front
+from optimizer.study.study import Study
 
 Array = NDArray[np.float64]
 TABLE = Path(pvlib.__file__).parent / "data" / "sam-library-cec-inverters-2019-03-05.csv"

@@ -17,7 +17,7 @@ from models.output_filter import Filter, line_phasors
 from models.specification import Specification
 from models.waveforms.state import waveform_state
 from optimizer.space import SearchSpace
-from optimizer.study import Study
+from optimizer.study.study import Study
 
 CLASS_A, CLASS_B = "CISPR 11 class A up to 20 kVA", "CISPR 11 class B"
 

@@ -14,8 +14,8 @@ from optimizer.batch.batch_run import run_batch
 from optimizer.batch.cases import read_cases
 from optimizer.batch.engine import ClusterEngine, LocalEngine, engine_of
 from optimizer.errors import InputError
-from optimizer.run import run_search
-from optimizer.stored_run import read_run
+from optimizer.runs.run import run_search
+from optimizer.runs.stored_run import read_run
 
 STUDY = """
 name = "two powers"

@@ -6,7 +6,7 @@ import pytest
 
 from optimizer.batch.cases import read_cases
 from optimizer.errors import InputError
-from optimizer.study import Study
+from optimizer.study.study import Study
 
 STUDY = """
 name = "many"

@@ -10,9 +10,9 @@ from scipy.stats import lognorm
 
 from models.uncertainty import FACTORS, SPREAD, TOLERANCE, Uncertainty, factors_at, factors_beside, law_of
 from optimizer.certainty.tolerance import tolerance, with_bands
-from optimizer.fronts import front
 from optimizer.objectives import OBJECTIVES
 from optimizer.prepared import search_space
+from optimizer.runs.fronts import front
 
 SPREADING = [name for name in FACTORS if law_of(name) == SPREAD]
 """What figures go one way with; of an inductance losses have a minimum, whose band ends there."""

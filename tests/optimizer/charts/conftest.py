@@ -10,9 +10,9 @@ import pytest
 from page_reading import carried
 
 from optimizer.charts import dashboard_html
-from optimizer.fronts import Front, front
-from optimizer.run import evaluated_table
-from optimizer.study import Study
+from optimizer.runs.fronts import Front, front
+from optimizer.runs.run import evaluated_table
+from optimizer.study.study import Study
 
 
 @dataclass(frozen=True)

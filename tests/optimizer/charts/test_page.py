@@ -9,7 +9,7 @@ import pytest
 from page_reading import carried
 
 from optimizer.charts import dashboard_html, library
-from optimizer.fronts import Front
+from optimizer.runs.fronts import Front
 
 LARGEST = 12e6
 

@@ -3,7 +3,7 @@
 import pytest
 
 from optimizer.charts.task import task_words
-from optimizer.study import Study
+from optimizer.study.study import Study
 
 
 @pytest.mark.parametrize(

@@ -15,9 +15,9 @@ from optimizer.comparison.tables import cares
 from optimizer.comparison.telling import as_json, check_page, print_comparison
 from optimizer.errors import InputError
 from optimizer.report.designs import KINDS
-from optimizer.run import run_search
-from optimizer.stored_run import read_run
-from optimizer.study import Study
+from optimizer.runs.run import run_search
+from optimizer.runs.stored_run import read_run
+from optimizer.study.study import Study
 
 NASTY = "</script><img onerror=alert(1) src=x>"
 

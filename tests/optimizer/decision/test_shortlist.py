@@ -17,7 +17,7 @@ from optimizer.decision.telling import as_csv, as_json, table_suffix
 from optimizer.decision.weights import read_weights, written_weights
 from optimizer.decision.wording import tightest
 from optimizer.errors import InputError
-from optimizer.fronts import front
+from optimizer.runs.fronts import front
 
 # five designs; the fourth is off the overall front though it is best at everything
 FRONT = pd.DataFrame(

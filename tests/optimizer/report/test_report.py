@@ -27,7 +27,7 @@ from optimizer.report.pdf_writer import pdf_file
 from optimizer.report.pptx_writer import pptx_file
 from optimizer.report.sources import model_sources
 from optimizer.report.writing import check_libraries, write_report
-from optimizer.stored_run import StoredRun
+from optimizer.runs.stored_run import StoredRun
 
 NASTY = "</script><img onerror=alert(1) src=x>"
 NEEDS_POPPLER = pytest.mark.skipif(

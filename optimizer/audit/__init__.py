@@ -1,0 +1,1 @@
+"""How complete a front is."""

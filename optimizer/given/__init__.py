@@ -1,0 +1,1 @@
+"""Designs given by hand, evaluated."""

@@ -1,0 +1,1 @@
+"""What keeps a front from going on, and what would open an empty space."""

@@ -5,6 +5,7 @@ from __future__ import annotations
 from dataclasses import dataclass
 
 from optimizer.audited_run import stored_points
+from optimizer.binding import BINDING
 from optimizer.certainty.neighbourhood import around
 from optimizer.charts.task import task_words
 from optimizer.charts.words import CAUTION, CAUTIONS
@@ -21,6 +22,7 @@ from optimizer.report.backgrounds import (
 from optimizer.report.blocks import Picture, Section, Table
 from optimizer.report.certainty import HOW, bands_table, drivers_table, effects_table, holding_table
 from optimizer.report.designs import build_table, component_tables, margin_table, words_table
+from optimizer.report.limiting import limits_table
 from optimizer.report.pictures import pictures
 from optimizer.stored_run import StoredRun
 
@@ -200,6 +202,7 @@ def _sections(run: StoredRun, found: Shortlist) -> tuple[Section, ...]:
             ("What binds where: 0 is at the limit. Temperatures count over the rise allowed, 20 dB as 100.",),
             (margin_table(found),),
         ),
+        *_limits(run),
         *_certainty(run, found),
         Section(
             "Specification and design rules", (), (specification_table(run.study), rules_table(run.study))
@@ -214,6 +217,16 @@ def _sections(run: StoredRun, found: Shortlist) -> tuple[Section, ...]:
             on_slides=False,
         ),
     )
+
+
+def _limits(run: StoredRun) -> tuple[Section, ...]:
+    if run.binding is None or run.binding.empty:
+        return ()
+    words = (
+        f"Requirements of which designs have less than {100.0 * BINDING:g} % left, and ends of search ranges "
+        "at which they stand, with the share of a front's designs in that octave of switching frequency."
+    )
+    return (Section("What limits the fronts", (words,), (limits_table(run.binding),), on_slides=False),)
 
 
 def _certainty(run: StoredRun, found: Shortlist) -> tuple[Section, ...]:

@@ -11,6 +11,7 @@ from optimizer.charts.words import CAUTION, CAUTIONS
 from optimizer.decision.figures import ALWAYS, COST, LOSS, MASS, PRICE, VOLUME, Told, figure, told_of
 from optimizer.decision.shortlist import Shortlist
 from optimizer.decision.wording import beside, what_it_is
+from optimizer.limits.binding import BINDING
 from optimizer.report.backgrounds import (
     energy_words,
     parts_tables,
@@ -21,6 +22,7 @@ from optimizer.report.backgrounds import (
 from optimizer.report.blocks import Picture, Section, Table
 from optimizer.report.certainty import HOW, bands_table, drivers_table, effects_table, holding_table
 from optimizer.report.designs import build_table, component_tables, margin_table, words_table
+from optimizer.report.limiting import limits_table
 from optimizer.report.pictures import pictures
 from optimizer.runs.stored_run import StoredRun
 
@@ -200,6 +202,7 @@ def _sections(run: StoredRun, found: Shortlist) -> tuple[Section, ...]:
             ("What binds where: 0 is at the limit. Temperatures count over the rise allowed, 20 dB as 100.",),
             (margin_table(found),),
         ),
+        *_limits(run),
         *_certainty(run, found),
         Section(
             "Specification and design rules", (), (specification_table(run.study), rules_table(run.study))
@@ -214,6 +217,16 @@ def _sections(run: StoredRun, found: Shortlist) -> tuple[Section, ...]:
             on_slides=False,
         ),
     )
+
+
+def _limits(run: StoredRun) -> tuple[Section, ...]:
+    if run.binding is None or run.binding.empty:
+        return ()
+    words = (
+        f"Requirements of which designs have less than {100.0 * BINDING:g} % left, and ends of search ranges "
+        "at which they stand, with the share of a front's designs in that octave of switching frequency."
+    )
+    return (Section("What limits the fronts", (words,), (limits_table(run.binding),), on_slides=False),)
 
 
 def _certainty(run: StoredRun, found: Shortlist) -> tuple[Section, ...]:

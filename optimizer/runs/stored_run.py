@@ -10,13 +10,14 @@ from typing import Any
 
 import pandas as pd
 
+from optimizer.limits.binding import COLUMNS
 from optimizer.errors import InputError, Problem
 from optimizer.objectives import OBJECTIVES
 from optimizer.runs.run import RUN_FORMAT
 from optimizer.runs.run_folder import RUN_FILE, STUDY_FILE
 from optimizer.study.study import Study
 
-FRONT_FILE, MARGINS_FILE = "front.csv", "margins.csv"
+FRONT_FILE, MARGINS_FILE, BINDING_FILE = "front.csv", "margins.csv", "binding.csv"
 ID, TIGHTEST = "design_id", "tightest"
 NEEDED = (
     ID,
@@ -41,6 +42,7 @@ class StoredRun:
         table: front.csv, one row a design.
         margins: margins.csv, in the same order.
         summary: run.json's content.
+        binding: binding.csv; None for a run of before there was one.
     """
 
     folder: Path
@@ -48,6 +50,7 @@ class StoredRun:
     table: pd.DataFrame
     margins: pd.DataFrame
     summary: Mapping[str, Any]
+    binding: pd.DataFrame | None = None
 
     @property
     def objective_columns(self) -> list[str]:
@@ -67,7 +70,11 @@ def read_run(folder: Path) -> StoredRun:
     summary = _summary(Path(folder))
     study = _study(Path(folder), summary)
     table, margins = _table(Path(folder) / FRONT_FILE), _table(Path(folder) / MARGINS_FILE)
-    run = StoredRun(Path(folder), study, table, margins, summary)
+    path = Path(folder) / BINDING_FILE
+    binding = _table(path) if path.is_file() else None
+    if binding is not None:
+        _check_columns(path, binding, COLUMNS)
+    run = StoredRun(Path(folder), study, table, margins, summary, binding)
     _check(run)
     return run
 

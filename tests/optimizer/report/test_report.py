@@ -14,6 +14,8 @@ from pptx.util import Emu
 from models.catalog import load_catalog
 from models.ownership import EnergyTerms
 from models.specification import DesignRules
+from optimizer.audit.audited_run import stored_points
+from optimizer.certainty.tolerance import sampler
 from optimizer.decision import shortlist
 from optimizer.errors import InputError
 from optimizer.report import report, writing
@@ -27,7 +29,6 @@ from optimizer.report.pdf_writer import pdf_file
 from optimizer.report.pptx_writer import pptx_file
 from optimizer.report.sources import model_sources
 from optimizer.report.writing import check_libraries, write_report
-from optimizer.runs.stored_run import StoredRun
 
 NASTY = "</script><img onerror=alert(1) src=x>"
 NEEDS_POPPLER = pytest.mark.skipif(
@@ -41,7 +42,8 @@ NEEDS_OFFICE = pytest.mark.skipif(
 
 @pytest.fixture(scope="module")
 def found(stored):
-    return shortlist(stored.study, stored.table, stored.margins)
+    sampled = sampler(stored.study, stored.table, stored_points(stored))
+    return shortlist(stored.study, stored.table, stored.margins, None, sampled)
 
 
 @pytest.fixture(scope="module")
@@ -52,8 +54,9 @@ def content(stored, found):
 @pytest.fixture(scope="module")
 def nasty(stored):
     study = replace(stored.study, name=NASTY, description=f"A <b>site</b> & {NASTY}", currency="<i>EUR</i>")
-    run = StoredRun(stored.folder, study, stored.table, stored.margins, stored.summary)
-    return report(run, shortlist(study, run.table, run.margins))
+    run = replace(stored, study=study)
+    sampled = sampler(study, run.table, stored_points(run))
+    return report(run, shortlist(study, run.table, run.margins, None, sampled))
 
 
 @pytest.fixture(scope="module")
@@ -362,3 +365,29 @@ def test_figures_stay_with_their_units():
 
 def test_letters_that_the_built_in_fonts_lack_become_their_nearest():
     assert latin("Müller, 5 Ω, Łódź 太") == "Müller, 5 ohm, ?ódz ?"
+
+
+def test_what_limits_the_fronts_is_told_by_concept_and_octave(stored, content):
+    section = next(one for one in content.sections if one.title == "What limits the fronts")
+    (table,) = section.tables
+    bands = stored.binding[["concept", "from [kHz]"]].drop_duplicates()
+    assert len(table.rows) == len(bands)
+    first = stored.binding.iloc[0]
+    assert table.rows[0][3].startswith(f"{first['limit']} ({first['designs at it [%]']:.0f} %)")
+
+
+def test_the_report_tells_how_sure_figures_are_and_what_they_hang_on(found, content):
+    titles = [one.title for one in content.sections]
+    assert "How sure the figures are" in titles
+    own = found.table["design_id"].iloc[found.recommended]
+    assert f"What the figures of {own} hang on" in titles
+    bands, holding, drivers = content.sections[titles.index("How sure the figures are")].tables
+    assert len(bands.columns) == len(drivers.columns) == len(found.rows) + 1
+    assert holding.rows[-1][0] == "all limits together"
+
+
+def test_a_run_without_that_table_has_a_report_without_it(stored):
+    older = replace(stored, binding=None)
+    titles = [one.title for one in report(older, shortlist(older.study, older.table, older.margins)).sections]
+    assert "What limits the fronts" not in titles
+    assert "How sure the figures are" not in titles  # nothing was sampled

@@ -106,6 +106,10 @@ def _one(
         axis=alt.Axis(labelLimit=0) if first else None,
     )
     reach = max((abs(record["change"]) for record in values), default=1.0) or 1.0
+    values = [
+        record | {"change": record["change"] if abs(record["change"]) >= SEEN * reach else 0.0}
+        for record in values
+    ]
     scale = alt.Scale(domain=[-1.6 * reach, 1.6 * reach])
     x = alt.X("change:Q", title=title, scale=scale, axis=alt.Axis(tickCount=4))
     worse = "datum.change > 0" if less_is_better else "datum.change < 0"

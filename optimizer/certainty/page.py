@@ -35,6 +35,7 @@ SHOWN = 14
 BETTER, WORSE = "#5f7d88", "#b4532a"
 BARS = "Red bars are for the worse, pale ones an average over steps, such as a capacitor more in series."
 WIDTH, BAR, PALE = 190, 17, 0.4
+SEEN = 1e-3  # of the longest bar: less is told as no change
 
 
 def neighbourhood_page(found: Neighbourhood) -> str:

@@ -4,6 +4,7 @@ from __future__ import annotations
 
 from collections.abc import Sequence
 from types import TracebackType
+from typing import Self
 
 from rich.console import Console
 from rich.progress import BarColumn, Progress, TaskID, TextColumn, TimeElapsedColumn, TimeRemainingColumn
@@ -14,7 +15,22 @@ from optimizer.evolution.screening import planned_evaluations
 from optimizer.study.study import Study
 
 
-class AuditBar:
+class _Shown:
+    """A bar that is on the screen while its block runs."""
+
+    progress: Progress
+
+    def __enter__(self) -> Self:
+        self.progress.start()
+        return self
+
+    def __exit__(
+        self, kind: type[BaseException] | None, trouble: BaseException | None, trace: TracebackType | None
+    ) -> None:
+        self.progress.stop()
+
+
+class AuditBar(_Shown):
     """Shows a running audit on standard error; `report` feeds it.
 
     Args:
@@ -26,15 +42,6 @@ class AuditBar:
         self.done: dict[str, int] = {}
         self.progress = _bar("{task.completed:,.0f}/{task.total:,.0f} designs", hidden)
         self.task: TaskID = self.progress.add_task("auditing", total=designs, note="")
-
-    def __enter__(self) -> AuditBar:
-        self.progress.start()
-        return self
-
-    def __exit__(
-        self, kind: type[BaseException] | None, trouble: BaseException | None, trace: TracebackType | None
-    ) -> None:
-        self.progress.stop()
 
     def report(self, concept: str, designs: int) -> None:
         """Take in how many designs of a concept are done."""
@@ -57,7 +64,7 @@ def _bar(count: str, hidden: bool) -> Progress:
     )
 
 
-class BatchBar:
+class BatchBar(_Shown):
     """Shows a running batch on standard error; `report` feeds it.
 
     Args:
@@ -70,22 +77,13 @@ class BatchBar:
         total = sum(len(case.study.concepts) for case in cases)
         self.task: TaskID = self.progress.add_task("searching", total=total, note="")
 
-    def __enter__(self) -> BatchBar:
-        self.progress.start()
-        return self
-
-    def __exit__(
-        self, kind: type[BaseException] | None, trouble: BaseException | None, trace: TracebackType | None
-    ) -> None:
-        self.progress.stop()
-
     def report(self, case: str, concept: str) -> None:
         """Take in that a concept of a case is done."""
         note = ": ".join(filter(None, (case, concept)))
         self.progress.update(self.task, advance=1, note=note)
 
 
-class SearchBar:
+class SearchBar(_Shown):
     """Shows a running search on standard error; `report` and `stage` feed it.
 
     Args:
@@ -99,15 +97,6 @@ class SearchBar:
         self.hypervolumes: dict[str, float] = {}
         self.progress = _bar("{task.completed:,.0f}/{task.total:,.0f} evaluations", hidden)
         self.task: TaskID = self.progress.add_task("preparing", total=self.total, note="")
-
-    def __enter__(self) -> SearchBar:
-        self.progress.start()
-        return self
-
-    def __exit__(
-        self, kind: type[BaseException] | None, trouble: BaseException | None, trace: TracebackType | None
-    ) -> None:
-        self.progress.stop()
 
     def report(self, progress: ClassProgress) -> None:
         """Take in the progress of one population."""

@@ -100,11 +100,18 @@ def _fill_die_areas(
 
 
 def _dc_link(inverter: Inverter) -> int:
-    """The film unit of the highest rating (of all units where there is no film)."""
-    units = inverter.catalog.dc_link_capacitors
+    """The smallest film unit that bears the dc voltage, where there is none the one of the highest rating (of
+    all units where there is no film).
+    """
+    units, spec = inverter.catalog.dc_link_capacitors, inverter.specification
     film = units.select(lambda unit: unit.technology == "film")
     chosen = film if len(film) else np.arange(len(units))
-    return int(chosen[np.argmax(units.column("voltage_rating_v")[chosen])])
+    rating = units.column("voltage_rating_v")[chosen]
+    borne = spec.dc_voltage_max_v / (inverter.bridge.levels - 1) / spec.rules.dc_voltage_use
+    if np.any(rating >= borne):
+        volume = np.where(rating >= borne, units.column("unit_volume_m3")[chosen], np.inf)
+        return int(chosen[np.argmin(volume)])
+    return int(chosen[np.argmax(rating)])
 
 
 def _inductors(values: dict[str, Any], inverter: Inverter) -> tuple[tuple[str, Array, Array], ...]:

@@ -7,7 +7,7 @@ from numpy.typing import NDArray
 from scipy.constants import mu_0
 
 Array = NDArray[np.float64]
-GAP_STEPS = 5
+COUNT_STEPS, GAP_STEPS = 5, 3
 
 
 def fringing_factor(gap: Array, area: Array, window_breadth: Array) -> Array:
@@ -60,13 +60,14 @@ def gap_for_inductance(
 
     Returns:
         Gap of all sections together, negative where even no gap gives too little [m], and their number [-].
-        Solved by fixed-point steps of l_g = F(l_g) l_ideal, in which the number never falls.
+        Solved by fixed-point steps of l_g = F(l_g) l_ideal, in the first of which the number may grow.
     """
     ideal = mu_0 * area * turns**2 / inductance - path / permeability
     start = np.maximum(ideal, 0.0)
     gap, per_leg = start, np.ones_like(ideal)
-    for _ in range(GAP_STEPS):
-        per_leg = np.maximum(per_leg, np.ceil(gap / (legs * largest_section) - 1e-9))
+    for step in range(COUNT_STEPS + GAP_STEPS):
+        if step < COUNT_STEPS:
+            per_leg = np.maximum(per_leg, np.ceil(gap / (legs * largest_section) - 1e-9))
         sections = per_leg * legs
         gap = np.minimum(start * fringing_factor(gap / sections, area, breadth / sections), breadth)
     return np.where(ideal >= 0.0, gap, ideal), per_leg * legs
